@@ -1,0 +1,166 @@
+//! The integrated paths, dense in time: the whole show, before it is shown.
+//!
+//! Each step of the integrator leaves its own polynomial: acceleration as a polynomial of degree 7 in the
+//! fraction of the step (Everhart 1985), so positions and velocities between steps are as exact as the step
+//! itself. Seeking is a binary search.
+
+use crate::Vector3;
+use crate::scenario::BodyId;
+
+pub mod track;
+
+pub use track::{PER_BODY, Track};
+
+/// Where a body is and how it moves: m and m/s, barycentric.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct State {
+    /// Position, m.
+    pub pos: Vector3<f64>,
+    /// Velocity, m/s.
+    pub vel: Vector3<f64>,
+}
+
+/// What a contact did.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Outcome {
+    /// The body rests on the other from then on.
+    Stopped,
+    /// The body was thrown back.
+    Bounced,
+    /// The body became part of the other.
+    Merged,
+}
+
+/// A body touching the surface of another.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Contact {
+    /// When, seconds from the scenario's start.
+    pub t_s: f64,
+    /// The body that touched.
+    pub body: BodyId,
+    /// The body whose surface was touched.
+    pub onto: BodyId,
+    /// What it did.
+    pub outcome: Outcome,
+    /// Speed of one relative to the other at that instant, m/s.
+    pub speed_m_s: f64,
+    /// GM of `onto` from then on, m³/s² (a merge adds to it).
+    pub onto_gm_m3_s2: f64,
+}
+
+/// The paths of all bodies over an interval that contains time 0.
+///
+/// A body that rests on another, or became part of it, goes on in every step with that other body.
+#[derive(Debug, Clone, PartialEq, Default)]
+pub struct Ephemeris {
+    gms: Vec<f64>,
+    forward: Track,
+    backward: Track,
+    contacts: Vec<Contact>,
+}
+
+impl Ephemeris {
+    /// No path yet, for bodies of these GM at time 0, m³/s².
+    pub fn new(gms_m3_s2: Vec<f64>) -> Self {
+        let n = gms_m3_s2.len();
+        Self {
+            gms: gms_m3_s2,
+            forward: Track::new(n, 1.0),
+            backward: Track::new(n, -1.0),
+            contacts: Vec::new(),
+        }
+    }
+
+    /// How many bodies it holds, companions included.
+    pub fn bodies(&self) -> usize {
+        self.gms.len()
+    }
+
+    /// First instant covered, seconds from the scenario's start; 0 or before.
+    pub fn from_s(&self) -> f64 {
+        self.backward.end_s()
+    }
+
+    /// Last instant covered, seconds from the scenario's start; 0 or after.
+    pub fn until_s(&self) -> f64 {
+        self.forward.end_s()
+    }
+
+    /// State of a body. Times outside the covered interval give its nearest end; before anything is covered, `None`.
+    pub fn state(&self, body: BodyId, t_s: f64) -> Option<State> {
+        if body.0 >= self.bodies() {
+            return None;
+        }
+        if t_s < 0.0 && !self.backward.is_empty() || self.forward.is_empty() {
+            self.backward.state(body.0, t_s)
+        } else {
+            self.forward.state(body.0, t_s)
+        }
+    }
+
+    /// State of a body relative to another.
+    pub fn relative(&self, body: BodyId, about: BodyId, t_s: f64) -> Option<State> {
+        let a = self.state(body, t_s)?;
+        let b = self.state(about, t_s)?;
+        Some(State { pos: a.pos - b.pos, vel: a.vel - b.vel })
+    }
+
+    /// GM of a body at an instant, m³/s²: merges add to it, and leave 0 of what became part of another.
+    pub fn gm_m3_s2(&self, body: BodyId, t_s: f64) -> f64 {
+        let mut gm = self.gms.get(body.0).copied().unwrap_or(0.0);
+        for contact in &self.contacts {
+            let past = if contact.t_s >= 0.0 { contact.t_s <= t_s } else { contact.t_s >= t_s };
+            if past && contact.outcome == Outcome::Merged {
+                if contact.onto == body {
+                    gm = contact.onto_gm_m3_s2;
+                } else if contact.body == body {
+                    gm = 0.0;
+                }
+            }
+        }
+        gm
+    }
+
+    /// The contacts, in the order in which the integration met them.
+    pub fn contacts(&self) -> &[Contact] {
+        &self.contacts
+    }
+
+    /// The contact after which a body no longer moves by itself, if it has come by that instant.
+    pub fn at_rest(&self, body: BodyId, t_s: f64) -> Option<&Contact> {
+        self.contacts.iter().find(|c| {
+            let past = if c.t_s >= 0.0 { c.t_s <= t_s } else { c.t_s >= t_s };
+            past && c.body == body && c.outcome != Outcome::Bounced
+        })
+    }
+
+    /// The steps from time 0 on.
+    pub fn forward(&self) -> &Track {
+        &self.forward
+    }
+
+    /// The steps from time 0 back.
+    pub fn backward(&self) -> &Track {
+        &self.backward
+    }
+
+    /// The steps from time 0 on, to be added to.
+    pub fn forward_mut(&mut self) -> &mut Track {
+        &mut self.forward
+    }
+
+    /// The steps from time 0 back, to be added to.
+    pub fn backward_mut(&mut self) -> &mut Track {
+        &mut self.backward
+    }
+
+    /// Notes a contact.
+    pub fn push_contact(&mut self, contact: Contact) {
+        self.contacts.push(contact);
+    }
+
+    /// Memory held, bytes.
+    pub fn bytes(&self) -> usize {
+        self.forward.bytes() + self.backward.bytes()
+    }
+}

@@ -1,0 +1,24 @@
+//! The show: the plan of its beats and the clock that serves the talk.
+
+use crate::ephemeris::Ephemeris;
+use crate::resolve::InitialState;
+use crate::scenario::Scenario;
+
+pub mod clock;
+pub mod plan;
+
+pub use clock::{Action, Clock};
+pub use plan::{Plan, PlannedBeat};
+
+/// A rehearsed show: everything that the picture is a function of, but for the instant.
+#[derive(Debug, Clone)]
+pub struct Show {
+    /// The scenario.
+    pub scenario: Scenario,
+    /// Where everything starts.
+    pub initial: InitialState,
+    /// How everything moves.
+    pub ephemeris: Ephemeris,
+    /// When each beat starts, in show time and model time.
+    pub plan: Plan,
+}

@@ -1,0 +1,3 @@
+//! The native program of Fallaround.
+
+fn main() {}
