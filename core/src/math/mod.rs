@@ -1,1 +1,5 @@
-//! (in work: math)
+//! Numbers the same everywhere: elementary functions, rotations, roots.
+
+pub mod float;
+pub mod frame;
+pub mod root;
