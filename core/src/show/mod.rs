@@ -5,10 +5,13 @@ use crate::resolve::InitialState;
 use crate::scenario::Scenario;
 
 pub mod clock;
+mod glide;
+mod pacing;
 pub mod plan;
 
-pub use clock::{Action, Clock};
-pub use plan::{Plan, PlannedBeat};
+pub use clock::{Action, Bookmark, Clock, Moment};
+pub use pacing::{EaseOut, Pacing};
+pub use plan::{Cue, Plan, PlannedBeat, Run, Way};
 
 /// A rehearsed show: everything that the picture is a function of, but for the instant.
 #[derive(Debug, Clone)]

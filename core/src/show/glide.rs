@@ -1,0 +1,137 @@
+//! From where the model is to where a beat starts, without a jump in the picture.
+
+/// Shortest glide, show seconds.
+const SHORTEST_S: f64 = 1.2;
+/// Longest glide, show seconds.
+const LONGEST_S: f64 = 3.0;
+/// A way that would take longer than this at the usual pace is not glided over but changed under a veil.
+const FARTHEST_SHOW_S: f64 = 180.0;
+/// Show seconds for the veil to fall and to rise.
+const VEIL_S: f64 = 1.0;
+
+/// A change of model time under way.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) struct Glide {
+    from_s: f64,
+    to_s: f64,
+    first_pace: f64,
+    last_pace: f64,
+    lasts_s: f64,
+    gone_s: f64,
+    veiled: bool,
+}
+
+impl Glide {
+    /// A glide between two model times, from a pace to a pace; `usual_pace` says what the eye is used to.
+    /// `None` where there is no way to go.
+    pub(super) fn between(
+        from_s: f64,
+        to_s: f64,
+        first_pace: f64,
+        last_pace: f64,
+        usual_pace: f64,
+    ) -> Option<Self> {
+        let way = to_s - from_s;
+        if way == 0.0 || !way.is_finite() {
+            return None;
+        }
+        let show_s = way.abs() / usual_pace.max(f64::MIN_POSITIVE);
+        let veiled = show_s > FARTHEST_SHOW_S;
+        let lasts_s = if veiled { VEIL_S } else { (SHORTEST_S + show_s / 40.0).clamp(SHORTEST_S, LONGEST_S) };
+        // A cubic through both ends is monotone when both slopes have the sign of the way and are at most three
+        // times its mean slope (Fritsch and Carlson 1980, SIAM J. Numer. Anal. 17, 238).
+        let most = 3.0 * way / lasts_s;
+        let fit = |pace: f64| {
+            if pace * way <= 0.0 || veiled { 0.0 } else { pace.abs().min(most.abs()) * way.signum() }
+        };
+        let last_pace = if veiled { last_pace } else { fit(last_pace) };
+        Some(Self { from_s, to_s, first_pace: fit(first_pace), last_pace, lasts_s, gone_s: 0.0, veiled })
+    }
+
+    /// Lets show time pass; what is left of it when the glide is over, else 0.
+    pub(super) fn advance(&mut self, elapsed_s: f64) -> f64 {
+        let left_s = (self.gone_s + elapsed_s - self.lasts_s).max(0.0);
+        self.gone_s += elapsed_s - left_s;
+        left_s
+    }
+
+    /// Whether it has arrived.
+    pub(super) fn over(&self) -> bool {
+        self.gone_s >= self.lasts_s
+    }
+
+    /// Pace with which it arrives.
+    pub(super) const fn last_pace(&self) -> f64 {
+        self.last_pace
+    }
+
+    /// Model time now.
+    pub(super) fn model_s(&self) -> f64 {
+        if self.veiled {
+            return if 2.0 * self.gone_s < self.lasts_s { self.from_s } else { self.to_s };
+        }
+        if self.over() {
+            return self.to_s;
+        }
+        let x = self.gone_s / self.lasts_s;
+        let (a, b) = (self.first_pace * self.lasts_s, self.last_pace * self.lasts_s);
+        let way = self.to_s - self.from_s;
+        self.from_s + x * (a + x * ((3.0 * way - 2.0 * a - b) + x * (a + b - 2.0 * way)))
+    }
+
+    /// Pace now, model seconds per show second.
+    pub(super) fn pace(&self) -> f64 {
+        if self.veiled {
+            return 0.0;
+        }
+        let x = self.gone_s / self.lasts_s;
+        let (a, b) = (self.first_pace * self.lasts_s, self.last_pace * self.lasts_s);
+        let way = self.to_s - self.from_s;
+        (a + x * (2.0 * (3.0 * way - 2.0 * a - b) + x * 3.0 * (a + b - 2.0 * way))) / self.lasts_s
+    }
+
+    /// The veil: 0 clear, 1 only ground.
+    pub(super) fn veil(&self) -> f64 {
+        if !self.veiled {
+            return 0.0;
+        }
+        let x = 1.0 - (2.0 * self.gone_s / self.lasts_s - 1.0).abs();
+        x.clamp(0.0, 1.0)
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use proptest::prelude::*;
+
+    proptest! {
+        #[test]
+        fn a_glide_is_monotone_and_arrives(
+            from in -1e9..1e9f64, way in prop::sample::select(vec![-1e8, -3.0, 1.0, 5e7]),
+            first in 0.0..1e7f64, last in 0.0..1e7f64, usual in 1.0..1e6f64,
+        ) {
+            let mut glide = Glide::between(from, from + way, first, last, usual).unwrap();
+            let mut before = glide.model_s();
+            let mut left = 0.0;
+            for _ in 0..400 {
+                left += glide.advance(0.01);
+                let now = glide.model_s();
+                prop_assert!((now - before) * way >= -1e-6 * way.abs());
+                before = now;
+            }
+            prop_assert!(glide.over());
+            prop_assert!((glide.model_s() - from - way).abs() < 1e-6);
+            prop_assert!((left - (4.0 - glide.lasts_s)).abs() < 1e-9);
+        }
+    }
+
+    #[test]
+    fn a_long_way_is_changed_under_a_full_veil() {
+        let mut glide = Glide::between(0.0, 1e9, 1.0, 1.0, 1.0).unwrap();
+        glide.advance(0.499);
+        assert!(glide.model_s() == 0.0 && glide.veil() > 0.99);
+        glide.advance(0.002);
+        assert!(glide.model_s() == 1e9 && glide.veil() > 0.99);
+    }
+}
