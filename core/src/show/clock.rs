@@ -440,3 +440,7 @@ impl Clock {
         pace(self.beat).max(pace(to))
     }
 }
+
+#[cfg(test)]
+#[path = "clock_tests.rs"]
+mod tests;
