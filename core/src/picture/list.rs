@@ -89,6 +89,13 @@ pub enum Shape {
         /// The stroke.
         stroke: Stroke,
     },
+    /// Separate straight pieces with one stroke: hatches, dots, ticks. One path for a painter, never dashed.
+    Segments {
+        /// Both ends of each, px.
+        segments: Vec<[[f64; 2]; 2]>,
+        /// The stroke.
+        stroke: Stroke,
+    },
     /// A filled area; the even-odd rule holds.
     Area {
         /// Outline, px.
