@@ -246,6 +246,9 @@ pub struct Beat {
     pub view: View,
     /// What is drawn to explain.
     pub marks: Vec<Mark>,
+    /// The bodies that are on stage, `cast = ["Orla", "Fenn"]`; the others pull unseen, and marks of theirs are
+    /// not drawn. `None`: all. A beat that states none keeps those of the one before; `cast = []` brings all back.
+    pub cast: Option<Vec<BodyId>>,
     /// Where its `[[beat]]` stands in the text.
     pub place: Place,
     /// Where its clock stands in the text.
