@@ -53,7 +53,7 @@ pub fn leading(text: &str) -> Result<(f64, &str), NumberFault> {
     if factor.len() < unspaced.len() && factor.starts_with("10") {
         return Err(NumberFault::PowerOfTen);
     }
-    let value: f64 = plain.parse().map_err(|_: std::num::ParseFloatError| NumberFault::None)?;
+    let value: f64 = plain.parse().ok().ok_or(NumberFault::None)?;
     if value.is_finite() { Ok((value, unspaced)) } else { Err(NumberFault::TooLarge) }
 }
 

@@ -123,12 +123,7 @@ const MASSES: &[Unit] = &[
         GM_SUN_NOMINAL_M3_S2,
     ),
     plural("Earth masses", "Earth mass", &["M_E", "M_Earth", "M⊕", "M_⊕"], GM_EARTH_NOMINAL_M3_S2),
-    plural(
-        "Jupiter masses",
-        "Jupiter mass",
-        &["M_J", "M_Jup", "M_Jupiter", "M♃"],
-        GM_JUPITER_NOMINAL_M3_S2,
-    ),
+    plural("Jupiter masses", "Jupiter mass", &["M_J", "M_Jup", "M_Jupiter", "M♃"], GM_JUPITER_NOMINAL_M3_S2),
     plural("Moon masses", "Moon mass", &["lunar mass", "lunar masses", "M_M", "M_Moon"], GM_MOON_M3_S2),
 ];
 
@@ -225,7 +220,7 @@ impl Dimension {
         let (top, bottom) = (above.find(top.trim())?, Self::Span.find(bottom.trim())?);
         let (times, over) = (top.times * bottom.over, top.over * bottom.times);
         // "days/s" is "d/s": say it as the table does.
-        let same = |u: &&Unit| u.times * over == times * u.over;
+        let same = |u: &&Unit| (u.times * over).to_bits() == (times * u.over).to_bits();
         Some(units.iter().find(same).copied().unwrap_or(Unit { name: "", one: "", forms: &[], times, over }))
     }
 }

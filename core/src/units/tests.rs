@@ -72,9 +72,13 @@ fn people_write_quantities_in_many_ways() {
     ] {
         close(Gm::parse(text).unwrap_or_else(|e| panic!("{text}: {e}")).m3_s2(), want);
     }
-    for (text, want) in
-        [("12 d/s", 1_036_800.0), ("12 days/s", 1_036_800.0), ("1 yr/s", YEAR_S), ("1 h/min", 60.0), ("5 x", 5.0)]
-    {
+    for (text, want) in [
+        ("12 d/s", 1_036_800.0),
+        ("12 days/s", 1_036_800.0),
+        ("1 yr/s", YEAR_S),
+        ("1 h/min", 60.0),
+        ("5 x", 5.0),
+    ] {
         close(Pace::parse(text).unwrap_or_else(|e| panic!("{text}: {e}")).s_per_s(), want);
     }
 }
@@ -135,7 +139,7 @@ fn finite() -> impl Strategy<Value = f64> {
 /// Doubles of the sizes that scenarios have.
 fn usual() -> impl Strategy<Value = f64> {
     (-9.0..25.0_f64, any::<bool>(), 1.0..10.0_f64).prop_map(|(e, minus, m)| {
-        let size = m * crate::units::number::leading(&format!("1e{}", e.floor())).unwrap().0;
+        let size = m * number::leading(&format!("1e{}", e.floor())).unwrap().0;
         if minus { -size } else { size }
     })
 }
@@ -143,20 +147,18 @@ fn usual() -> impl Strategy<Value = f64> {
 proptest! {
     #[test]
     fn every_value_reads_back_to_the_same_bits(v in prop_oneof![finite(), usual()]) {
-        let same = |text: &str, back: f64| prop_assert_eq!(back.to_bits(), v.to_bits(), "{}", text);
         let text = Length::from_m(v).to_text();
-        let same_length = Length::parse(&text).unwrap().m();
-        same(&text, same_length)?;
+        prop_assert_eq!(Length::parse(&text).unwrap().m().to_bits(), v.to_bits(), "{}", text);
         let text = Span::from_s(v).to_text();
-        same(&text, Span::parse(&text).unwrap().s())?;
+        prop_assert_eq!(Span::parse(&text).unwrap().s().to_bits(), v.to_bits(), "{}", text);
         let text = Speed::from_m_s(v).to_text();
-        same(&text, Speed::parse(&text).unwrap().m_s())?;
+        prop_assert_eq!(Speed::parse(&text).unwrap().m_s().to_bits(), v.to_bits(), "{}", text);
         let text = Angle::from_rad(v).to_text();
-        same(&text, Angle::parse(&text).unwrap().rad())?;
+        prop_assert_eq!(Angle::parse(&text).unwrap().rad().to_bits(), v.to_bits(), "{}", text);
         let text = Gm::from_m3_s2(v).to_text();
-        same(&text, Gm::parse(&text).unwrap().m3_s2())?;
+        prop_assert_eq!(Gm::parse(&text).unwrap().m3_s2().to_bits(), v.to_bits(), "{}", text);
         let text = Pace::from_s_per_s(v).to_text();
-        same(&text, Pace::parse(&text).unwrap().s_per_s())?;
+        prop_assert_eq!(Pace::parse(&text).unwrap().s_per_s().to_bits(), v.to_bits(), "{}", text);
     }
 
     #[test]

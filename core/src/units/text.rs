@@ -28,16 +28,14 @@ pub(crate) fn wanted(dimensions: &[Dimension]) -> String {
 
 /// What is wrong with a bare number where a quantity is wanted.
 pub(crate) fn bare_number(number: &str, dimensions: &[Dimension], example: &str) -> UnitError {
-    UnitError::new(
-        format!("{number} has no unit"),
-        format!("{}, as in \"{example}\"", wanted(dimensions)),
-    )
+    UnitError::new(format!("{number} has no unit"), format!("{}, as in \"{example}\"", wanted(dimensions)))
 }
 
 /// The SI value of a number with a unit.
 pub(crate) fn parse(text: &str, dimensions: &[Dimension], example: &str) -> Result<f64, UnitError> {
     let shown = clip(text);
-    let (value, rest) = number::leading(text).map_err(|fault| number_error(&shown, fault, dimensions, example))?;
+    let (value, rest) =
+        number::leading(text).map_err(|fault| number_error(&shown, fault, dimensions, example))?;
     let form = normal_form(rest);
     if form.is_empty() {
         return Err(bare_number(&format!("\"{shown}\""), dimensions, example));
@@ -166,7 +164,8 @@ fn number_error(shown: &str, fault: NumberFault, dimensions: &[Dimension], examp
     let remedy = match fault {
         NumberFault::None => format!("{}, as in \"{example}\"", wanted(dimensions)),
         NumberFault::Comma | NumberFault::SpacedDigits | NumberFault::Underscore => {
-            "decimals follow a point, as in 0.6; thousands may be parted by underscores, as in 620_000".to_owned()
+            "decimals follow a point, as in 0.6; thousands may be parted by underscores, as in 620_000"
+                .to_owned()
         }
         NumberFault::PowerOfTen => "powers of ten are written with e, as in 3e8".to_owned(),
         NumberFault::TooLarge => "numbers go up to about 1e308".to_owned(),
