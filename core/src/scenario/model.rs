@@ -439,8 +439,8 @@ pub enum Mark {
         body: BodyId,
         /// About which centre.
         about: Option<BodyId>,
-        /// Model time of each.
-        every: Span,
+        /// Model time of each; `None`: a twelfth of its period, or of the beat's model time where it has none.
+        every: Option<Span>,
         /// How many; `None`: as many as the beat has time for.
         count: Option<usize>,
         /// Whether each one's area is written beside it.
