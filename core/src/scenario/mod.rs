@@ -2,6 +2,8 @@
 
 pub mod model;
 pub mod problem;
+pub mod today;
 
 pub use model::*;
 pub use problem::{Place, Problem, Severity};
+pub use today::dated;

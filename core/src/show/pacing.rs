@@ -162,7 +162,7 @@ mod tests {
             let (t, d) = (x * at, 1e-5 * at);
             let slope = (pacing.model_s(t + d) - pacing.model_s(t - d)) / (2.0 * d);
             // A central difference errs by d²/6 times the pace's second derivative, about pace/ease².
-            let ease = pacing.ease_in_s.max(1e-9).min(1.0);
+            let ease = pacing.ease_in_s.clamp(1e-9, 1.0);
             let tolerance = 1e-6 * (span / at + first) + (first + pacing.pace) * (d / ease) * (d / ease) * 12.0 + (first + pacing.pace) * d / ease * 1e-2;
             prop_assert!((slope - pacing.pace_at(t)).abs() <= tolerance, "{slope} {} {tolerance}", pacing.pace_at(t));
         }
