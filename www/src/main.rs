@@ -1,3 +1,41 @@
-//! The native program of Fallaround.
+//! The native program of Fallaround: it builds the app, serves it, and answers questions about scenarios.
+//!
+//! Data goes to standard output alone; progress, notes and errors go to standard error. Exit codes: 0 done, 1 a
+//! check or a test failed, 2 it could not be done (a wrong argument, a wrong file, a missing tool), 130 ended by Ctrl-C.
 
-fn main() {}
+#![allow(clippy::print_stdout, reason = "standard output is this program's trade")]
+
+mod browser_open;
+mod bundle;
+mod child;
+mod cli;
+mod root;
+mod serve;
+mod site;
+mod toolchain;
+
+use std::process::ExitCode;
+
+use anyhow::Result;
+use clap::Parser as _;
+
+use cli::{Cli, Command};
+
+fn main() -> ExitCode {
+    if let Err(error) = child::end_children_with_us() {
+        eprintln!("note: Ctrl-C may leave helpers of this program running: {error}");
+    }
+    match run(Cli::parse()) {
+        Ok(code) => code,
+        Err(error) => {
+            eprintln!("error: {error:#}");
+            ExitCode::from(2)
+        }
+    }
+}
+
+fn run(cli: Cli) -> Result<ExitCode> {
+    match cli.command.unwrap_or(Command::Serve(cli.serve)) {
+        Command::Serve(options) => serve::command(&options),
+    }
+}
