@@ -7,9 +7,12 @@
 use crate::Vector3;
 use crate::scenario::BodyId;
 
+pub mod propagation;
 pub mod track;
 
-pub use track::{PER_BODY, Track};
+pub use crate::integrate::PER_BODY;
+pub use propagation::{Propagation, Stopped, Why, states_at};
+pub use track::Track;
 
 /// Where a body is and how it moves: m and m/s, barycentric.
 #[derive(Debug, Clone, Copy, PartialEq)]

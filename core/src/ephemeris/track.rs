@@ -2,10 +2,7 @@
 
 use super::State;
 use crate::Vector3;
-
-/// Numbers kept for each body and step: position, velocity, acceleration at its start, and the seven
-/// coefficients b0 to b6 of each axis, in the order `[x0 y0 z0] [vx vy vz] [ax ay az] [b0x b0y b0z] … [b6x b6y b6z]`.
-pub const PER_BODY: usize = 30;
+use crate::integrate::PER_BODY;
 
 /// Steps that follow one another from time 0 in one direction.
 #[derive(Debug, Clone, PartialEq, Default)]
@@ -80,34 +77,28 @@ impl Track {
     }
 }
 
-/// State from the numbers of one body in one step, `h` of the step on, 0 to 1.
+/// State from the numbers of one body in one step ([`PER_BODY`] of them), `h` of the step on, 0 to 1.
 ///
 /// # Source
 /// E. Everhart, "An efficient integrator that uses Gauss-Radau spacings", in Dynamics of Comets (1985), 185;
 /// the acceleration a0 + b0 h + … + b6 h⁷, integrated once and twice.
 pub fn evaluate(numbers: &[f64], step_s: f64, h: f64) -> State {
+    /// Weights of b0 to b6 in the two integrals, smallest term first in use.
+    const V: [f64; 7] = [1.0 / 2.0, 1.0 / 3.0, 1.0 / 4.0, 1.0 / 5.0, 1.0 / 6.0, 1.0 / 7.0, 1.0 / 8.0];
+    const X: [f64; 7] = [1.0 / 6.0, 1.0 / 12.0, 1.0 / 20.0, 1.0 / 30.0, 1.0 / 42.0, 1.0 / 56.0, 1.0 / 72.0];
     let mut pos = [0.0; 3];
     let mut vel = [0.0; 3];
+    let along_s = step_s * h;
     for axis in 0..3 {
-        let n = |row: usize| numbers[row * 3 + axis];
-        let (x0, v0, a0) = (n(0), n(1), n(2));
-        let v = n(9) / 8.0;
-        let v = n(8) / 7.0 + h * v;
-        let v = n(7) / 6.0 + h * v;
-        let v = n(6) / 5.0 + h * v;
-        let v = n(5) / 4.0 + h * v;
-        let v = n(4) / 3.0 + h * v;
-        let v = n(3) / 2.0 + h * v;
-        vel[axis] = v0 + step_s * h * (a0 + h * v);
-        let x = n(9) / 72.0;
-        let x = n(8) / 56.0 + h * x;
-        let x = n(7) / 42.0 + h * x;
-        let x = n(6) / 30.0 + h * x;
-        let x = n(5) / 20.0 + h * x;
-        let x = n(4) / 12.0 + h * x;
-        let x = n(3) / 6.0 + h * x;
-        let x = a0 / 2.0 + h * x;
-        pos[axis] = x0 + step_s * h * (v0 + step_s * h * x);
+        let (mut v, mut x) = (0.0, 0.0);
+        for k in (0..7).rev() {
+            let b = numbers[9 + 3 * k + axis];
+            v = V[k] * b + h * v;
+            x = X[k] * b + h * x;
+        }
+        let (x0, v0, a0) = (numbers[axis], numbers[3 + axis], numbers[6 + axis]);
+        vel[axis] = v0 + along_s * (a0 + h * v);
+        pos[axis] = x0 + along_s * (v0 + along_s * (0.5 * a0 + h * x));
     }
     State { pos: Vector3::from(pos), vel: Vector3::from(vel) }
 }

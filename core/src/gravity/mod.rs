@@ -1,1 +1,140 @@
-//! (in work: gravity)
+//! The forces: one in each file, each adding its accelerations to those of the others.
+//!
+//! All of them work on flat arrays `[x0 y0 z0 x1 y1 z1 …]` in metres and metres a second, sum in a fixed order,
+//! and allocate nothing. Forces between two bodies act both ways, so that momentum is kept to rounding. A new force is a
+//! file with an `add` and a line in [`Field::accelerations`].
+
+use crate::resolve::{Forces, InitialState};
+
+mod newton;
+mod oblateness;
+mod relativity;
+mod resting;
+
+use oblateness::Bulge;
+use resting::Resting;
+
+/// Everything that pulls on the bodies of a scenario.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Field {
+    /// GM of each body, m³/s²; 0 for a tracer.
+    gms: Vec<f64>,
+    /// Which bodies have mass, in order.
+    massive: Vec<usize>,
+    relativity: Option<usize>,
+    bulges: Vec<Bulge>,
+    resting: Resting,
+}
+
+impl Field {
+    /// The field of all bodies of an initial state, in their order.
+    pub fn new(initial: &InitialState) -> Self {
+        let all: Vec<usize> = (0..initial.bodies.len()).collect();
+        let gms = initial.bodies.iter().map(|body| body.gm_m3_s2).collect();
+        Self::of(gms, &initial.forces, &all)
+    }
+
+    /// The field of some of the bodies: `gms` and `members` have the same order, `members` names their indices in
+    /// `forces`. A force whose body isn't among them doesn't act.
+    pub(crate) fn of(gms: Vec<f64>, forces: &Forces, members: &[usize]) -> Self {
+        let local = |global: usize| members.iter().position(|&m| m == global);
+        let massive: Vec<usize> = (0..gms.len()).filter(|&i| gms[i] != 0.0).collect();
+        let relativity = forces.relativity.and_then(|body| local(body.0)).filter(|&i| gms[i] != 0.0);
+        let bulges = forces.oblate.iter().filter_map(|o| Some(Bulge::new(local(o.body.0)?, o))).collect();
+        Self { gms, massive, relativity, bulges, resting: Resting::default() }
+    }
+
+    /// Adds a mass that rests on a body, at a fixed offset from its centre, m.
+    pub(crate) fn rest(&mut self, host: usize, offset: [f64; 3], gm_m3_s2: f64) {
+        self.resting.add_mass(&self.gms, host, offset, gm_m3_s2);
+    }
+
+    /// How many bodies it acts on.
+    pub fn bodies(&self) -> usize {
+        self.gms.len()
+    }
+
+    /// GM of each body, m³/s².
+    pub fn gms_m3_s2(&self) -> &[f64] {
+        &self.gms
+    }
+
+    /// Whether the accelerations depend on the velocities.
+    pub fn needs_velocities(&self) -> bool {
+        self.relativity.is_some()
+    }
+
+    /// Accelerations of all bodies, m/s², into the first three numbers for each body of `out`.
+    ///
+    /// `pos` and `vel` hold at least three numbers for each body; `vel` is read only when
+    /// [`Field::needs_velocities`]. Two bodies in the same place give infinities or NaN.
+    pub fn accelerations(&self, pos: &[f64], vel: &[f64], out: &mut [f64]) {
+        let n = 3 * self.gms.len();
+        let (pos, out) = (&pos[..n], &mut out[..n]);
+        newton::set(&self.gms, &self.massive, pos, out);
+        if let Some(centre) = self.relativity {
+            relativity::add(&self.gms, centre, pos, &vel[..n], out);
+        }
+        for bulge in &self.bulges {
+            bulge.add(&self.gms, pos, out);
+        }
+        // Last: it shares out what the others found among the parts of a body.
+        self.resting.add(&self.gms, pos, out);
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::Vector3;
+    use crate::resolve::{InitialBody, Oblate};
+    use crate::scenario::{BodyId, Surface};
+    use proptest::prelude::*;
+
+    fn body(gm: f64, pos: [f64; 3], vel: [f64; 3]) -> InitialBody {
+        InitialBody {
+            name: String::new(),
+            gm_m3_s2: gm,
+            radius_m: 0.0,
+            surface: Surface::Stop,
+            primary: None,
+            pos: Vector3::from(pos),
+            vel: Vector3::from(vel),
+        }
+    }
+
+    prop_compose! {
+        fn bodies()(rows in prop::collection::vec((prop_oneof![Just(0.0), 1e10..1e20_f64], prop::array::uniform3(-1e11..1e11_f64), prop::array::uniform3(-1e5..1e5_f64)), 2..8)) -> Vec<InitialBody> {
+            rows.into_iter().map(|(gm, pos, vel)| body(gm, pos, vel)).collect()
+        }
+    }
+
+    proptest! {
+        #[test]
+        fn all_forces_together_keep_momentum(bodies in bodies()) {
+            let forces = Forces {
+                relativity: Some(BodyId(0)),
+                oblate: vec![Oblate { body: BodyId(1), j2: 0.01, radius_m: 7e6, pole: Vector3::new(0.0, 0.6, 0.8) }],
+            };
+            let pos: Vec<f64> = bodies.iter().flat_map(|b| b.pos.as_slice().to_vec()).collect();
+            let vel: Vec<f64> = bodies.iter().flat_map(|b| b.vel.as_slice().to_vec()).collect();
+            let listed = bodies.len();
+            let mut field = Field::new(&InitialState { bodies, listed, forces });
+            field.rest(0, [1e6, 2e6, -3e6], 3e13);
+            field.rest(1, [0.0, 2e5, 0.0], 3e11);
+            let mut out = vec![0.0; pos.len()];
+            field.accelerations(&pos, &vel, &mut out);
+            let resting = [3e13, 3e11];
+            for axis in 0..3 {
+                let (mut sum, mut gross) = (0.0, 0.0);
+                for (i, gm) in field.gms_m3_s2().iter().enumerate() {
+                    let gm = gm + resting.get(i).copied().unwrap_or(0.0);
+                    sum += gm * out[3 * i + axis];
+                    gross += (gm * out[3 * i + axis]).abs();
+                }
+                // Rounding of at most eight terms, each itself a sum of eight.
+                prop_assert!(sum.abs() <= 1e-14 * gross, "axis {axis}: {sum} of {gross}");
+            }
+        }
+    }
+}

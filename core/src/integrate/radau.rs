@@ -1,0 +1,392 @@
+//! The adaptive Gauss-Radau method of 15th order, to round-off.
+//!
+//! Each step fits the acceleration by a polynomial of degree 7 in time through eight instants of the step, found by
+//! iterating prediction and correction until nothing changes above rounding; positions and velocities are its integrals.
+//! The sums over steps are compensated, and times are chosen so that a step's end is an exact f64: the errors that are left
+//! are roundings without a preferred sign, and energy errors grow like the square root of the number of steps (D. Brouwer,
+//! AJ 46 (1937), 149).
+//!
+//! # Source
+//! E. Everhart, in Dynamics of Comets (1985), 185 (the method); H. Rein & D. S. Spiegel, MNRAS 446 (2015), 1424 (iteration to
+//! round-off, prediction with the last step's correction, compensation, tolerance 1e-9 of the last coefficient); S. J. Aarseth, in
+//! Multiple Time Scales (1985), 377 (the time scale from derivatives of the acceleration), with the factor that T. Pham,
+//! H. Rein & D. S. Spiegel, Open J. Astrophys. 7 (2024), use for such time scales: the seventh root of 7! times the tolerance.
+
+use super::spacings::{
+    B_FROM_G, BINOMIAL, G_FROM_B, INVERSE, POSITION, VELOCITY, position_weights, velocity_weights,
+};
+use crate::gravity::Field;
+
+/// Numbers of one body in one step: position, velocity, acceleration at its start, and the seven coefficients b0 to b6
+/// of each axis, in the order `[x0 y0 z0] [vx vy vz] [ax ay az] [b0x b0y b0z] … [b6x b6y b6z]`.
+pub const PER_BODY: usize = 30;
+
+/// Numbers worked on side by side. Four fill the vector registers of every target twice over.
+const LANES: usize = 4;
+type Lanes = [f64; LANES];
+
+/// Length of a step in time scales: (7! · 1e-9)^(1/7), the tolerance of Rein & Spiegel. Smaller: slower, and no more exact, because rounding
+/// already dominates; larger: the error of the method shows.
+const STEP_IN_TIME_SCALES: f64 = 0.174_9;
+
+/// A step is repeated when it turns out longer than allowed by more than this, and grows no more than by its inverse.
+const LARGEST_CHANGE: f64 = 0.25;
+
+/// Most rounds of prediction and correction in a step. Smooth steps need two or three.
+const MOST_ROUNDS: usize = 12;
+
+/// Relative change of the acceleration at which a round changed nothing but roundings.
+const CONVERGED: f64 = 1e-16;
+
+/// Accelerations below this part of the largest are taken as made of roundings alone (a body held between equal pulls), and set
+/// no step.
+const NOISE: f64 = 1e-11;
+
+/// Longest step, s (thirty thousand years): bodies that nothing pulls on would let steps grow for ever.
+const LONGEST_STEP_S: f64 = 1e12;
+
+/// Some of the components, with all that is known of them.
+#[derive(Debug, Clone, Default, PartialEq)]
+struct Block {
+    pos: Lanes,
+    vel: Lanes,
+    /// What rounding has put into `pos` and `vel` too much.
+    pos_excess: Lanes,
+    vel_excess: Lanes,
+    /// Acceleration at the start of the step.
+    acc: Lanes,
+    b: [Lanes; 7],
+    g: [Lanes; 7],
+    /// What was predicted for `b`.
+    predicted: [Lanes; 7],
+    last_b: [Lanes; 7],
+    last_predicted: [Lanes; 7],
+}
+
+/// The step has become too small to go on: bodies are falling into each other.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub struct StepTooSmall;
+
+/// Bodies on their way, one step at a time.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Radau {
+    bodies: usize,
+    blocks: Vec<Block>,
+    t_s: f64,
+    step_s: f64,
+    next_step_s: f64,
+    /// Length of the step that `last_b` belongs to; 0 where there is none.
+    last_step_s: f64,
+    acc_known: bool,
+    pos: Vec<f64>,
+    vel: Vec<f64>,
+    acc: Vec<f64>,
+}
+
+impl Radau {
+    /// Bodies at time `t_s`; positions and velocities have three numbers for each. `first_step_s` is where the search for the
+    /// step starts; its sign is the direction of time.
+    pub fn new(t_s: f64, pos: &[f64], vel: &[f64], first_step_s: f64) -> Self {
+        debug_assert_eq!(pos.len(), vel.len());
+        let padded = pos.len().div_ceil(LANES) * LANES;
+        let mut blocks = vec![Block::default(); padded / LANES];
+        for (i, (&x, &v)) in pos.iter().zip(vel).enumerate() {
+            blocks[i / LANES].pos[i % LANES] = x;
+            blocks[i / LANES].vel[i % LANES] = v;
+        }
+        Self {
+            bodies: pos.len() / 3,
+            blocks,
+            t_s,
+            step_s: 0.0,
+            next_step_s: first_step_s,
+            last_step_s: 0.0,
+            acc_known: false,
+            pos: vec![0.0; padded],
+            vel: vec![0.0; padded],
+            acc: vec![0.0; padded],
+        }
+    }
+
+    /// Start of the step, s.
+    pub const fn t_s(&self) -> f64 {
+        self.t_s
+    }
+
+    /// Length of the step that [`Radau::solve`] found, s; negative where time goes back.
+    pub const fn step_s(&self) -> f64 {
+        self.step_s
+    }
+
+    /// Finds the next step and its polynomials, and does not move on yet.
+    ///
+    /// # Errors
+    /// [`StepTooSmall`] when it would have to be shorter than time can be told apart.
+    pub fn solve(&mut self, field: &Field) -> Result<(), StepTooSmall> {
+        debug_assert_eq!(field.bodies(), self.bodies);
+        if !self.acc_known {
+            self.start_accelerations(field);
+        }
+        let mut step_s = self.next_step_s;
+        loop {
+            // The end of the step shall be an exact number.
+            step_s = (self.t_s + step_s) - self.t_s;
+            if step_s.abs() < 1e-14 * self.t_s.abs() || step_s.abs() < f64::MIN_POSITIVE || step_s.is_nan() {
+                return Err(StepTooSmall);
+            }
+            self.step_s = step_s;
+            self.predict();
+            let finite = self.iterate(field);
+            let wanted_s = if finite { STEP_IN_TIME_SCALES * self.time_scale() * step_s.abs() } else { 0.0 };
+            if wanted_s < LARGEST_CHANGE * step_s.abs() {
+                step_s = step_s.signum() * wanted_s.max(0.01 * step_s.abs());
+                continue;
+            }
+            let next = wanted_s.min(step_s.abs() / LARGEST_CHANGE).min(LONGEST_STEP_S);
+            self.next_step_s = step_s.signum() * next;
+            return Ok(());
+        }
+    }
+
+    /// Moves on to the end of the step that [`Radau::solve`] found.
+    pub fn finish(&mut self) {
+        const POS: [f64; 8] = position_weights(1.0);
+        const VEL: [f64; 8] = velocity_weights(1.0);
+        let step = self.step_s;
+        for block in &mut self.blocks {
+            for l in 0..LANES {
+                let sum = |weights: &[f64; 8]| {
+                    let mut sum = 0.0;
+                    for k in (0..7).rev() {
+                        sum += weights[k + 1] * block.b[k][l];
+                    }
+                    sum + weights[0] * block.acc[l]
+                };
+                // The small change first, so that the two sums of each kind lose least.
+                let bent = step * step * sum(&POS) - block.pos_excess[l];
+                let (x, excess) = compensated(block.pos[l], bent);
+                let straight = step * block.vel[l] - (excess + step * block.vel_excess[l]);
+                (block.pos[l], block.pos_excess[l]) = compensated(x, straight);
+                let change = step * sum(&VEL) - block.vel_excess[l];
+                (block.vel[l], block.vel_excess[l]) = compensated(block.vel[l], change);
+            }
+            block.last_b = block.b;
+            block.last_predicted = block.predicted;
+        }
+        self.t_s += step;
+        self.last_step_s = step;
+        self.acc_known = false;
+    }
+
+    /// Positions and velocities at the start of the step: three numbers for each body.
+    pub fn state(&self, pos: &mut [f64], vel: &mut [f64]) {
+        for (i, (x, v)) in pos.iter_mut().zip(vel).enumerate() {
+            (*x, *v) = (self.blocks[i / LANES].pos[i % LANES], self.blocks[i / LANES].vel[i % LANES]);
+        }
+    }
+
+    /// The polynomials of one body in the step, in the order of [`PER_BODY`].
+    pub fn numbers(&self, body: usize) -> [f64; PER_BODY] {
+        let mut numbers = [0.0; PER_BODY];
+        for axis in 0..3 {
+            let i = 3 * body + axis;
+            let (block, l) = (&self.blocks[i / LANES], i % LANES);
+            numbers[axis] = block.pos[l];
+            numbers[3 + axis] = block.vel[l];
+            numbers[6 + axis] = block.acc[l];
+            for (k, b) in block.b.iter().enumerate() {
+                numbers[9 + 3 * k + axis] = b[l];
+            }
+        }
+        numbers
+    }
+
+    fn start_accelerations(&mut self, field: &Field) {
+        for (i, block) in self.blocks.iter().enumerate() {
+            self.pos[i * LANES..][..LANES].copy_from_slice(&block.pos);
+            self.vel[i * LANES..][..LANES].copy_from_slice(&block.vel);
+        }
+        field.accelerations(&self.pos, &self.vel, &mut self.acc);
+        for (block, acc) in self.blocks.iter_mut().zip(self.acc.chunks_exact(LANES)) {
+            block.acc.copy_from_slice(acc);
+        }
+        self.acc_known = true;
+    }
+
+    /// Carries the polynomials of the last step on to this one.
+    fn predict(&mut self) {
+        let ratio = self.step_s / self.last_step_s;
+        // Far beyond the last step its polynomials say nothing.
+        let known = self.last_step_s != 0.0 && ratio < 20.0;
+        for block in &mut self.blocks {
+            if known {
+                let mut power = 1.0;
+                for k in 0..7 {
+                    power *= ratio;
+                    for l in 0..LANES {
+                        let mut sum = 0.0;
+                        for j in (k..7).rev() {
+                            sum += BINOMIAL[j][k] * block.last_b[j][l];
+                        }
+                        block.predicted[k][l] = power * sum;
+                        block.b[k][l] =
+                            block.predicted[k][l] + (block.last_b[k][l] - block.last_predicted[k][l]);
+                    }
+                }
+            } else {
+                block.predicted = [[0.0; LANES]; 7];
+                block.b = [[0.0; LANES]; 7];
+            }
+            for k in 0..7 {
+                for l in 0..LANES {
+                    let mut sum = 0.0;
+                    for j in (k..7).rev() {
+                        sum += G_FROM_B[j][k] * block.b[j][l];
+                    }
+                    block.g[k][l] = sum;
+                }
+            }
+        }
+    }
+
+    /// Predicts and corrects until the polynomials stay as they are. False when a number is no longer finite.
+    fn iterate(&mut self, field: &Field) -> bool {
+        let mut last = f64::INFINITY;
+        for round in 0..MOST_ROUNDS {
+            let (mut changed, mut largest) = (0.0_f64, 0.0_f64);
+            for node in 1..8 {
+                self.place(node, field.needs_velocities());
+                field.accelerations(&self.pos, &self.vel, &mut self.acc);
+                let (change, acc) = match node {
+                    1 => self.correct::<1>(),
+                    2 => self.correct::<2>(),
+                    3 => self.correct::<3>(),
+                    4 => self.correct::<4>(),
+                    5 => self.correct::<5>(),
+                    6 => self.correct::<6>(),
+                    _ => self.correct::<7>(),
+                };
+                (changed, largest) = (change, acc);
+            }
+            if !(changed + largest).is_finite() {
+                return false;
+            }
+            // When it no longer shrinks, it is made of roundings.
+            if changed <= CONVERGED * largest || round > 1 && changed >= last {
+                return true;
+            }
+            last = changed;
+        }
+        true
+    }
+
+    /// Positions (and velocities) at one of the spacings.
+    fn place(&mut self, node: usize, velocities: bool) {
+        let step = self.step_s;
+        let along = step * super::spacings::SPACINGS[node];
+        let mut weights = POSITION[node];
+        for w in &mut weights {
+            *w *= step * step;
+        }
+        for (block, pos) in self.blocks.iter().zip(self.pos.chunks_exact_mut(LANES)) {
+            for l in 0..LANES {
+                let mut sum = 0.0;
+                for k in (0..7).rev() {
+                    sum += weights[k + 1] * block.b[k][l];
+                }
+                sum += weights[0] * block.acc[l] - block.pos_excess[l];
+                pos[l] = block.pos[l] + (along * block.vel[l] + sum);
+            }
+        }
+        if velocities {
+            for (block, vel) in self.blocks.iter().zip(self.vel.chunks_exact_mut(LANES)) {
+                for l in 0..LANES {
+                    let mut sum = 0.0;
+                    for k in (0..7).rev() {
+                        sum += VELOCITY[node][k + 1] * block.b[k][l];
+                    }
+                    sum += VELOCITY[node][0] * block.acc[l];
+                    vel[l] = block.vel[l] + (step * sum - block.vel_excess[l]);
+                }
+            }
+        }
+    }
+
+    /// Takes the accelerations at one of the spacings into the polynomials. Gives the largest change of the last
+    /// coefficient and the largest acceleration.
+    fn correct<const NODE: usize>(&mut self) -> (f64, f64) {
+        let mut changed = [0.0_f64; LANES];
+        let mut largest = [0.0_f64; LANES];
+        for (block, acc) in self.blocks.iter_mut().zip(self.acc.chunks_exact(LANES)) {
+            for l in 0..LANES {
+                let mut g = (acc[l] - block.acc[l]) * INVERSE[NODE][0];
+                for j in 1..NODE {
+                    g = (g - block.g[j - 1][l]) * INVERSE[NODE][j];
+                }
+                let change = g - block.g[NODE - 1][l];
+                block.g[NODE - 1][l] = g;
+                for k in 0..NODE {
+                    block.b[k][l] += B_FROM_G[NODE - 1][k] * change;
+                }
+                // A NaN must not get lost here, so no `max`.
+                changed[l] = if change.abs() <= changed[l] { changed[l] } else { change.abs() };
+                largest[l] = if acc[l].abs() <= largest[l] { largest[l] } else { acc[l].abs() };
+            }
+        }
+        let most = |lanes: Lanes| lanes.into_iter().fold(0.0, |m, x: f64| if x <= m { m } else { x });
+        (most(changed), most(largest))
+    }
+
+    /// The shortest time scale of all bodies at the end of the step, in units of the step.
+    fn time_scale(&self) -> f64 {
+        let mut least = f64::INFINITY;
+        let mut largest = 0.0_f64;
+        for body in 0..self.bodies {
+            largest = largest.max(self.derivatives(body)[0]);
+        }
+        for body in 0..self.bodies {
+            let [a, jerk, snap, crackle] = self.derivatives(body);
+            if a.max(jerk).max(snap) <= NOISE * NOISE * largest {
+                continue;
+            }
+            let square = ((a * snap).sqrt() + jerk) / ((jerk * crackle).sqrt() + snap);
+            // Not finite where nothing changes: no limit.
+            if square < least {
+                least = square;
+            }
+        }
+        least.sqrt()
+    }
+
+    /// Squares of the acceleration and its first three derivatives at the end of the step, in units of the step.
+    fn derivatives(&self, body: usize) -> [f64; 4] {
+        let mut squares = [0.0; 4];
+        for axis in 0..3 {
+            let i = 3 * body + axis;
+            let (block, l) = (&self.blocks[i / LANES], i % LANES);
+            let mut d = [block.acc[l], 0.0, 0.0, 0.0];
+            let mut n = 1.0;
+            for b in &block.b {
+                d[0] += b[l];
+                d[1] += n * b[l];
+                d[2] += n * (n - 1.0) * b[l];
+                d[3] += n * (n - 1.0) * (n - 2.0) * b[l];
+                n += 1.0;
+            }
+            for (square, d) in squares.iter_mut().zip(d) {
+                *square += d * d;
+            }
+        }
+        squares
+    }
+}
+
+/// A sum, and how much of it is rounding: what is to be taken from the next addend.
+///
+/// # Source
+/// W. Kahan, "Further remarks on reducing truncation errors", Comm. ACM 8 (1965), 40.
+#[inline]
+fn compensated(sum: f64, addend: f64) -> (f64, f64) {
+    let new = sum + addend;
+    (new, (new - sum) - addend)
+}
