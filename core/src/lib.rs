@@ -16,6 +16,7 @@ pub mod conic;
 pub mod constants;
 pub mod ephemeris;
 pub mod gravity;
+pub mod initial;
 pub mod integrate;
 pub mod math;
 pub mod picture;

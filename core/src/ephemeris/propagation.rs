@@ -3,7 +3,7 @@
 use super::{Ephemeris, State};
 use crate::gravity::Field;
 use crate::integrate::{PER_BODY, Radau};
-use crate::resolve::InitialState;
+use crate::initial::InitialState;
 use crate::scenario::BodyId;
 use std::fmt;
 

@@ -4,7 +4,7 @@
 //! and allocate nothing. Forces between two bodies act both ways, so that momentum is kept to rounding. A new force is a
 //! file with an `add` and a line in [`Field::accelerations`].
 
-use crate::resolve::{Forces, InitialState};
+use crate::initial::{Forces, InitialState};
 
 mod newton;
 mod oblateness;
@@ -87,7 +87,7 @@ impl Field {
 mod tests {
     use super::*;
     use crate::Vector3;
-    use crate::resolve::{InitialBody, Oblate};
+    use crate::initial::{InitialBody, Oblate};
     use crate::scenario::{BodyId, Surface};
     use proptest::prelude::*;
 

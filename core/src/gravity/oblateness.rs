@@ -1,6 +1,6 @@
 //! The pull of a body's equatorial bulge.
 
-use crate::resolve::Oblate;
+use crate::initial::Oblate;
 
 /// A body whose equator bulges, by its second zonal harmonic.
 #[derive(Debug, Clone, PartialEq)]

@@ -1,7 +1,7 @@
 //! The show: the plan of its beats and the clock that serves the talk.
 
 use crate::ephemeris::Ephemeris;
-use crate::resolve::InitialState;
+use crate::initial::InitialState;
 use crate::scenario::Scenario;
 
 pub mod clock;

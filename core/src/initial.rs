@@ -1,0 +1,56 @@
+//! Where everything starts: what a scenario comes down to, and all that the integrator needs.
+
+use crate::Vector3;
+use crate::scenario::{BodyId, Surface};
+
+/// Everything that the integrator needs. Barycentric: the centre of mass of all massive bodies is at rest at the origin.
+#[derive(Debug, Clone, PartialEq)]
+pub struct InitialState {
+    /// The bodies of the scenario in its order, then the unseen companions.
+    pub bodies: Vec<InitialBody>,
+    /// How many of them the scenario names; the rest are companions, never shown or listed.
+    pub listed: usize,
+    /// The forces beyond Newton's attraction of points.
+    pub forces: Forces,
+}
+
+/// One body at the start.
+#[derive(Debug, Clone, PartialEq)]
+pub struct InitialBody {
+    /// Its name.
+    pub name: String,
+    /// Its gravity, m³/s²; 0 for a tracer.
+    pub gm_m3_s2: f64,
+    /// Its radius, m; 0 for a point.
+    pub radius_m: f64,
+    /// What contact with it does.
+    pub surface: Surface,
+    /// The body that it goes around, falls onto or was placed about.
+    pub primary: Option<BodyId>,
+    /// Position, m.
+    pub pos: Vector3<f64>,
+    /// Velocity, m/s.
+    pub vel: Vector3<f64>,
+}
+
+/// The forces beyond Newton's attraction of points.
+#[derive(Debug, Clone, PartialEq, Default)]
+pub struct Forces {
+    /// The body whose first post-Newtonian term acts on all others.
+    pub relativity: Option<BodyId>,
+    /// Oblate bodies.
+    pub oblate: Vec<Oblate>,
+}
+
+/// A body whose equator bulges.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Oblate {
+    /// Which one.
+    pub body: BodyId,
+    /// J2, without dimension.
+    pub j2: f64,
+    /// The equatorial radius that belongs to that J2, m.
+    pub radius_m: f64,
+    /// Direction of the pole, a unit vector.
+    pub pole: Vector3<f64>,
+}
