@@ -7,10 +7,12 @@
 use crate::Vector3;
 use crate::scenario::BodyId;
 
+pub mod chunk;
 pub mod propagation;
 pub mod track;
 
 pub use crate::integrate::PER_BODY;
+pub use chunk::{Chunk, ChunkError, Mark};
 pub use propagation::{Propagation, Stopped, Why, states_at};
 pub use track::Track;
 

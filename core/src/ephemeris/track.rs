@@ -71,6 +71,21 @@ impl Track {
         Some(evaluate(self.numbers(index, body)?, step_s, h))
     }
 
+    /// Writes the steps from `from` on: all starts, all lengths, all polynomials.
+    pub(super) fn write_since(&self, from: usize, numbers: &mut Vec<f64>) {
+        numbers.extend_from_slice(self.starts_s.get(from..).unwrap_or_default());
+        numbers.extend_from_slice(self.steps_s.get(from..).unwrap_or_default());
+        numbers.extend_from_slice(self.data.get(from * self.bodies * PER_BODY..).unwrap_or_default());
+    }
+
+    /// Adds `steps` steps as [`Track::write_since`] wrote them.
+    pub(super) fn read(&mut self, steps: usize, numbers: &[f64]) {
+        debug_assert_eq!(numbers.len(), steps * (2 + self.bodies * PER_BODY));
+        self.starts_s.extend_from_slice(&numbers[..steps]);
+        self.steps_s.extend_from_slice(&numbers[steps..2 * steps]);
+        self.data.extend_from_slice(&numbers[2 * steps..]);
+    }
+
     /// Memory held, bytes.
     pub fn bytes(&self) -> usize {
         (self.data.len() + self.starts_s.len() + self.steps_s.len()) * size_of::<f64>()
