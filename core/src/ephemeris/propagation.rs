@@ -2,8 +2,8 @@
 
 use super::{Ephemeris, State};
 use crate::gravity::Field;
-use crate::integrate::{PER_BODY, Radau};
 use crate::initial::InitialState;
+use crate::integrate::{PER_BODY, Radau};
 use crate::scenario::BodyId;
 use std::fmt;
 
