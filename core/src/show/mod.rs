@@ -5,11 +5,13 @@ use crate::initial::InitialState;
 use crate::scenario::Scenario;
 
 pub mod clock;
+pub mod fingerprint;
 mod glide;
 mod pacing;
 pub mod plan;
 
 pub use clock::{Action, Bookmark, Clock, Moment};
+pub use fingerprint::Fingerprint;
 pub use pacing::{EaseOut, Pacing};
 pub use plan::{Cue, Plan, PlannedBeat, Run, Way};
 
