@@ -11,6 +11,21 @@ pub mod text;
 pub use table::{Dimension, Unit};
 pub use text::UnitError;
 
+/// What all quantities have in common.
+pub trait Quantity: Copy + Sized {
+    /// The dimensions whose units fit, the usual one first.
+    const DIMENSIONS: &'static [Dimension];
+    /// A text that parses.
+    const EXAMPLE: &'static str;
+    /// From a number with a unit.
+    ///
+    /// # Errors
+    /// When the text is not a number with a unit that fits.
+    fn parse(text: &str) -> Result<Self, UnitError>;
+    /// The SI value.
+    fn si(self) -> f64;
+}
+
 macro_rules! quantity {
     ($(#[$doc:meta])* $name:ident, $from:ident, $get:ident, $dimensions:expr, $example:literal) => {
         $(#[$doc])*
@@ -51,6 +66,18 @@ macro_rules! quantity {
             /// (Infinities and NaN, which no text gives, are written but don't read back.)
             pub fn to_text(self) -> String {
                 text::to_text(self.0, Self::DIMENSIONS)
+            }
+        }
+
+        impl Quantity for $name {
+            const DIMENSIONS: &'static [Dimension] = Self::DIMENSIONS;
+            const EXAMPLE: &'static str = Self::EXAMPLE;
+
+            fn parse(text: &str) -> Result<Self, UnitError> {
+                Self::parse(text)
+            }
+            fn si(self) -> f64 {
+                self.0
             }
         }
 

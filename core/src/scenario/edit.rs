@@ -1,0 +1,1 @@
+//! Changing the text of a scenario.
