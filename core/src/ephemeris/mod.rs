@@ -10,6 +10,10 @@ use crate::scenario::BodyId;
 pub mod chunk;
 pub mod osculating;
 pub mod propagation;
+mod run;
+#[cfg(test)]
+mod tests;
+mod touch;
 pub mod track;
 
 pub use crate::integrate::PER_BODY;

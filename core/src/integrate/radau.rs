@@ -328,13 +328,11 @@ impl Radau {
                 for k in 0..NODE {
                     block.b[k][l] += B_FROM_G[NODE - 1][k] * change;
                 }
-                // A NaN must not get lost here, so no `max`.
-                changed[l] = if change.abs() <= changed[l] { changed[l] } else { change.abs() };
-                largest[l] = if acc[l].abs() <= largest[l] { largest[l] } else { acc[l].abs() };
+                changed[l] = larger(changed[l], change.abs());
+                largest[l] = larger(largest[l], acc[l].abs());
             }
         }
-        let most = |lanes: Lanes| lanes.into_iter().fold(0.0, |m, x: f64| if x <= m { m } else { x });
-        (most(changed), most(largest))
+        (changed.into_iter().fold(0.0, larger), largest.into_iter().fold(0.0, larger))
     }
 
     /// The shortest time scale of all bodies at the end of the step, in units of the step.
@@ -379,6 +377,12 @@ impl Radau {
         }
         squares
     }
+}
+
+/// The larger of two numbers; NaN when one of them is (`f64::max` would lose it).
+#[inline]
+fn larger(a: f64, b: f64) -> f64 {
+    if b > a || b.is_nan() { b } else { a }
 }
 
 /// A sum, and how much of it is rounding: what is to be taken from the next addend.

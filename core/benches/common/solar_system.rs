@@ -5,8 +5,8 @@
 //! planets from Mars on are the barycentres of their systems.
 
 use fallaround_core::Vector3;
+use fallaround_core::initial::{Forces, InitialBody, InitialState};
 use fallaround_core::math::frame::ecliptic_from_equatorial;
-use fallaround_core::resolve::{Forces, InitialBody, InitialState};
 use fallaround_core::scenario::Surface;
 
 /// Name, GM, position and velocity of each.
@@ -83,7 +83,7 @@ const ROWS: [Row; 11] = [
 
 /// The bodies with these names ("Sun", "Mercury", … "Pluto", "Moon"), or all of them when there are none, along the ecliptic axes, about
 /// their common centre of mass, with Newton's forces alone.
-pub fn solar_system(names: &[&str]) -> InitialState {
+pub(crate) fn solar_system(names: &[&str]) -> InitialState {
     let mut bodies = Vec::new();
     for (name, gm, pos, vel) in ROWS {
         if names.is_empty() || names.contains(&name) {
@@ -109,5 +109,5 @@ pub fn solar_system(names: &[&str]) -> InitialState {
 }
 
 /// The Sun and the eight planets, without the Moon.
-pub const PLANETS: [&str; 9] =
+pub(crate) const PLANETS: [&str; 9] =
     ["Sun", "Mercury", "Venus", "Earth", "Mars", "Jupiter", "Saturn", "Uranus", "Neptune"];

@@ -1,0 +1,314 @@
+//! The integration in one direction of time: steps, contacts, and what they change.
+
+use super::track::evaluate;
+use super::{Contact, Outcome, State, touch};
+use crate::Vector3;
+use crate::gravity::Field;
+use crate::initial::InitialState;
+use crate::integrate::{PER_BODY, Radau, StepTooSmall};
+use crate::scenario::{BodyId, Surface};
+
+/// A rebound that brings a body back within this time is not seen any more, s.
+const SHORTEST_REBOUND_S: f64 = 0.01;
+
+/// As [`SHORTEST_REBOUND_S`], as a part of the time scale √(r³ / GM) of the surface.
+const SHORTEST_REBOUND: f64 = 1e-5;
+
+/// When a contact is noted that happens at the very start of the backward run, s: it belongs to the time before 0.
+const JUST_BEFORE_START_S: f64 = -1e-9;
+
+/// A body at rest on another.
+#[derive(Debug, Clone, Copy)]
+struct AtRest {
+    body: usize,
+    host: usize,
+    offset: Vector3<f64>,
+}
+
+/// What a step ended in.
+pub(super) struct Step {
+    /// Start and length, s; no length where a contact came at once.
+    pub(super) start_s: f64,
+    pub(super) step_s: f64,
+    pub(super) contact: Option<Contact>,
+}
+
+/// The integration in one direction of time.
+#[derive(Debug, Clone)]
+pub(super) struct Run {
+    /// The bodies that move by themselves.
+    free: Vec<usize>,
+    at_rest: Vec<AtRest>,
+    /// GM of every body, after merges.
+    gms: Vec<f64>,
+    /// Pairs of places in `free` that can touch, with the distance at which they do.
+    pairs: Vec<(usize, usize, f64)>,
+    field: Field,
+    radau: Radau,
+    /// Numbers of the free bodies in the step.
+    moving: Vec<f64>,
+    /// Numbers of all bodies in the step.
+    numbers: Vec<f64>,
+    reaches_m: Vec<f64>,
+}
+
+impl Run {
+    /// From time 0; `direction` is 1 or -1.
+    pub(super) fn new(initial: &InitialState, direction: f64) -> Self {
+        let states: Vec<State> = initial.bodies.iter().map(|b| State { pos: b.pos, vel: b.vel }).collect();
+        let gms: Vec<f64> = initial.bodies.iter().map(|body| body.gm_m3_s2).collect();
+        let first_s = direction * first_step_s(&gms, &states);
+        let n = states.len();
+        let mut run = Self {
+            free: (0..n).collect(),
+            at_rest: Vec::new(),
+            gms,
+            pairs: Vec::new(),
+            field: Field::new(initial),
+            radau: Radau::new(0.0, &[], &[], first_s),
+            moving: Vec::new(),
+            numbers: vec![0.0; n * PER_BODY],
+            reaches_m: Vec::new(),
+        };
+        run.set_off(initial, 0.0, &states, first_s);
+        run
+    }
+
+    /// Without contacts: every body goes through every other.
+    pub(super) fn without_contacts(initial: &InitialState, direction: f64) -> Self {
+        let mut run = Self::new(initial, direction);
+        run.pairs.clear();
+        run
+    }
+
+    /// Time reached, s.
+    pub(super) const fn t_s(&self) -> f64 {
+        self.radau.t_s()
+    }
+
+    /// The numbers of all bodies in the last step.
+    pub(super) fn numbers(&self) -> &[f64] {
+        &self.numbers
+    }
+
+    /// Starts from states of the free bodies.
+    fn set_off(&mut self, initial: &InitialState, t_s: f64, states: &[State], first_step_s: f64) {
+        let pos: Vec<f64> = states.iter().flat_map(|s| <[f64; 3]>::from(s.pos)).collect();
+        let vel: Vec<f64> = states.iter().flat_map(|s| <[f64; 3]>::from(s.vel)).collect();
+        self.radau = Radau::new(t_s, &pos, &vel, first_step_s);
+        self.field =
+            Field::of(self.free.iter().map(|&body| self.gms[body]).collect(), &initial.forces, &self.free);
+        for rest in &self.at_rest {
+            if let Some(host) = self.free.iter().position(|&body| body == rest.host)
+                && self.gms[rest.body] != 0.0
+            {
+                self.field.rest(host, rest.offset.into(), self.gms[rest.body]);
+            }
+        }
+        self.moving.resize(self.free.len() * PER_BODY, 0.0);
+        self.pairs.clear();
+        for i in 0..self.free.len() {
+            for j in i + 1..self.free.len() {
+                let radius_m = initial.bodies[self.free[i]].radius_m + initial.bodies[self.free[j]].radius_m;
+                if radius_m > 0.0 {
+                    self.pairs.push((i, j, radius_m));
+                }
+            }
+        }
+    }
+
+    /// One step, cut short by the first contact in it.
+    pub(super) fn step(&mut self, initial: &InitialState) -> Result<Step, StepTooSmall> {
+        self.radau.solve(&self.field)?;
+        for (place, numbers) in self.moving.chunks_exact_mut(PER_BODY).enumerate() {
+            numbers.copy_from_slice(&self.radau.numbers(place));
+        }
+        let (start_s, whole_s) = (self.radau.t_s(), self.radau.step_s());
+        let Some((i, j, h)) = self.first_touch(whole_s) else {
+            self.spread();
+            self.radau.finish();
+            return Ok(Step { start_s, step_s: whole_s, contact: None });
+        };
+        let t_s = start_s + h * whole_s;
+        let step_s = t_s - start_s;
+        let h = step_s / whole_s;
+        let mut states: Vec<State> =
+            self.moving.chunks_exact(PER_BODY).map(|n| evaluate(n, whole_s, h)).collect();
+        shorten(&mut self.moving, h);
+        self.spread();
+        let mut contact = self.collide(initial, i, j, &mut states);
+        contact.t_s = if whole_s < 0.0 && t_s >= 0.0 { JUST_BEFORE_START_S } else { t_s };
+        self.set_off(initial, t_s, &states, whole_s);
+        Ok(Step { start_s, step_s, contact: Some(contact) })
+    }
+
+    /// The first touch of the step: places of the two bodies, and the part of the step.
+    fn first_touch(&mut self, step_s: f64) -> Option<(usize, usize, f64)> {
+        if self.pairs.is_empty() {
+            return None;
+        }
+        self.reaches_m.clear();
+        self.reaches_m.extend(self.moving.chunks_exact(PER_BODY).map(|n| touch::reach_m(n, step_s)));
+        let mut first: Option<(usize, usize, f64)> = None;
+        for &(i, j, radius_m) in &self.pairs {
+            let (a, b) = (&self.moving[i * PER_BODY..][..PER_BODY], &self.moving[j * PER_BODY..][..PER_BODY]);
+            let d = [a[0] - b[0], a[1] - b[1], a[2] - b[2]];
+            let within_m = radius_m + self.reaches_m[i] + self.reaches_m[j];
+            if d[0] * d[0] + d[1] * d[1] + d[2] * d[2] > within_m * within_m {
+                continue;
+            }
+            let size = |n: &[f64]| n[0].abs() + n[1].abs() + n[2].abs();
+            let rounding_m = 4.0 * f64::EPSILON * (size(a) + size(b));
+            if let Some(h) = touch::first(a, b, step_s, radius_m, rounding_m)
+                && first.is_none_or(|(_, _, earlier)| h < earlier)
+            {
+                first = Some((i, j, h));
+            }
+        }
+        first
+    }
+
+    /// Gives every body its numbers: the free ones their own, those at rest their host's.
+    fn spread(&mut self) {
+        for (place, &body) in self.free.iter().enumerate() {
+            self.numbers[body * PER_BODY..][..PER_BODY]
+                .copy_from_slice(&self.moving[place * PER_BODY..][..PER_BODY]);
+        }
+        for rest in &self.at_rest {
+            self.numbers.copy_within(rest.host * PER_BODY..(rest.host + 1) * PER_BODY, rest.body * PER_BODY);
+            for (x, offset) in self.numbers[rest.body * PER_BODY..][..3].iter_mut().zip(&rest.offset) {
+                *x += offset;
+            }
+        }
+    }
+
+    /// GM of a body and all that rests on it.
+    fn total(&self, body: usize) -> f64 {
+        self.gms[body]
+            + self
+                .at_rest
+                .iter()
+                .filter(|rest| rest.host == body)
+                .map(|rest| self.gms[rest.body])
+                .sum::<f64>()
+    }
+
+    /// Two bodies touch: changes their states, and which bodies are free. The time of the contact is left to the caller.
+    fn collide(&mut self, initial: &InitialState, i: usize, j: usize, states: &mut Vec<State>) -> Contact {
+        let rank = |place: usize| {
+            let body = self.free[place];
+            (initial.bodies[body].radius_m, self.gms[body])
+        };
+        let (onto, touching) = if rank(j) > rank(i) { (j, i) } else { (i, j) };
+        let (host, body) = (self.free[onto], self.free[touching]);
+        let (host_gm, body_gm) = (self.total(host), self.total(body));
+        let apart = states[touching].pos - states[onto].pos;
+        let rate = states[touching].vel - states[onto].vel;
+        let distance_m = apart.norm();
+        let outwards = apart / distance_m;
+        let closing_m_s = -rate.dot(&outwards);
+        let surface = initial.bodies[host].surface;
+        let outcome = match surface {
+            Surface::Merge => Outcome::Merged,
+            Surface::Stop => Outcome::Stopped,
+            Surface::Bounce { restitution } => {
+                let rebound_m_s = restitution * closing_m_s;
+                let along2 = rate.norm_squared() - closing_m_s * closing_m_s;
+                let gm = host_gm + body_gm;
+                let back_m_s2 = gm / (distance_m * distance_m) - along2 / distance_m;
+                let shortest_s = SHORTEST_REBOUND_S
+                    .max(SHORTEST_REBOUND * (distance_m * distance_m * distance_m / gm).sqrt());
+                // Also false where the rebound isn't a number.
+                let visible = rebound_m_s > 0.0 && 2.0 * rebound_m_s > shortest_s * back_m_s2;
+                if visible { Outcome::Bounced } else { Outcome::Stopped }
+            }
+        };
+        // Shares of the impulse; two tracers: the smaller one takes all of it.
+        let all = host_gm + body_gm;
+        let (to_host, to_body) = if all > 0.0 { (body_gm / all, host_gm / all) } else { (0.0, 1.0) };
+        if let (Outcome::Bounced, Surface::Bounce { restitution }) = (outcome, surface) {
+            let change = outwards * ((1.0 + restitution) * closing_m_s);
+            states[touching].vel += change * to_body;
+            states[onto].vel -= change * to_host;
+        } else {
+            states[onto].vel += rate * to_host;
+            for rest in self.at_rest.iter_mut().filter(|rest| rest.host == body) {
+                rest.host = host;
+                rest.offset += apart;
+            }
+            self.at_rest.push(AtRest { body, host, offset: apart });
+            if outcome == Outcome::Merged {
+                self.gms[host] += self.gms[body];
+                self.gms[body] = 0.0;
+            }
+            self.free.remove(touching);
+            states.remove(touching);
+        }
+        Contact {
+            t_s: 0.0,
+            body: BodyId(body),
+            onto: BodyId(host),
+            outcome,
+            speed_m_s: rate.norm(),
+            onto_gm_m3_s2: self.gms[host],
+        }
+    }
+
+    /// The pair with the shortest time scale: those that fall into each other when the step becomes too small.
+    pub(super) fn closest(&self) -> [BodyId; 2] {
+        let gms = self.field.gms_m3_s2();
+        let place = |place: usize| {
+            let n = self.radau.numbers(place);
+            Vector3::new(n[0], n[1], n[2])
+        };
+        let mut pair = (0, 0);
+        let mut least = f64::INFINITY;
+        for i in 0..gms.len() {
+            for j in i + 1..gms.len() {
+                let square = fall_squared(gms[i] + gms[j], (place(i) - place(j)).norm());
+                if square < least {
+                    (pair, least) = ((i, j), square);
+                }
+            }
+        }
+        [BodyId(self.free[pair.0]), BodyId(self.free[pair.1])]
+    }
+}
+
+/// Makes polynomials of a step those of its first part: the same path in new units.
+fn shorten(numbers: &mut [f64], h: f64) {
+    for n in numbers.chunks_exact_mut(PER_BODY) {
+        let mut power = 1.0;
+        for row in n[9..].chunks_exact_mut(3) {
+            power *= h;
+            for b in row {
+                *b *= power;
+            }
+        }
+    }
+}
+
+/// Where the search for the first step starts, s: a small part of the shortest time in which a pair falls or passes.
+fn first_step_s(gms: &[f64], states: &[State]) -> f64 {
+    /// The search shortens a step more cheaply than steps grow.
+    const PART: f64 = 0.05;
+    /// Where nothing pulls on anything; any number does.
+    const FREE_S: f64 = 1e6;
+    let mut least = f64::INFINITY;
+    for i in 0..gms.len() {
+        for j in i + 1..gms.len() {
+            let gm = gms[i] + gms[j];
+            if gm > 0.0 {
+                let r = (states[i].pos - states[j].pos).norm();
+                let passing = r * r / (states[i].vel - states[j].vel).norm_squared();
+                least = least.min(fall_squared(gm, r)).min(passing);
+            }
+        }
+    }
+    if least.is_finite() && least > 0.0 { PART * least.sqrt() } else { FREE_S }
+}
+
+/// Square of the time in which two bodies would fall into each other, to a factor; infinite for two tracers.
+fn fall_squared(gm: f64, r: f64) -> f64 {
+    r * r * r / gm
+}
