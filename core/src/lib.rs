@@ -12,6 +12,10 @@
 //! Inside, quantities are SI (metres, seconds, radians, GM in m³/s²), axes are the ecliptic and equinox of
 //! J2000, and times are seconds of TDB from the scenario's start, unless a name says otherwise.
 
+// Test data is shared with benches and examples, which see the crate from outside.
+#[cfg(test)]
+extern crate self as fallaround_core;
+
 pub mod conic;
 pub mod constants;
 pub mod ephemeris;
