@@ -60,7 +60,10 @@ pub(super) fn check_names(sections: &[Reading<'_>], names: &Names) {
         let name = names.name(BodyId(index));
         let Some(field) = section.get("name") else {
             if name.is_empty() {
-                section.need("name");
+                // A real body would be called by what it is; that it isn't one has its own problem.
+                if section.get("real").is_none() {
+                    section.need("name");
+                }
                 continue;
             }
             report_twin(section, &section.at, names, index);

@@ -316,6 +316,20 @@ fn beats_that_cannot_be_are_refused() {
 }
 
 #[test]
+fn a_text_left_open_is_told_where_it_starts() {
+    for (line, column) in [
+        ("title = \"a", 9),
+        ("title = \"a \\\" b", 9),
+        ("title = 'a", 9),
+        ("a = [\"x\", \"y]", 11),
+        ("title = \"\"\"\nmore\nand more\n", 9),
+    ] {
+        let problem = parse(line).problems.remove(0);
+        assert_eq!(problem.place, Place { line: 1, column }, "{line}: {problem}");
+    }
+}
+
+#[test]
 fn limits_hold() {
     let many: String = (0..201).map(|i| format!("[[body]]\nname = \"B{i}\"\nreal = \"Mars\"\n")).collect();
     assert!(errors(&with(&many)).iter().any(|e| e.contains("more than 200 bodies")));
