@@ -1,0 +1,336 @@
+//! Names and numbers beside bodies: clear of one another, of bodies, of caption and foot line, and calm.
+//!
+//! Each label has a few places around its body. Which one it takes is decided at fixed instants of model time, a
+//! fraction of a show second apart, one after another from the beat's start: a label keeps its place until that is
+//! worse than another by a margin, now or soon (the future is known), and then slides. So the labels at an
+//! instant follow from the beat and the instant alone, whichever way the presenter came there. Between
+//! two instants, places are interpolated. What touches something more important fades, and waits unseen.
+
+use super::Tag;
+use super::frame::Frame;
+use super::geometry::{Px, Rect, length};
+use super::list::{Anchor, Colour};
+use super::look;
+use super::scene::{Scene, Spot, Words};
+
+/// Steps a show second in which places are decided.
+pub const STEPS_A_SECOND: f64 = 8.0;
+/// How much of the way to its place a label slides in one step.
+const SLIDE: f64 = 0.3;
+/// Steps ahead that a label looks for trouble.
+pub const LOOK_AHEAD: usize = 8;
+/// How much worse a place must be than another before a label leaves it.
+const LOYALTY: f64 = 6.0;
+
+/// What a label belongs to. Also its order among equals.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Key {
+    /// A body, by index.
+    Body(usize),
+    /// The n-th apsis of a body.
+    Apsis(usize, usize),
+}
+
+/// A label to be placed.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Block {
+    /// What it belongs to.
+    pub key: Key,
+    /// Where that is, px.
+    pub at: Px,
+    /// Radius of that, px.
+    pub radius: f64,
+    /// Its lines.
+    pub lines: Vec<Line>,
+}
+
+/// One line of a label.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Line {
+    /// The words.
+    pub text: String,
+    /// Weight.
+    pub weight: u16,
+    /// Colour.
+    pub colour: Colour,
+    /// What it stands for.
+    pub tag: Tag,
+}
+
+/// What labels keep clear of.
+#[derive(Debug, Clone, Default)]
+pub struct Obstacles {
+    /// Words that stand fast: caption, foot line, areas.
+    pub rects: Vec<Rect>,
+    /// Discs of bodies: index of the body, middle, radius.
+    pub discs: Vec<(usize, Px, f64)>,
+}
+
+/// Where a label is.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Standing {
+    /// What it belongs to.
+    pub key: Key,
+    place: usize,
+    /// Middle of its box relative to what it belongs to, px.
+    offset: Px,
+    /// 0: lines start at the box's left; 1: they end at its right.
+    lean: f64,
+}
+
+/// The places: which way from the body, in the order in which they are liked.
+const PLACES: [Px; 8] = [
+    [1.0, 0.0],
+    [0.75, -0.75],
+    [0.75, 0.75],
+    [-1.0, 0.0],
+    [-0.75, -0.75],
+    [-0.75, 0.75],
+    [0.0, 1.0],
+    [0.0, -1.0],
+];
+/// The place inside a large disc.
+const INSIDE: usize = PLACES.len();
+
+impl Block {
+    /// Width and height of its box, px.
+    pub fn size(&self, frame: &Frame) -> Px {
+        let widths = self.lines.iter().map(|l| super::type_metrics::width(&l.text, frame.label, l.weight));
+        [widths.fold(0.0, f64::max), line_height(frame) * count(self.lines.len())]
+    }
+
+    /// Middle of its box at a place, relative to what it belongs to; `None`: it has no such place.
+    fn offset(&self, place: usize, frame: &Frame) -> Option<Px> {
+        let [w, h] = self.size(frame);
+        let gap = 0.38 * frame.label;
+        if place == INSIDE {
+            // In the part of the disc that is in the picture.
+            let safe = frame.whole().grown(-frame.margin);
+            let middle = [
+                self.at[0].clamp(safe.left + 0.5 * w, (safe.right - 0.5 * w).max(safe.left + 0.5 * w)),
+                self.at[1].clamp(safe.top + 0.5 * h, (safe.bottom - 0.5 * h).max(safe.top + 0.5 * h)),
+            ];
+            let offset = [middle[0] - self.at[0], middle[1] - self.at[1]];
+            let reach = length([offset[0].abs() + 0.5 * w, offset[1].abs() + 0.5 * h]);
+            return (reach + gap < self.radius).then_some(offset);
+        }
+        let [x, y] = PLACES[place];
+        let reach = self.radius + gap;
+        // Beside it, the first line is level with the middle; above and below, the whole box stands clear.
+        let level = if y.abs() < 0.1 { 0.5 * h - 0.5 * line_height(frame) } else { 0.0 };
+        Some([x * reach + sign(x) * 0.5 * w, y * reach + sign(y) * 0.5 * h * 0.92 + level])
+    }
+}
+
+fn sign(v: f64) -> f64 {
+    if v > 0.1 {
+        1.0
+    } else if v < -0.1 {
+        -1.0
+    } else {
+        0.0
+    }
+}
+
+fn count(n: usize) -> f64 {
+    u32::try_from(n).map_or(0.0, f64::from)
+}
+
+/// Height of one line of a label, px.
+pub fn line_height(frame: &Frame) -> f64 {
+    1.12 * frame.label
+}
+
+/// The box in which the ink of a label's lines lies: its height but for the leading.
+fn ink_box(middle: Px, size: Px, frame: &Frame) -> Rect {
+    Rect::about(middle, size[0], size[1] - 0.18 * frame.label)
+}
+
+/// Decides the places at one instant, from those at the instant before.
+///
+/// `soon` are the same labels and obstacles a little later; `clutter` are points of lines that names had better
+/// not cover.
+pub fn step(
+    before: &[Standing],
+    now: (&[Block], &Obstacles),
+    soon: (&[Block], &Obstacles),
+    clutter: &[Px],
+    frame: &Frame,
+) -> Vec<Standing> {
+    let (blocks, obstacles) = now;
+    let mut taken: Vec<Rect> = Vec::new();
+    let mut taken_soon: Vec<Rect> = Vec::new();
+    let mut standings = Vec::with_capacity(blocks.len());
+    for block in blocks {
+        let later = soon.0.iter().find(|b| b.key == block.key);
+        let old = before.iter().find(|s| s.key == block.key);
+        let mut best: Option<(usize, f64, Px)> = None;
+        let mut kept: Option<(usize, f64, Px)> = None;
+        for place in [INSIDE].into_iter().chain(0..INSIDE) {
+            let Some(offset) = block.offset(place, frame) else {
+                continue;
+            };
+            let mut cost = trouble(block, offset, place, obstacles, &taken, frame);
+            if let Some((later, offset)) = later.and_then(|l| Some((l, l.offset(place, frame)?))) {
+                cost = cost.max(trouble(later, offset, place, soon.1, &taken_soon, frame));
+            }
+            let middle = [block.at[0] + offset[0], block.at[1] + offset[1]];
+            let rect = ink_box(middle, block.size(frame), frame).grown(0.15 * frame.label);
+            cost += 1.5 * count(clutter.iter().filter(|p| rect.holds(**p)).count().min(8));
+            cost += if place == INSIDE { -20.0 } else { 0.6 * count(place) };
+            if old.is_some_and(|o| o.place == place) {
+                kept = Some((place, cost, offset));
+            }
+            if best.is_none_or(|b| cost < b.1) {
+                best = Some((place, cost, offset));
+            }
+        }
+        let Some(best) = best else {
+            continue;
+        };
+        let (place, _, goal) = kept.filter(|k| k.1 <= best.1 + LOYALTY).unwrap_or(best);
+        let lean_goal = lean(place);
+        let (offset, lean) = old.map_or((goal, lean_goal), |o| {
+            let go = |from: f64, to: f64| from + (to - from) * SLIDE;
+            ([go(o.offset[0], goal[0]), go(o.offset[1], goal[1])], go(o.lean, lean_goal))
+        });
+        let size = block.size(frame);
+        taken.push(ink_box([block.at[0] + goal[0], block.at[1] + goal[1]], size, frame));
+        if let Some((later, goal)) = later.and_then(|l| Some((l, l.offset(place, frame)?))) {
+            taken_soon.push(ink_box(
+                [later.at[0] + goal[0], later.at[1] + goal[1]],
+                later.size(frame),
+                frame,
+            ));
+        }
+        standings.push(Standing { key: block.key, place, offset, lean });
+    }
+    standings
+}
+
+fn lean(place: usize) -> f64 {
+    match PLACES.get(place) {
+        Some([x, _]) if *x > 0.1 => 0.0,
+        Some([x, _]) if *x < -0.1 => 1.0,
+        _ => 0.5,
+    }
+}
+
+/// How badly a place is taken: 0 free, 100 and more covered.
+fn trouble(
+    block: &Block,
+    offset: Px,
+    place: usize,
+    obstacles: &Obstacles,
+    taken: &[Rect],
+    frame: &Frame,
+) -> f64 {
+    let rect = ink_box([block.at[0] + offset[0], block.at[1] + offset[1]], block.size(frame), frame);
+    let clear = clearance(&rect, block.key, place == INSIDE, obstacles, taken, frame);
+    let need = 0.35 * frame.label;
+    if clear >= need { 0.0 } else { 40.0 + 60.0 * (need - clear) / need }
+}
+
+/// How far a label's box stands from the nearest thing that it must not touch, px.
+fn clearance(
+    rect: &Rect,
+    key: Key,
+    inside: bool,
+    obstacles: &Obstacles,
+    taken: &[Rect],
+    frame: &Frame,
+) -> f64 {
+    let whole = frame.whole().grown(-0.3 * frame.label);
+    let to_edge = (rect.left - whole.left)
+        .min(whole.right - rect.right)
+        .min(rect.top - whole.top)
+        .min(whole.bottom - rect.bottom)
+        + 0.4 * frame.label;
+    let mut clear = to_edge;
+    for other in obstacles.rects.iter().chain(taken) {
+        clear = clear.min(other.gap(rect));
+    }
+    for &(body, at, radius) in &obstacles.discs {
+        if inside && key == Key::Body(body) {
+            continue;
+        }
+        let own = key == Key::Body(body);
+        // On a large disc, names of what is in front of it are welcome.
+        if !own && radius > 3.0 * frame.label {
+            continue;
+        }
+        clear = clear.min(rect.gap_to_disc(at, radius) + if own { 0.3 * frame.label } else { 0.0 });
+    }
+    clear
+}
+
+/// A label in a frame.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Placed {
+    /// Its block.
+    pub block: Block,
+    /// The box of its ink.
+    pub rect: Rect,
+    /// Which way its lines lean: 0 left, 1 right.
+    pub lean: f64,
+    /// 0 unseen, 1 in full.
+    pub opacity: f64,
+}
+
+/// The labels of a frame between two instants at which places were decided; `share` of the way has passed.
+pub fn place(
+    blocks: &[Block],
+    earlier: &[Standing],
+    later: &[Standing],
+    share: f64,
+    obstacles: &Obstacles,
+    frame: &Frame,
+) -> Vec<Placed> {
+    let mut taken: Vec<Rect> = Vec::new();
+    let mut placed = Vec::with_capacity(blocks.len());
+    for block in blocks {
+        let find = |standings: &[Standing]| standings.iter().find(|s| s.key == block.key).copied();
+        let (Some(a), Some(b)) =
+            (find(earlier).or_else(|| find(later)), find(later).or_else(|| find(earlier)))
+        else {
+            continue;
+        };
+        let go = |from: f64, to: f64| from + (to - from) * share;
+        let offset = [go(a.offset[0], b.offset[0]), go(a.offset[1], b.offset[1])];
+        let middle = [block.at[0] + offset[0], block.at[1] + offset[1]];
+        let rect = ink_box(middle, block.size(frame), frame);
+        let inside = a.place == INSIDE || b.place == INSIDE;
+        let clear = clearance(&rect, block.key, inside, obstacles, &taken, frame);
+        // From just clear to clear by a sixth of its size: no label pops.
+        let share = (clear / (0.16 * frame.label)).clamp(0.0, 1.0);
+        let opacity = share * share * (3.0 - 2.0 * share);
+        if opacity > 0.0 {
+            taken.push(rect);
+            placed.push(Placed { block: block.clone(), rect, lean: go(a.lean, b.lean), opacity });
+        }
+    }
+    placed
+}
+
+/// Draws labels.
+pub fn draw(scene: &mut Scene<'_>, placed: &[Placed]) {
+    let size = scene.frame.label;
+    let lead = line_height(&scene.frame);
+    for label in placed {
+        let top = label.rect.middle()[1] - 0.5 * lead * count(label.block.lines.len());
+        for (i, line) in label.block.lines.iter().enumerate() {
+            let colour = look::fade(line.colour, label.opacity);
+            let words = Words { text: &line.text, size, weight: line.weight, colour };
+            let room = label.rect.width() - words.width();
+            // Capitals are two thirds of the size: their middle is the line's middle.
+            let baseline = top + lead * (count(i) + 0.5) + 0.5 * super::type_metrics::CAP_HEIGHT * size;
+            let at = [label.rect.left + room * label.lean, baseline];
+            scene.add_text(line.tag, at, Anchor::Start, &words);
+        }
+    }
+}
+
+/// The discs that labels keep clear of.
+pub fn discs(spots: &[Spot]) -> Vec<(usize, Px, f64)> {
+    spots.iter().map(|s| (s.body.0, s.at, s.radius)).collect()
+}
