@@ -8,6 +8,7 @@ use crate::Vector3;
 use crate::scenario::BodyId;
 
 pub mod chunk;
+pub mod events;
 pub mod osculating;
 pub mod propagation;
 mod run;

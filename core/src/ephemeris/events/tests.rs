@@ -1,0 +1,197 @@
+//! Events on paths whose events are known.
+
+use super::*;
+use crate::conic::{Elements, state_from_elements};
+use crate::ephemeris::Propagation;
+use crate::initial::{Forces, InitialBody};
+use crate::scenario::Surface;
+use std::f64::consts::TAU;
+
+const GM: f64 = 1.327e20;
+const AU: f64 = 1.495_978_707e11;
+
+fn point(
+    name: &str,
+    gm_m3_s2: f64,
+    primary: Option<usize>,
+    pos: Vector3<f64>,
+    vel: Vector3<f64>,
+) -> InitialBody {
+    let primary = primary.map(BodyId);
+    InitialBody { name: name.into(), gm_m3_s2, radius_m: 0.0, surface: Surface::Stop, primary, pos, vel }
+}
+
+fn orbiting(gm: f64, gm_own: f64, q: f64, e: f64, nu: f64) -> InitialBody {
+    let elements = Elements {
+        periapsis_m: q,
+        eccentricity: e,
+        inclination_rad: 0.1,
+        node_rad: 1.0,
+        argument_rad: 2.0,
+        true_anomaly_rad: nu,
+    };
+    let (pos, vel) = state_from_elements(&elements, gm).unwrap();
+    point("p", gm_own, Some(0), pos, vel)
+}
+
+fn state(bodies: Vec<InitialBody>) -> InitialState {
+    InitialState { listed: bodies.len(), bodies, forces: Forces::default() }
+}
+
+fn run(initial: &InitialState, from_s: f64, until_s: f64) -> Ephemeris {
+    let mut propagation = Propagation::new(initial);
+    assert!(propagation.advance(until_s, 1_000_000).unwrap());
+    if from_s < 0.0 {
+        assert!(propagation.advance(from_s, 1_000_000).unwrap());
+    }
+    propagation.into_ephemeris()
+}
+
+fn star() -> InitialBody {
+    point("star", GM, None, Vector3::zeros(), Vector3::zeros())
+}
+
+fn period(q: f64, e: f64) -> f64 {
+    let a = q / (1.0 - e);
+    TAU * (a * a * a / GM).sqrt()
+}
+
+fn times(found: &[Event]) -> Vec<f64> {
+    found.iter().map(|e| e.t_s).collect()
+}
+
+/// Times are as good as the integration: some 1e-14 of the time covered, more where speed hardly changes along the way.
+fn same_times(got: &[f64], want: &[f64], tol_s: f64) {
+    assert_eq!(got.len(), want.len(), "got {got:?}, want {want:?}");
+    for (got, want) in got.iter().zip(want) {
+        assert!((got - want).abs() <= tol_s, "got {got}, want {want}, difference {} s", got - want);
+    }
+}
+
+const PERI: Query = Query { kind: EventKind::Periapsis, body: BodyId(1), other: None };
+const APO: Query = Query { kind: EventKind::Apoapsis, body: BodyId(1), other: None };
+
+#[test]
+fn apsides_come_once_a_period_for_every_eccentricity() {
+    for (e, tol) in [(1e-6, 1e-4), (0.02, 1e-9), (0.5, 1e-10), (0.9, 1e-10), (0.99, 1e-10)] {
+        let initial = state(vec![star(), orbiting(GM, 0.0, AU * (1.0 - e), e, 0.0)]);
+        let p = period(AU * (1.0 - e), e);
+        let eph = run(&initial, -2.2 * p, 3.7 * p);
+        let peri = find(&eph, &initial, &PERI, -2.2 * p, 3.7 * p);
+        same_times(&times(&peri), &[-2.0, -1.0, 0.0, 1.0, 2.0, 3.0].map(|k| k * p), tol * p);
+        let apo = find(&eph, &initial, &APO, -2.2 * p, 3.7 * p);
+        same_times(&times(&apo), &[-1.5, -0.5, 0.5, 1.5, 2.5, 3.5].map(|k| k * p), tol * p);
+        for event in &peri {
+            assert!((event.value / (AU * (1.0 - e)) - 1.0).abs() < 1e-11, "e {e}: {event:?}");
+        }
+        for event in &apo {
+            assert!((event.value / (AU * (1.0 + e)) - 1.0).abs() < 1e-11, "e {e}: {event:?}");
+        }
+    }
+}
+
+#[test]
+fn the_one_at_the_start_is_there_and_is_not_the_first() {
+    let initial = state(vec![star(), orbiting(GM, 0.0, AU, 0.3, 0.0)]);
+    let p = period(AU, 0.3);
+    let eph = run(&initial, 0.0, 4.2 * p);
+    let with_past = run(&initial, -1.0, 4.2 * p);
+    for eph in [&eph, &with_past] {
+        let found = find(eph, &initial, &PERI, 0.0, 4.2 * p);
+        assert_eq!(found.len(), 5);
+        assert!(found[0].t_s.abs() < 1e-3);
+        let mut after = 0.0;
+        for nth in 1..5_u32 {
+            let event = EventRef { kind: EventKind::Periapsis, body: BodyId(1), other: None, nth: 1 };
+            after = first(eph, &initial, &event, after).unwrap().t_s;
+            let numbered = EventRef { nth: nth as usize, ..event };
+            let again = first(eph, &initial, &numbered, 0.0).unwrap().t_s;
+            same_times(&[after, again], &[f64::from(nth) * p; 2], 1e-10 * p);
+        }
+        let fifth = EventRef { kind: EventKind::Periapsis, body: BodyId(1), other: None, nth: 5 };
+        assert_eq!(first(eph, &initial, &fifth, 0.0), None);
+    }
+}
+
+#[test]
+fn circles_and_bodies_at_rest_have_no_apsides() {
+    let initial = state(vec![star(), orbiting(GM, 0.0, AU, 0.0, 0.4), orbiting(GM, 0.0, AU, 1e-10, 0.7)]);
+    let p = period(AU, 0.0);
+    let eph = run(&initial, -10.0 * p, 10.0 * p);
+    for body in [BodyId(1), BodyId(2)] {
+        for kind in [EventKind::Periapsis, EventKind::Apoapsis, EventKind::ClosestApproach] {
+            let found = find(&eph, &initial, &Query { kind, body, other: None }, -10.0 * p, 10.0 * p);
+            assert_eq!(found, vec![], "{kind:?}");
+        }
+    }
+    let resting = state(vec![
+        point("a", 0.0, None, Vector3::zeros(), Vector3::zeros()),
+        point("b", 0.0, Some(0), Vector3::new(1e9, 2e9, 0.0), Vector3::zeros()),
+    ]);
+    let eph = run(&resting, 0.0, 1e9);
+    assert_eq!(all(&eph, &resting, 0.0, 1e9), vec![]);
+}
+
+#[test]
+fn a_straight_pass_has_one_closest_approach_and_no_apoapsis() {
+    let initial = state(vec![
+        point("a", 0.0, None, Vector3::zeros(), Vector3::zeros()),
+        point("b", 0.0, Some(0), Vector3::new(-3e6, 4e6, 0.0), Vector3::new(1e3, 0.0, 0.0)),
+    ]);
+    let eph = run(&initial, 0.0, 1e5);
+    let query = Query { kind: EventKind::ClosestApproach, body: BodyId(1), other: Some(BodyId(0)) };
+    let found = find(&eph, &initial, &query, 0.0, 1e5);
+    same_times(&times(&found), &[3000.0], 1e-9);
+    assert!((found[0].value - 4e6).abs() < 1e-6);
+    assert_eq!(find(&eph, &initial, &APO, 0.0, 1e5), vec![]);
+}
+
+#[test]
+fn oppositions_of_circular_orbits_keep_the_synodic_time() {
+    // Two circles in one plane, an angle of 1 rad between the planets at the start.
+    let circle = |a: f64, angle: f64| {
+        let (s, c) = crate::math::float::sin_cos(angle);
+        let v = (GM / a).sqrt();
+        point("p", 1.0, Some(0), Vector3::new(a * c, a * s, 0.0), Vector3::new(-v * s, v * c, 0.0))
+    };
+    let initial = state(vec![star(), circle(AU, 0.0), circle(1.5 * AU, 1.0)]);
+    let (n1, n2) = (TAU / period(AU, 0.0), TAU / period(1.5 * AU, 0.0));
+    let eph = run(&initial, 0.0, 5.0 * TAU / (n1 - n2));
+    let until = eph.until_s();
+    let look = |kind, body, other| {
+        find(&eph, &initial, &Query { kind, body: BodyId(body), other: Some(BodyId(other)) }, 0.0, until)
+    };
+    let at = |angle: f64| -> Vec<f64> {
+        (0..7).map(|k| (angle + TAU * f64::from(k)) / (n1 - n2)).filter(|&t| t <= until).collect()
+    };
+    let tol = 1e-12 * until;
+    // The inner one overtakes on the inside: the outer stands opposite to the star, the inner before it.
+    let opposition = look(EventKind::Opposition, 2, 1);
+    same_times(&times(&opposition), &at(1.0), tol);
+    assert!(opposition.iter().all(|e| (e.value - 180.0).abs() < 1e-6 && e.unit == "deg"));
+    let conjunctions = look(EventKind::Conjunction, 2, 1);
+    same_times(&times(&conjunctions), &at(1.0 + 0.5 * TAU), tol);
+    // Inner planets have two kinds of conjunction and never an opposition.
+    let mut both = [at(1.0), at(1.0 + 0.5 * TAU)].concat();
+    both.sort_by(f64::total_cmp);
+    same_times(&times(&look(EventKind::Conjunction, 1, 2)), &both, tol);
+    assert_eq!(look(EventKind::Opposition, 1, 2), vec![]);
+    // Closest approaches fall on the oppositions.
+    same_times(&times(&look(EventKind::ClosestApproach, 2, 1)), &at(1.0), tol);
+    let listed = all(&eph, &initial, 0.0, until);
+    assert!(listed.windows(2).all(|w| w[0].t_s <= w[1].t_s));
+    assert_eq!(listed.len(), 2 * opposition.len() + conjunctions.len() + both.len());
+}
+
+#[test]
+fn several_events_in_one_step_are_all_found() {
+    // Eccentricity 1e-8, looked at in the longest steps that the integrator takes for it: apsides alternate.
+    let initial = state(vec![star(), orbiting(GM, 0.0, AU, 1e-8, 0.3)]);
+    let p = period(AU, 1e-8);
+    let eph = run(&initial, 0.0, 20.5 * p);
+    let mut both = find(&eph, &initial, &PERI, 0.0, 20.5 * p);
+    both.extend(find(&eph, &initial, &APO, 0.0, 20.5 * p));
+    both.sort_by(|a, b| a.t_s.total_cmp(&b.t_s));
+    assert_eq!(both.len(), 41);
+    assert!(both.windows(2).all(|w| w[0].kind != w[1].kind));
+}
