@@ -1,1 +1,0 @@
-//! Changing the text of a scenario.
