@@ -165,7 +165,7 @@ mod tests {
 
     #[test]
     fn touching_without_crossing_is_no_sign_change() {
-        assert!(found(&[0.3, 0.3]).len() % 2 == 0);
+        assert!(found(&[0.3, 0.3]).len().is_multiple_of(2));
         assert!(found(&[]).is_empty());
     }
 }
