@@ -4,7 +4,7 @@
 //! can be ended with it.
 
 use std::io;
-use std::process::{Child, Command, ExitStatus, Output, Stdio};
+use std::process::{Child, ChildStdout, Command, ExitStatus, Output, Stdio};
 use std::sync::{Mutex, PoisonError};
 
 use anyhow::{Context as _, Result};
@@ -58,6 +58,11 @@ impl Running {
     pub(crate) fn wait(&mut self) -> io::Result<ExitStatus> {
         self.child.wait()
     }
+
+    /// What it writes to standard output, when that was piped and hasn't been taken yet.
+    pub(crate) fn take_stdout(&mut self) -> Option<ChildStdout> {
+        self.child.stdout.take()
+    }
 }
 
 impl Drop for Running {
@@ -96,6 +101,18 @@ pub(crate) fn output(command: &mut Command) -> Result<Output> {
 pub(crate) fn answer(command: &mut Command) -> Option<String> {
     let output = output(command).ok()?;
     output.status.success().then(|| String::from_utf8_lossy(&output.stdout).trim().to_owned())
+}
+
+/// Whether this program may change the system.
+#[cfg(unix)]
+pub(crate) fn is_root() -> bool {
+    nix::unistd::Uid::effective().is_root()
+}
+
+/// Whether this program may change the system.
+#[cfg(not(unix))]
+pub(crate) fn is_root() -> bool {
+    false
 }
 
 #[cfg(unix)]

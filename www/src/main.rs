@@ -8,10 +8,14 @@
 mod browser_open;
 mod bundle;
 mod child;
+mod chromium;
 mod cli;
+mod commands;
+mod load;
 mod root;
 mod serve;
 mod site;
+mod table;
 mod toolchain;
 
 use std::process::ExitCode;
@@ -28,7 +32,9 @@ fn main() -> ExitCode {
     match run(Cli::parse()) {
         Ok(code) => code,
         Err(error) => {
-            eprintln!("error: {error:#}");
+            // What is wrong with a file starts with its place, so that editors can go there.
+            let prefix = if error.is::<load::Wrong>() { "" } else { "error: " };
+            eprintln!("{prefix}{error:#}");
             ExitCode::from(2)
         }
     }
@@ -37,5 +43,7 @@ fn main() -> ExitCode {
 fn run(cli: Cli) -> Result<ExitCode> {
     match cli.command.unwrap_or(Command::Serve(cli.serve)) {
         Command::Serve(options) => serve::command(&options),
+        Command::Test => commands::test::command(),
+        Command::Trace(options) => commands::trace::command(&options),
     }
 }

@@ -144,10 +144,8 @@ fn files_below(folder: &Path, prefix: &str) -> Result<Vec<File>> {
 /// Writes the folder beside its place and then renames it: a build that was broken off leaves the old one.
 fn write_folder(folder: &Path, files: &[File]) -> Result<()> {
     let new = folder.with_extension("new");
-    for old in [&new, folder] {
-        if old.exists() && old == &new {
-            fs::remove_dir_all(old).with_context(|| format!("{} can't be removed", old.display()))?;
-        }
+    if new.exists() {
+        fs::remove_dir_all(&new).with_context(|| format!("{} can't be removed", new.display()))?;
     }
     for (path, bytes) in files {
         let place = new.join(path);

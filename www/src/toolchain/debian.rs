@@ -112,7 +112,7 @@ impl Apt {
             .args(option("Acquire::Retries", "2"))
             .env("LC_ALL", "C");
         // As root, apt would fetch as a user who may not write here.
-        if std::env::var_os("USER").is_none_or(|user| user == "root") {
+        if child::is_root() {
             command.args(option("APT::Sandbox::User", "root"));
         }
         command

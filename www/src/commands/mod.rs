@@ -1,0 +1,4 @@
+//! What the program answers about scenarios, and what it can be told to do. Each command has a file.
+
+pub(crate) mod test;
+pub(crate) mod trace;

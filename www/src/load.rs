@@ -1,0 +1,175 @@
+//! From a file's path to a scenario, an ephemeris, a show; what is wrong is told with its place in the file.
+
+use std::fmt;
+use std::fs;
+use std::path::Path;
+use std::time::{Duration, SystemTime, UNIX_EPOCH};
+
+use anyhow::{Context as _, Result};
+use fallaround_core::ephemeris::{Ephemeris, Propagation};
+use fallaround_core::initial::InitialState;
+use fallaround_core::resolve::resolve;
+use fallaround_core::scenario::today::dated;
+use fallaround_core::scenario::{self, BodyId, Place, Problem, Scenario};
+use indicatif::{ProgressBar, ProgressStyle};
+
+use crate::cli::Today;
+
+/// Steps between two looks at the progress bar: a few milliseconds of work.
+const STEPS: usize = 500;
+/// Length of the progress bar's scale.
+const SCALE: u64 = 1000;
+
+/// What is wrong with a file. Prints a line for each problem: `file:line:column: what is wrong; what would be right`.
+#[derive(Debug)]
+pub(crate) struct Wrong {
+    file: String,
+    /// The problems, in the order of the file.
+    pub(crate) problems: Vec<Problem>,
+}
+
+impl Wrong {
+    fn new(path: &Path, problems: Vec<Problem>) -> Self {
+        Self { file: path.display().to_string(), problems }
+    }
+}
+
+impl fmt::Display for Wrong {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        for (index, problem) in self.problems.iter().enumerate() {
+            let end = if index + 1 == self.problems.len() { "" } else { "\n" };
+            write!(f, "{}:{problem}{end}", self.file)?;
+        }
+        Ok(())
+    }
+}
+
+impl std::error::Error for Wrong {}
+
+/// The text of a scenario, with the day written in where it says "today".
+///
+/// # Errors
+/// [`Wrong`] when the file can't be read or isn't UTF-8.
+pub(crate) fn text(path: &Path, today: &Today) -> Result<String> {
+    let fail =
+        |place, wrong: String, remedy: &str| Wrong::new(path, vec![Problem::error(place, wrong, remedy)]);
+    let start = Place { line: 1, column: 1 };
+    let bytes = fs::read(path).map_err(|error| {
+        fail(start, format!("the file can't be read ({error})"), "give the path of a scenario file")
+    })?;
+    let text = String::from_utf8(bytes).map_err(|error| {
+        let good = error.utf8_error().valid_up_to();
+        let place = place_after(&String::from_utf8_lossy(&error.as_bytes()[..good]));
+        fail(place, "the file isn't text in UTF-8 from here on".to_owned(), "save it as UTF-8")
+    })?;
+    let now = SystemTime::now().duration_since(UNIX_EPOCH).map_or(0.0, |since| since.as_secs_f64());
+    Ok(dated(&text, today.today.unwrap_or(now)).into_owned())
+}
+
+/// The place just behind a text.
+fn place_after(text: &str) -> Place {
+    let line = text.matches('\n').count() + 1;
+    let column = text.rsplit('\n').next().unwrap_or_default().chars().count() + 1;
+    Place { line, column }
+}
+
+/// A scenario and where everything in it starts.
+#[derive(Debug)]
+pub(crate) struct Resolved {
+    /// The scenario.
+    pub(crate) scenario: Scenario,
+    /// Where everything starts.
+    pub(crate) initial: InitialState,
+}
+
+/// Reads and resolves a scenario.
+///
+/// # Errors
+/// [`Wrong`] with every problem.
+pub(crate) fn resolved(path: &Path, today: &Today) -> Result<Resolved> {
+    let parsed = scenario::parse(&text(path, today)?);
+    let Some(scenario) = parsed.scenario else { return Err(Wrong::new(path, parsed.problems).into()) };
+    let initial = resolve(&scenario).map_err(|problems| Wrong::new(path, problems))?;
+    Ok(Resolved { scenario, initial })
+}
+
+impl Resolved {
+    /// Integrates a stretch of model time, and everything between it and the start.
+    ///
+    /// # Errors
+    /// [`Wrong`] when the paths end before.
+    pub(crate) fn integrate(&self, path: &Path, from_s: f64, until_s: f64) -> Result<Ephemeris> {
+        let mut propagation = Propagation::new(&self.initial);
+        let bar = bar("Integrating")?;
+        // Time 0 is always covered, so that times on both sides of it have an end to lean on.
+        let ends = [until_s.max(0.0), from_s.min(0.0)];
+        for end in ends.into_iter().filter(|end| *end >= 0.0 || from_s < 0.0) {
+            let stopped = |stopped: fallaround_core::ephemeris::Stopped| {
+                let body = stopped.bodies.iter().find_map(|body| self.scenario.bodies.get(body.0));
+                let place = body.map_or(Place { line: 1, column: 1 }, |body| body.place);
+                let text = stopped.to_string();
+                let (wrong, remedy) =
+                    text.split_once("; ").unwrap_or((&text, "ask for a shorter stretch of time"));
+                Wrong::new(path, vec![Problem::error(place, wrong, remedy)])
+            };
+            while !propagation.advance(end, STEPS).map_err(stopped)? {
+                let reached = if end < 0.0 {
+                    propagation.ephemeris().from_s()
+                } else {
+                    propagation.ephemeris().until_s()
+                };
+                bar.set_position(share(reached / end));
+            }
+        }
+        bar.finish_and_clear();
+        Ok(propagation.into_ephemeris())
+    }
+
+    /// The body of a name.
+    ///
+    /// # Errors
+    /// When there is none; the message lists those there are.
+    pub(crate) fn body(&self, name: &str) -> Result<BodyId> {
+        let bodies = &self.scenario.bodies;
+        let found = bodies.iter().position(|body| body.name == name).map(BodyId);
+        found.with_context(|| {
+            let names: Vec<&str> = bodies.iter().map(|body| body.name.as_str()).collect();
+            format!("there is no body {name:?}; there are {}", names.join(", "))
+        })
+    }
+}
+
+/// A bar on standard error, where that is a terminal and the work takes long enough to be seen.
+fn bar(what: &'static str) -> Result<ProgressBar> {
+    let bar = ProgressBar::new(SCALE);
+    bar.set_style(ProgressStyle::with_template("{msg} {bar:40} {percent} %  {elapsed}").context("bar")?);
+    bar.set_message(what);
+    bar.enable_steady_tick(Duration::from_millis(200));
+    Ok(bar)
+}
+
+/// A share of 0 to 1 on the bar's scale.
+#[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "clamped to the scale")]
+fn share(share: f64) -> u64 {
+    (share.clamp(0.0, 1.0) * SCALE as f64) as u64
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn a_byte_that_is_no_text_is_found() {
+        let folder = tempfile::tempdir().unwrap();
+        let path = folder.path().join("bad.toml");
+        fs::write(&path, b"format = 1\ntitle = \"\xe9\xff\"\n").unwrap();
+        let error = text(&path, &Today::default()).unwrap_err().to_string();
+        assert!(error.starts_with(&format!("{}:2:10: ", path.display())), "{error}");
+    }
+
+    #[test]
+    fn a_missing_file_is_told_like_any_problem() {
+        let error = text(Path::new("no/such.toml"), &Today::default()).unwrap_err().to_string();
+        assert!(error.starts_with("no/such.toml:1:1: the file can't be read"), "{error}");
+    }
+}
