@@ -9,29 +9,59 @@
 /// I. Newton, Principia (1687), book III, proposition 7: a = GM r / r³.
 pub(super) fn set(gms: &[f64], massive: &[usize], pos: &[f64], out: &mut [f64]) {
     out.fill(0.0);
+    let n = gms.len();
     for (i, &gm) in gms.iter().enumerate() {
         if gm != 0.0 {
-            for j in i + 1..gms.len() {
-                pair(i, j, gm, gms[j], pos, out);
+            let mut j = i + 1;
+            while j + 4 <= n {
+                pairs::<4>(i, j, gms, pos, out);
+                j += 4;
+            }
+            if j + 2 <= n {
+                pairs::<2>(i, j, gms, pos, out);
+                j += 2;
+            }
+            if j < n {
+                pairs::<1>(i, j, gms, pos, out);
             }
         } else {
             for &j in massive.iter().filter(|&&j| j > i) {
-                pair(i, j, gm, gms[j], pos, out);
+                pairs::<1>(i, j, gms, pos, out);
             }
         }
     }
 }
 
+/// The pairs of one body with `N` others from `first` on. The square roots and quotients, the slowest parts, are worked out
+/// side by side; each sum keeps the order of the bodies.
 #[inline]
-fn pair(i: usize, j: usize, gm_i: f64, gm_j: f64, pos: &[f64], out: &mut [f64]) {
-    let (i, j) = (3 * i, 3 * j);
-    let d = [pos[j] - pos[i], pos[j + 1] - pos[i + 1], pos[j + 2] - pos[i + 2]];
-    let r2 = d[0] * d[0] + d[1] * d[1] + d[2] * d[2];
-    let w = 1.0 / (r2 * r2.sqrt());
-    for axis in 0..3 {
-        out[i + axis] += gm_j * w * d[axis];
-        out[j + axis] -= gm_i * w * d[axis];
+fn pairs<const N: usize>(i: usize, first: usize, gms: &[f64], pos: &[f64], out: &mut [f64]) {
+    let at: &[f64] = &pos[3 * i..3 * i + 3];
+    let others = &pos[3 * first..3 * (first + N)];
+    let gm = gms[i];
+    let (mut x, mut y, mut z, mut w) = ([0.0; N], [0.0; N], [0.0; N], [0.0; N]);
+    for l in 0..N {
+        x[l] = others[3 * l] - at[0];
+        y[l] = others[3 * l + 1] - at[1];
+        z[l] = others[3 * l + 2] - at[2];
     }
+    for l in 0..N {
+        let r2 = x[l] * x[l] + y[l] * y[l] + z[l] * z[l];
+        w[l] = 1.0 / (r2 * r2.sqrt());
+    }
+    let mut sum = [out[3 * i], out[3 * i + 1], out[3 * i + 2]];
+    let gms = &gms[first..first + N];
+    let theirs = &mut out[3 * first..3 * (first + N)];
+    for l in 0..N {
+        let (mine, their) = (gms[l] * w[l], gm * w[l]);
+        sum[0] += mine * x[l];
+        sum[1] += mine * y[l];
+        sum[2] += mine * z[l];
+        theirs[3 * l] -= their * x[l];
+        theirs[3 * l + 1] -= their * y[l];
+        theirs[3 * l + 2] -= their * z[l];
+    }
+    out[3 * i..3 * i + 3].copy_from_slice(&sum);
 }
 
 #[cfg(test)]

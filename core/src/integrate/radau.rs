@@ -35,7 +35,7 @@ const LARGEST_CHANGE: f64 = 0.25;
 /// Most rounds of prediction and correction in a step. Smooth steps need two or three.
 const MOST_ROUNDS: usize = 12;
 
-/// Relative change of the acceleration at which a round changed nothing but roundings.
+/// Relative change of the acceleration, in a further round, that would be lost in roundings.
 const CONVERGED: f64 = 1e-16;
 
 /// Accelerations below this part of the largest are taken as made of roundings alone (a body held between equal pulls), and set
@@ -271,8 +271,10 @@ impl Radau {
             if !(changed + largest).is_finite() {
                 return false;
             }
+            // Each round shrinks the change by about the same factor, so this is what the next one would still change.
+            let next = if round == 0 { changed } else { changed * (changed / last) };
             // When it no longer shrinks, it is made of roundings.
-            if changed <= CONVERGED * largest || round > 1 && changed >= last {
+            if next <= CONVERGED * largest || round > 1 && changed >= last {
                 return true;
             }
             last = changed;
