@@ -2,7 +2,9 @@
 
 use std::path::PathBuf;
 
-use clap::{Args, Parser, Subcommand, ValueEnum};
+use clap::builder::PossibleValuesParser;
+use clap::{ArgAction, Args, Parser, Subcommand, ValueEnum};
+use fallaround_core::scenario::EventKind;
 use fallaround_core::time::Epoch;
 use fallaround_core::units::Span;
 
@@ -25,6 +27,8 @@ pub(crate) enum Command {
     Test,
     /// Print where every body is and how it moves, as CSV.
     Trace(Trace),
+    /// Print what happens: apsides, closest approaches, contacts, conjunctions, oppositions, as CSV.
+    Events(Events),
 }
 
 /// How to serve.
@@ -88,6 +92,28 @@ pub(crate) enum Axes {
     Ecliptic,
     /// Those of the International Celestial Reference System: the equator of J2000.
     Icrs,
+}
+
+/// Which events to print.
+#[derive(Debug, Args)]
+pub(crate) struct Events {
+    /// Scenario file.
+    #[arg(value_name = "SCENARIO")]
+    pub(crate) scenario: PathBuf,
+    #[command(flatten)]
+    pub(crate) between: Between,
+    /// Only this kind; may be given several times.
+    #[arg(long, value_name = "KIND", action = ArgAction::Append,
+          value_parser = PossibleValuesParser::new(EventKind::ALL.map(EventKind::name)))]
+    pub(crate) kind: Vec<String>,
+    /// Only what this body takes part in; may be given several times.
+    #[arg(long, value_name = "BODY", action = ArgAction::Append)]
+    pub(crate) body: Vec<String>,
+    /// Print JSON.
+    #[arg(long)]
+    pub(crate) json: bool,
+    #[command(flatten)]
+    pub(crate) today: Today,
 }
 
 /// Seconds from a bare number or from a quantity with a unit.

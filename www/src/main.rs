@@ -44,6 +44,7 @@ fn run(cli: Cli) -> Result<ExitCode> {
     match cli.command.unwrap_or(Command::Serve(cli.serve)) {
         Command::Serve(options) => serve::command(&options),
         Command::Test => commands::test::command(),
+        Command::Events(options) => commands::events::command(&options),
         Command::Trace(options) => commands::trace::command(&options),
     }
 }

@@ -1,4 +1,5 @@
 //! What the program answers about scenarios, and what it can be told to do. Each command has a file.
 
+pub(crate) mod events;
 pub(crate) mod test;
 pub(crate) mod trace;
