@@ -59,8 +59,10 @@ pub struct Moment {
 pub struct Bookmark {
     /// The beat.
     pub beat: usize,
-    /// Beat time, seconds.
+    /// Beat time since the beat's start was reached, seconds.
     pub beat_s: f64,
+    /// Beat time that went into getting there, seconds.
+    pub lead_s: f64,
     /// Model time at which the beat was entered, seconds.
     pub from_s: f64,
     /// Pace at which it was entered.
@@ -91,7 +93,10 @@ const UNDO_S: f64 = 5.0;
 pub struct Clock {
     beat: usize,
     before: Option<usize>,
+    /// Beat time since the beat's start was reached.
     beat_s: f64,
+    /// Beat time that went into getting there.
+    lead_s: f64,
     pacing: Pacing,
     beat_from_s: f64,
     run_from_s: f64,
@@ -116,6 +121,7 @@ impl Clock {
             beat: 0,
             before: None,
             beat_s: 0.0,
+            lead_s: 0.0,
             pacing: Pacing::still(from_s),
             beat_from_s: from_s,
             run_from_s: from_s,
@@ -130,7 +136,7 @@ impl Clock {
             undo: None,
         };
         if let Some(beat) = plan.beats.first() {
-            clock.pacing = beat.pacing(from_s, 0.0);
+            clock.pacing = beat.pacing(from_s, 0.0, 0.0);
         }
         clock
     }
@@ -144,8 +150,9 @@ impl Clock {
             return clock;
         }
         clock.beat = mark.beat;
+        clock.lead_s = if mark.lead_s.is_finite() { mark.lead_s.max(0.0) } else { 0.0 };
         clock.beat_s = if mark.beat_s.is_finite() { mark.beat_s.max(0.0) } else { 0.0 };
-        clock.pacing = plan.beats[mark.beat].pacing(mark.from_s, mark.first_pace);
+        clock.pacing = plan.beats[mark.beat].pacing(mark.from_s, mark.first_pace, clock.lead_s);
         clock.beat_from_s = mark.beat_from_s;
         clock.run_from_s = mark.run_from_s;
         clock.held = mark.held;
@@ -163,6 +170,7 @@ impl Clock {
         Bookmark {
             beat: self.beat,
             beat_s: self.beat_s,
+            lead_s: self.lead_s,
             from_s: self.pacing.from_s,
             first_pace: self.pacing.first_pace,
             beat_from_s: self.beat_from_s,
@@ -199,8 +207,8 @@ impl Clock {
     }
 
     /// Beat time, seconds: show time within the beat, without holds.
-    pub const fn beat_s(&self) -> f64 {
-        self.beat_s
+    pub fn beat_s(&self) -> f64 {
+        self.glide.map_or(self.lead_s, |glide| glide.gone_s()) + self.beat_s
     }
 
     /// Show time since the first `Next`, holds included, seconds.
@@ -298,12 +306,12 @@ impl Clock {
         // A beat that starts the next by itself hands over what is left of the time; each turn enters a later beat.
         while let Some(beat) = plan.beats.get(self.beat)
             && beat.then == Then::Next
-            && self.beat_s > beat.lasts_s
+            && self.beat_s + self.lead_s > beat.lasts_s
             && self.glide.is_none()
             && self.beat + 1 < plan.beats.len()
         {
-            let over_s = self.beat_s - beat.lasts_s;
-            self.beat_s = beat.lasts_s;
+            let over_s = self.beat_s + self.lead_s - beat.lasts_s;
+            self.beat_s -= over_s;
             self.enter(plan, self.beat + 1, Some(self.beat));
             let left_s = match &mut self.glide {
                 Some(glide) => glide.advance(over_s),
@@ -416,7 +424,7 @@ impl Clock {
             first_pace = now.pace;
             self.glide = None;
         } else {
-            let arriving = beat.pacing(from_s, 0.0).pace;
+            let arriving = beat.pacing(from_s, 0.0, 0.0).pace;
             let reach = self.reach_pace(plan, index);
             self.glide = Glide::between(now.model_s, from_s, now.pace, arriving, reach);
             if let Some(glide) = &self.glide {
@@ -426,7 +434,8 @@ impl Clock {
         self.beat = index;
         self.before = before;
         self.beat_s = 0.0;
-        self.pacing = beat.pacing(from_s, first_pace);
+        self.lead_s = self.glide.map_or(0.0, |glide| glide.lasts_s());
+        self.pacing = beat.pacing(from_s, first_pace, self.lead_s);
         self.beat_from_s = from_s;
         self.run_from_s = from_s;
         self.since_cut_s = 0.0;

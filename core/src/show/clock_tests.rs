@@ -18,7 +18,7 @@ fn beat(from_s: f64, until_s: f64, lasts_s: f64, way: Way, then: Then, run: Run)
         run,
         keeps_sectors: false,
     };
-    beat.pace = beat.pacing(from_s, 0.0).pace;
+    beat.pace = beat.pacing(from_s, 0.0, 0.0).pace;
     beat
 }
 
@@ -30,7 +30,7 @@ fn plan() -> Plan {
     let mut cued = beat(100.0 * DAY, 160.0 * DAY, 25.0, Way::Still, Then::GoOn, Run::GoesOn);
     cued.way = Way::Cue;
     cued.cue = Some(Cue { at_s: 20.0, model_s: 150.0 * DAY, event });
-    cued.pace = cued.pacing(cued.from_s, 0.0).pace;
+    cued.pace = cued.pacing(cued.from_s, 0.0, 0.0).pace;
     let again = beat(0.0, 30.0 * DAY, 30.0, Way::Span(30.0 * DAY), Then::Next, Run::Anew);
     let last = beat(30.0 * DAY, 60.0 * DAY, 30.0, Way::Span(30.0 * DAY), Then::Hold, Run::GoesOn);
     let mut plan =
@@ -87,9 +87,9 @@ fn a_span_is_covered_in_its_time_and_then_stands() {
 }
 
 #[test]
-fn a_cue_is_hit_within_a_frame_however_long_the_beat_before_was_held() {
+fn a_cue_is_hit_within_a_frame_however_long_or_short_the_beat_before_was() {
     let plan = plan();
-    for lingered in [0.0, 3.0, 77.0] {
+    for (lingered, ran) in [(0.0, 40.0), (3.0, 40.0), (77.0, 60.0), (0.0, 5.0), (1.0, 29.0)] {
         let mut clock = Clock::new(&plan);
         clock.act(&plan, Action::Next);
         clock.act(&plan, Action::Next);
@@ -97,7 +97,7 @@ fn a_cue_is_hit_within_a_frame_however_long_the_beat_before_was_held() {
         clock.act(&plan, Action::Hold);
         run(&mut clock, &plan, lingered);
         clock.act(&plan, Action::Hold);
-        run(&mut clock, &plan, 40.0);
+        run(&mut clock, &plan, ran);
         clock.act(&plan, Action::Next);
         assert_eq!(clock.beat(), 2);
         run(&mut clock, &plan, 20.0);

@@ -60,6 +60,16 @@ impl Glide {
         self.gone_s >= self.lasts_s
     }
 
+    /// Show time that it takes.
+    pub(super) const fn lasts_s(&self) -> f64 {
+        self.lasts_s
+    }
+
+    /// Show time that has passed of it.
+    pub(super) const fn gone_s(&self) -> f64 {
+        self.gone_s
+    }
+
     /// Pace with which it arrives.
     pub(super) const fn last_pace(&self) -> f64 {
         self.last_pace

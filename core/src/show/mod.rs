@@ -9,11 +9,15 @@ pub mod fingerprint;
 mod glide;
 mod pacing;
 pub mod plan;
+pub mod planner;
+pub mod rehearsal;
 
 pub use clock::{Action, Bookmark, Clock, Moment};
 pub use fingerprint::Fingerprint;
 pub use pacing::{EaseOut, Pacing};
 pub use plan::{Cue, Plan, PlannedBeat, Run, Way};
+pub use planner::{Limits, Need};
+pub use rehearsal::{Progress, Rehearsal};
 
 /// A rehearsed show: everything that the picture is a function of, but for the instant.
 #[derive(Debug, Clone)]

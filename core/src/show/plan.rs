@@ -74,16 +74,21 @@ pub struct Cue {
 }
 
 impl PlannedBeat {
-    /// How model time runs when the beat is entered at a model time with a pace.
-    pub fn pacing(&self, from_s: f64, first_pace: f64) -> Pacing {
+    /// How model time runs when the beat is entered at a model time with a pace, after `lead_s` of its show time
+    /// went into getting there: what it has to reach by a stated time is still reached by then.
+    pub fn pacing(&self, from_s: f64, first_pace: f64, lead_s: f64) -> Pacing {
         let hold = self.then == Then::Hold;
+        let left = |show_s: f64| (show_s - lead_s).max(0.2 * show_s);
         match (self.way, self.cue) {
             (Way::Cue, Some(cue)) => {
-                let pacing = Pacing::covering(from_s, first_pace, cue.model_s - from_s, cue.at_s, false);
-                if hold { pacing.then_hold(cue.at_s, self.lasts_s) } else { pacing }
+                let at_s = left(cue.at_s);
+                let pacing = Pacing::covering(from_s, first_pace, cue.model_s - from_s, at_s, false);
+                if hold { pacing.then_hold(at_s, left(self.lasts_s)) } else { pacing }
             }
-            (Way::Span(span_s), _) => Pacing::covering(from_s, first_pace, span_s, self.lasts_s, hold),
-            (Way::Pace, _) => Pacing::steady(from_s, first_pace, self.pace, hold.then_some(self.lasts_s)),
+            (Way::Span(span_s), _) => Pacing::covering(from_s, first_pace, span_s, left(self.lasts_s), hold),
+            (Way::Pace, _) => {
+                Pacing::steady(from_s, first_pace, self.pace, hold.then_some(left(self.lasts_s)))
+            }
             _ => Pacing::still(from_s),
         }
     }
