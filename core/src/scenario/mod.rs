@@ -6,6 +6,7 @@
 pub mod edit;
 pub mod grammar;
 pub mod model;
+mod names;
 pub mod parse;
 pub mod problem;
 mod reader;

@@ -2,11 +2,15 @@
 
 use super::grammar::{Key, Section};
 use super::model::BodyId;
+use super::names::{Names, nearest};
 use super::problem::Problem;
 use super::source::{At, Source};
 use crate::units::{self, Quantity};
 use std::cell::RefCell;
 use toml_edit::{Item, TableLike, Value};
+
+/// Most problems that are told of one text.
+pub(super) const MAX_PROBLEMS: usize = 100;
 
 /// The problems found so far in a text.
 #[derive(Debug)]
@@ -25,76 +29,35 @@ impl<'a> Report<'a> {
     }
 
     pub(super) fn error(&self, at: &At, wrong: impl Into<String>, remedy: impl Into<String>) {
-        self.problems.borrow_mut().push(Problem::error(self.source.place(at.start), wrong, remedy));
+        self.push(Problem::error(self.source.place(at.start), wrong, remedy));
     }
 
     pub(super) fn note(&self, at: &At, wrong: impl Into<String>, remedy: impl Into<String>) {
-        self.problems.borrow_mut().push(Problem::note(self.source.place(at.start), wrong, remedy));
+        self.push(Problem::note(self.source.place(at.start), wrong, remedy));
+    }
+
+    fn push(&self, problem: Problem) {
+        if !self.is_full() {
+            self.problems.borrow_mut().push(problem);
+        }
+    }
+
+    /// Whether so much is wrong that the rest is not told.
+    fn is_full(&self) -> bool {
+        self.problems.borrow().len() >= MAX_PROBLEMS
     }
 
     /// All problems, in the order of the text.
     pub(super) fn into_problems(self) -> Vec<Problem> {
+        let full = self.is_full();
         let mut problems = self.problems.into_inner();
         problems.sort_by_key(|p| p.place);
+        if let (true, Some(last)) = (full, problems.last()) {
+            let wrong = "there may be more problems than these";
+            problems.push(Problem::note(last.place, wrong, "mend these first"));
+        }
         problems
     }
-}
-
-/// The names of the bodies, by their order in the file; "" where a body has no usable one.
-#[derive(Debug, Default)]
-pub(super) struct Names(pub(super) Vec<String>);
-
-impl Names {
-    pub(super) fn find(&self, name: &str) -> Option<BodyId> {
-        self.0.iter().position(|n| n == name && !n.is_empty()).map(BodyId)
-    }
-
-    pub(super) fn name(&self, id: BodyId) -> &str {
-        self.0.get(id.0).map_or("", String::as_str)
-    }
-
-    /// The body whose name a text starts with, and what follows. The longest name wins.
-    pub(super) fn leading<'t>(&self, text: &'t str) -> Option<(BodyId, &'t str)> {
-        let mut best: Option<(BodyId, &'t str)> = None;
-        for (index, name) in self.0.iter().enumerate().filter(|(_, n)| !n.is_empty()) {
-            let Some(rest) = text.strip_prefix(name.as_str()) else { continue };
-            let ends = rest.is_empty() || rest.starts_with(char::is_whitespace);
-            if ends && best.is_none_or(|(_, shortest)| rest.len() < shortest.len()) {
-                best = Some((BodyId(index), rest));
-            }
-        }
-        best
-    }
-
-    /// What to say to somebody who named a body that there isn't.
-    pub(super) fn remedy(&self, wrong: &str) -> String {
-        let known: Vec<&str> = self.0.iter().map(String::as_str).filter(|n| !n.is_empty()).collect();
-        if let Some(near) = nearest(wrong, known.iter().copied()) {
-            return format!("perhaps \"{near}\"");
-        }
-        const SHOWN: usize = 12;
-        match known.len() {
-            0 => "the file names no body yet".to_owned(),
-            1..=SHOWN => format!("the bodies are: {}", known.join(", ")),
-            more => format!("the bodies are: {} and {} more", known[..SHOWN].join(", "), more - SHOWN),
-        }
-    }
-}
-
-/// The candidate nearest to a word, when it is near: about one letter in three may differ.
-pub(super) fn nearest<'c>(word: &str, candidates: impl Iterator<Item = &'c str>) -> Option<&'c str> {
-    const LONGEST: usize = 60;
-    let letters = word.chars().count();
-    if letters > LONGEST {
-        return None;
-    }
-    let allowed = (letters / 3).max(1);
-    let word = word.to_lowercase();
-    candidates
-        .map(|c| (strsim::damerau_levenshtein(&word, &c.to_lowercase()), c))
-        .filter(|(distance, _)| *distance <= allowed)
-        .min_by_key(|(distance, _)| *distance)
-        .map(|(_, c)| c)
 }
 
 /// A table that is being read.
@@ -118,6 +81,9 @@ impl<'a> Reading<'a> {
         for (name, item) in table.iter() {
             if grammar.key(name).is_some() {
                 continue;
+            }
+            if report.is_full() {
+                break;
             }
             let key_at = table.key(name).and_then(toml_edit::Key::span);
             let at = key_at.or_else(|| item.span()).unwrap_or_else(|| at.clone());

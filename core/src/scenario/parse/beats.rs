@@ -1,7 +1,8 @@
 //! `[[beat]]`: the steps of the talk.
 
 use super::super::model::{Beat, BodyId, Caption, Mark};
-use super::super::reader::{Field, Names, Reading, kind_of, tidy_text};
+use super::super::names::Names;
+use super::super::reader::{Field, Reading, kind_of, tidy_text};
 use super::{clock, marks, view};
 use crate::time::Epoch;
 use crate::units::text::clip;

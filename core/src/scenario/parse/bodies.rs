@@ -2,7 +2,8 @@
 
 use super::super::grammar::FORMS;
 use super::super::model::{Body, BodyId, Colour, Form, Kind, RealBody, Surface};
-use super::super::reader::{Field, Names, Reading};
+use super::super::names::Names;
+use super::super::reader::{Field, Reading};
 use super::super::source::At;
 use super::forms;
 use crate::time::Epoch;

@@ -2,7 +2,8 @@
 
 use super::super::grammar;
 use super::super::model::{BeatClock, BeatStart, ModelSpan, Then};
-use super::super::reader::{Field, Names, Reading, kind_of};
+use super::super::names::Names;
+use super::super::reader::{Field, Reading, kind_of};
 use super::{dates, events};
 use crate::time::Epoch;
 use crate::units::Span;

@@ -1,7 +1,8 @@
 //! Events in text: "2nd periapsis of Fenn", "contact of Ball with Brae".
 
 use super::super::model::{BodyId, EventKind, EventRef};
-use super::super::reader::{Field, Names, nearest};
+use super::super::names::{Names, nearest};
+use super::super::reader::Field;
 use crate::units::{number, text::clip};
 
 /// What stands between the body of an event and the other one; each may stand for each.

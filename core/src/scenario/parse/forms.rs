@@ -2,7 +2,8 @@
 
 use super::super::grammar;
 use super::super::model::{Drop, Form, Kind, Orbit, OrbitNow, Placed, RealBody, Throw};
-use super::super::reader::{Field, Names, Reading, nearest};
+use super::super::names::{Names, nearest};
+use super::super::reader::{Field, Reading};
 use super::bodies::{Needs, Relation};
 use crate::math::float;
 use crate::units::{Angle, Length, Span, Speed, text::clip};

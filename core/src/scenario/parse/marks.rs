@@ -2,7 +2,8 @@
 
 use super::super::grammar::{self, BODY_MARKS, PLAIN_MARKS};
 use super::super::model::{BodyId, Mark, Readout};
-use super::super::reader::{Names, Reading, Report, kind_of_value, nearest};
+use super::super::names::{Names, nearest};
+use super::super::reader::{Reading, Report, kind_of_value};
 use super::super::source::At;
 use super::events::{self, Fault};
 use crate::units::{Span, text::clip};

@@ -16,8 +16,9 @@ mod view;
 
 use super::grammar;
 use super::model::{Physics, Scenario};
+use super::names::Names;
 use super::problem::{Place, Problem, Severity};
-use super::reader::{Names, Reading, Report};
+use super::reader::{Reading, Report};
 
 /// Largest size of a scenario, bytes.
 pub const MAX_BYTES: usize = 1_000_000;
@@ -181,5 +182,7 @@ fn cut_at(sections: &mut Vec<Reading<'_>>, most: usize, what: &str) {
     }
 }
 
+#[cfg(test)]
+mod damage_tests;
 #[cfg(test)]
 mod tests;

@@ -1,7 +1,8 @@
 //! What bodies must be to one another: no circles, gravity to go around, a surface to be thrown from.
 
 use super::super::model::{BodyId, Form};
-use super::super::reader::{Names, Reading};
+use super::super::names::Names;
+use super::super::reader::Reading;
 use super::bodies::{Needs, ReadBody};
 
 /// Reports forms that can't be: stated by one another in a circle, around a body without gravity, from one without

@@ -2,7 +2,8 @@
 
 use super::super::grammar;
 use super::super::model::{BodyId, Centre, View};
-use super::super::reader::{Field, Names, Reading};
+use super::super::names::Names;
+use super::super::reader::{Field, Reading};
 use crate::units::{Angle, Length};
 
 /// The parts of a view as far as they are known. `None` in a part: it was stated, but wrongly.
