@@ -7,7 +7,7 @@ use super::marks::arrow::{self, Kind};
 use super::marks::foot::Foot;
 use super::marks::sector::{self, AreaLabel, Sectors};
 use super::marks::{self, apsides, body, conic, foot, path, tail, trail};
-use super::scene::{Scene, Spot, Words};
+use super::scene::{Scene, Spot, Words, stroke};
 use super::view::Camera;
 use super::{Options, Screen, labels, look};
 use crate::scenario::Mark;
@@ -92,7 +92,7 @@ impl Composer {
             let areas = layout.area_labels(&scene);
             draw_areas(&mut scene, &areas);
             let blocks = layout.blocks(&scene, &spots);
-            let obstacles = layout.obstacles(&spots, &areas);
+            let obstacles = layout.obstacles(&scene, &spots, &areas);
             let (earlier, later, share) = layout.standings(show, beat, frame, moment.model_s);
             let placed = labels::place(&blocks, earlier, later, share, &obstacles, &frame);
             labels::draw(&mut scene, &placed);
@@ -166,6 +166,11 @@ fn draw_areas(scene: &mut Scene<'_>, labels: &[AreaLabel]) {
     let size = scene.frame.label;
     for label in labels.iter().filter(|l| l.opacity > 0.0) {
         let colour = look::fade(look::LAMP, label.opacity);
+        if let Some(leader) = label.leader {
+            let stroke = stroke(scene.frame.line(look::THIN), look::fade(look::LAMP_2, label.opacity));
+            let segments = vec![leader];
+            scene.add(Tag::Sector(label.body, label.index), Shape::Segments { segments, stroke });
+        }
         let words = Words { text: &label.text, size, weight: 600, colour };
         let middle = label.rect.middle();
         let at = [middle[0], middle[1] + 0.5 * super::type_metrics::CAP_HEIGHT * size];
@@ -182,3 +187,7 @@ fn is_finite(shape: &Shape) -> bool {
         Shape::Text { at, size, .. } => all(&[*at]) && size.is_finite(),
     }
 }
+
+#[cfg(test)]
+#[path = "compose_tests.rs"]
+mod tests;

@@ -260,3 +260,43 @@ pub(crate) fn two_bodies() -> Show {
     show.scenario.beats[0].marks.clear();
     show
 }
+
+/// Five planets on near circles, some of which meet often, with read-outs, two beats, the second seen from nearer.
+pub(crate) fn planets() -> Show {
+    let ring = |au: f64, e: f64, lon: f64| Ellipse {
+        a: au * AU,
+        e,
+        lon_rad: lon,
+        tau_s: -9.0 * DAY * au,
+        gm: GM_ORLA,
+    };
+    let planet = |name: &str, colour, au: f64, e: f64, lon: f64| {
+        (body(name, Kind::Planet, colour), ring(au, e, lon), 0.0, 6e6)
+    };
+    let mut marks: Vec<Mark> = (1..=5).map(|i| Mark::Trail { body: BodyId(i), lasts: None }).collect();
+    marks.extend((1..=4).map(|i| Mark::Readout {
+        what: crate::scenario::Readout::Speed,
+        body: BodyId(i),
+        about: None,
+    }));
+    marks.extend([Mark::Velocity { body: BodyId(3), about: None }, Mark::Scale, Mark::Date, Mark::Pace]);
+    let far = view(0, [0.0; 3], 4.4 * AU, 0.0);
+    let mut near = view(3, [0.0; 3], 0.6 * AU, 30.0);
+    near.tilt = Angle::from_rad(0.6);
+    show(
+        vec![
+            (body("Orla", Kind::Star, Colour::Bone), STILL, GM_ORLA, 6.2e8),
+            planet("Cade", Colour::Sky, 0.4, 0.1, 0.3),
+            planet("Hale", Colour::Yellow, 0.72, 0.01, 1.0),
+            planet("Brae", Colour::Green, 1.1, 0.02, 2.0),
+            planet("Pell", Colour::Vermilion, 1.2, 0.05, 2.2),
+            planet("Tarn", Colour::Blue, 1.9, 0.09, 4.0),
+        ],
+        [0.0, 900.0 * DAY],
+        0.5 * DAY,
+        vec![
+            (beat("The nearer,\nthe *faster*", far, marks), planned(0.0, 800.0 * DAY, 60.0)),
+            (beat("Closer in", near, vec![]), planned(800.0 * DAY, 860.0 * DAY, 30.0)),
+        ],
+    )
+}

@@ -8,7 +8,7 @@
 
 use super::Tag;
 use super::frame::Frame;
-use super::geometry::{Px, Rect, length};
+use super::geometry::{Px, Rect, clip_piece, length};
 use super::list::{Anchor, Colour};
 use super::look;
 use super::scene::{Scene, Spot, Words};
@@ -64,6 +64,8 @@ pub struct Obstacles {
     pub rects: Vec<Rect>,
     /// Discs of bodies: index of the body, middle, radius.
     pub discs: Vec<(usize, Px, f64)>,
+    /// Lines that shouldn't run through words: arrows, tails.
+    pub pieces: Vec<[Px; 2]>,
 }
 
 /// Where a label is.
@@ -76,6 +78,8 @@ pub struct Standing {
     offset: Px,
     /// 0: lines start at the box's left; 1: they end at its right.
     lean: f64,
+    /// 0 waits unseen, 1 in full.
+    opacity: f64,
 }
 
 /// The places: which way from the body, in the order in which they are liked.
@@ -190,10 +194,25 @@ pub fn step(
         };
         let (place, _, goal) = kept.filter(|k| k.1 <= best.1 + LOYALTY).unwrap_or(best);
         let lean_goal = lean(place);
-        let (offset, lean) = old.map_or((goal, lean_goal), |o| {
+        let covered = clearance(
+            &ink_box([block.at[0] + goal[0], block.at[1] + goal[1]], block.size(frame), frame),
+            block.key,
+            place == INSIDE,
+            obstacles,
+            &taken,
+            frame,
+        ) < 0.08 * frame.label;
+        let seen = if covered { 0.0 } else { 1.0 };
+        let (offset, lean, opacity) = old.map_or((goal, lean_goal, seen), |o| {
             let go = |from: f64, to: f64| from + (to - from) * SLIDE;
-            ([go(o.offset[0], goal[0]), go(o.offset[1], goal[1])], go(o.lean, lean_goal))
+            let offset = [go(o.offset[0], goal[0]), go(o.offset[1], goal[1])];
+            (offset, go(o.lean, lean_goal), go(o.opacity, seen))
         });
+        if covered {
+            // Unseen, it takes no room from others.
+            standings.push(Standing { key: block.key, place, offset, lean, opacity });
+            continue;
+        }
         let size = block.size(frame);
         taken.push(ink_box([block.at[0] + goal[0], block.at[1] + goal[1]], size, frame));
         if let Some((later, goal)) = later.and_then(|l| Some((l, l.offset(place, frame)?))) {
@@ -203,7 +222,7 @@ pub fn step(
                 frame,
             ));
         }
-        standings.push(Standing { key: block.key, place, offset, lean });
+        standings.push(Standing { key: block.key, place, offset, lean, opacity });
     }
     standings
 }
@@ -228,7 +247,10 @@ fn trouble(
     let rect = ink_box([block.at[0] + offset[0], block.at[1] + offset[1]], block.size(frame), frame);
     let clear = clearance(&rect, block.key, place == INSIDE, obstacles, taken, frame);
     let need = 0.35 * frame.label;
-    if clear >= need { 0.0 } else { 40.0 + 60.0 * (need - clear) / need }
+    let near = rect.grown(0.12 * frame.label);
+    let crossed = obstacles.pieces.iter().any(|[a, b]| clip_piece(*a, *b, &near).is_some());
+    let through = if crossed { 30.0 } else { 0.0 };
+    if clear >= need { through } else { 40.0 + 60.0 * (need - clear) / need + through }
 }
 
 /// How far a label's box stands from the nearest thing that it must not touch, px.
@@ -301,10 +323,10 @@ pub fn place(
         let rect = ink_box(middle, block.size(frame), frame);
         let inside = a.place == INSIDE || b.place == INSIDE;
         let clear = clearance(&rect, block.key, inside, obstacles, &taken, frame);
-        // From just clear to clear by a sixth of its size: no label pops.
-        let share = (clear / (0.16 * frame.label)).clamp(0.0, 1.0);
-        let opacity = share * share * (3.0 - 2.0 * share);
-        if opacity > 0.0 {
+        // What slides past something more important fades before it touches it.
+        let share = (clear / (0.08 * frame.label)).clamp(0.0, 1.0);
+        let opacity = share * share * (3.0 - 2.0 * share) * go(a.opacity, b.opacity);
+        if opacity > 0.02 {
             taken.push(rect);
             placed.push(Placed { block: block.clone(), rect, lean: go(a.lean, b.lean), opacity });
         }

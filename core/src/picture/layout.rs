@@ -3,14 +3,14 @@
 use super::caption::{self, Caption};
 use super::emptiness::Emptiness;
 use super::frame::Frame;
-use super::geometry::{Px, Rect, between, length};
+use super::geometry::{Px, Rect, along, between, length};
 use super::labels::{self, Block, Key, Line, Obstacles, Standing};
 use super::list::{Shape, Tag};
 use super::marks::arrow::{self, Kind};
 use super::marks::foot::Foot;
 use super::marks::readout::{self, Reading};
 use super::marks::sector::{self, AreaLabel, Areas};
-use super::marks::{apsides, body, foot};
+use super::marks::{apsides, body, foot, tail};
 use super::scene::{Scene, Spot};
 use super::view::Camera;
 use super::wording::Grain;
@@ -120,15 +120,22 @@ impl Layout {
             let empty = layout.look_round(show, beat, frame);
             layout.caption = text.map(|text| {
                 let mut caption = Caption::set(text, &frame);
-                let within = Rect { bottom: frame.foot_baseline() - frame.label, ..frame.whole() };
+                let (w, h) = (caption.rect.width(), caption.rect.height());
                 let margin = frame.margin.max(0.5 * frame.label);
-                let within = Rect {
+                let within = |margin: f64, top: f64| Rect {
                     left: margin,
-                    top: 0.8 * margin,
+                    top,
                     right: frame.width - margin,
-                    bottom: within.bottom,
+                    bottom: frame.foot_baseline() - frame.label,
                 };
-                caption.move_to(empty.best(caption.rect.width(), caption.rect.height(), &within, &frame));
+                let (corner, covered) = empty.best(w, h, &within(margin, 0.8 * margin), &frame);
+                // Where there is no empty place, nearer to the edge there may be one.
+                let tight = if covered {
+                    empty.best(w, h, &within(0.5 * margin, 0.4 * margin), &frame).0
+                } else {
+                    corner
+                };
+                caption.move_to(tight);
                 caption
             });
         }
@@ -251,11 +258,18 @@ impl Layout {
     }
 
     /// What labels keep clear of.
-    pub fn obstacles(&self, spots: &[Spot], areas: &[AreaLabel]) -> Obstacles {
+    pub fn obstacles(&self, scene: &Scene<'_>, spots: &[Spot], areas: &[AreaLabel]) -> Obstacles {
         let mut rects = self.foot_rects.clone();
         rects.extend(self.caption.as_ref().map(|c| c.rect));
         rects.extend(areas.iter().map(|l| l.rect));
-        Obstacles { rects, discs: labels::discs(spots) }
+        let tails = tail::pieces(scene, spots).into_iter().flat_map(|t| t.1);
+        let arrows = scene.beat.marks.iter().filter_map(|mark| {
+            let (kind, ..) = arrow::of_mark(mark)?;
+            let largest = self.foot.largest[usize::from(kind == Kind::Gravity)];
+            let (from, direction, long) = arrow::shaft(scene, spots, mark, arrow::scale(scene, largest))?;
+            Some([from, along(from, direction, long)])
+        });
+        Obstacles { rects, discs: labels::discs(spots), pieces: tails.chain(arrows).collect() }
     }
 
     /// The labels' places around an instant: at the step before, at the step after, and the share of the way.
@@ -284,7 +298,7 @@ impl Layout {
             let t_s = layout.first_step_s + layout.step_s * to_real(step);
             let scene = scene_at(show, beat, layout.key, frame, t_s);
             let spots = scene.spots();
-            (layout.blocks(&scene, &spots), layout.obstacles(&spots, &layout.area_labels(&scene)))
+            (layout.blocks(&scene, &spots), layout.obstacles(&scene, &spots, &layout.area_labels(&scene)))
         };
         // Each instant is needed twice, as now and as soon.
         let first = self.steps.len();
@@ -340,22 +354,25 @@ fn foot_of(scene: &Scene<'_>, area_words: Option<&'static str>) -> Foot {
 fn clutter(scene: &Scene<'_>, frame: &Frame) -> Vec<Px> {
     let apart = 0.5 * frame.label;
     let mut found: Vec<Px> = Vec::new();
-    for item in &scene.items {
-        let Shape::Line { points, .. } = &item.shape else {
-            continue;
-        };
-        for w in points.windows(2) {
-            let long = length(between(w[0], w[1]));
-            let pieces = (long / apart).ceil().clamp(1.0, 200.0);
-            let mut i = 0.0;
-            while i < pieces {
-                let p =
-                    [w[0][0] + (w[1][0] - w[0][0]) * i / pieces, w[0][1] + (w[1][1] - w[0][1]) * i / pieces];
-                if found.last().is_none_or(|l| length(between(*l, p)) >= 0.8 * apart) && found.len() < 1500 {
-                    found.push(p);
-                }
-                i += 1.0;
+    let mut along_piece = |a: Px, b: Px| {
+        let pieces = (length(between(a, b)) / apart).ceil().clamp(1.0, 200.0);
+        let mut i = 0.0;
+        while i < pieces {
+            let p = along(a, between(a, b), i / pieces);
+            if found.last().is_none_or(|l| length(between(*l, p)) >= 0.8 * apart) && found.len() < 2000 {
+                found.push(p);
             }
+            i += 1.0;
+        }
+    };
+    for item in &scene.items {
+        match (&item.shape, item.tag) {
+            (Shape::Line { points, .. }, _) => points.windows(2).for_each(|w| along_piece(w[0], w[1])),
+            // Of a hatch every second line is enough to tell where it is.
+            (Shape::Segments { segments, .. }, Tag::Sector(..)) => {
+                segments.iter().step_by(2).for_each(|s| along_piece(s[0], s[1]));
+            }
+            _ => {}
         }
     }
     found

@@ -25,6 +25,8 @@ pub const INK_2: Colour = rgb(0x00c4_b9a5);
 pub const INK_3: Colour = rgb(0x0097_8c7a);
 /// What is being explained (9.3).
 pub const LAMP: Colour = rgb(0x00f4_a02c);
+/// The quiet line of what is being explained (4.8).
+pub const LAMP_2: Colour = rgb(0x00a8_722a);
 /// Model time and nothing else (8.8).
 pub const COOL: Colour = rgb(0x008f_b2c4);
 

@@ -99,27 +99,28 @@ pub fn scale(scene: &Scene<'_>, largest: f64) -> f64 {
     if largest > 0.0 { scene.frame.part(LONGEST) / largest } else { 0.0 }
 }
 
-/// Draws an arrow from a body's edge. Its length over the scale is the vector's size as seen in the picture's plane.
+/// Draws an arrow from a body's edge.
 pub fn draw(scene: &mut Scene<'_>, spots: &[Spot], mark: &Mark, scale_px: f64) {
-    let Some((kind, body, about)) = of_mark(mark) else {
+    let (Some((kind, body, _)), Some((from, direction, long))) =
+        (of_mark(mark), shaft(scene, spots, mark, scale_px))
+    else {
         return;
     };
-    let Some(spot) = spots.iter().find(|s| s.body == body).copied() else {
-        return;
-    };
-    let Some(v) = vector(scene, kind, body, about, scene.t_s) else {
-        return;
-    };
-    let flat = [v.dot(&scene.camera.right) * scale_px, -v.dot(&scene.camera.up) * scale_px];
-    let long = length(flat);
-    if !(long > 1.0 && long.is_finite()) {
-        return;
-    }
-    let direction = [flat[0] / long, flat[1] / long];
-    let from = along(spot.at, direction, spot.radius);
     let segments = pieces(from, direction, long, scene.frame.part(1.0 / 45.0));
     let stroke = stroke(scene.frame.line(look::STRONG), kind.colour());
     scene.add(Tag::Arrow(body), Shape::Segments { segments, stroke });
+}
+
+/// Start, direction and length of an arrow. Its length over the scale is the vector's size as seen in the picture's
+/// plane; `None`: nothing to draw.
+pub fn shaft(scene: &Scene<'_>, spots: &[Spot], mark: &Mark, scale_px: f64) -> Option<(Px, Px, f64)> {
+    let (kind, body, about) = of_mark(mark)?;
+    let spot = spots.iter().find(|s| s.body == body)?;
+    let v = vector(scene, kind, body, about, scene.t_s)?;
+    let flat = [v.dot(&scene.camera.right) * scale_px, -v.dot(&scene.camera.up) * scale_px];
+    let long = length(flat);
+    let direction = [flat[0] / long, flat[1] / long];
+    (long > 1.0 && long.is_finite()).then(|| (along(spot.at, direction, spot.radius), direction, long))
 }
 
 /// Shaft and head of an arrow; a short one has a head of at most half its length.

@@ -33,7 +33,8 @@ impl Osculating {
     pub fn of(scene: &Scene<'_>, body: BodyId, about: Option<BodyId>) -> Option<Self> {
         let found = osculating(&scene.show.ephemeris, &scene.show.initial, body, about, scene.t_s)?;
         let e = &found.elements;
-        let turned = rotation_z(e.node_rad) * rotation_x(e.inclination_rad) * rotation_z(e.argument_rad);
+        // Turning the axes back by the three angles turns the vectors forward.
+        let turned = rotation_z(-e.node_rad) * rotation_x(-e.inclination_rad) * rotation_z(-e.argument_rad);
         Some(Self {
             focus: found.focus.pos,
             toward_periapsis: turned * Vector3::new(1.0, 0.0, 0.0),

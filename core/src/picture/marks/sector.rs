@@ -1,6 +1,6 @@
 //! Sectors: what the line from centre to body covers in equal times, with tint, hatch and area.
 
-use super::super::geometry::{Rect, along, between, clip_area, hatch, unit};
+use super::super::geometry::{Px, Rect, along, between, clip_area, hatch, length, unit};
 use super::super::list::{Shape, Tag};
 use super::super::scene::{Scene, points, stroke};
 use super::super::{look, type_metrics, wording};
@@ -8,10 +8,13 @@ use super::conic::Osculating;
 use crate::Vector3;
 use crate::math::float;
 use crate::scenario::{BodyId, Mark};
+use crate::sweep;
 use crate::units::Span;
 
 /// More sectors than this tell nobody anything.
 const MOST: usize = 72;
+/// How far past the covered stretch an area may slide along the path, in lengths of the stretch.
+const SLIDE_PAST: f64 = 4.0;
 
 /// The sectors of one mark.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -68,6 +71,12 @@ impl Sectors {
     pub fn ends_s(&self, index: usize) -> [f64; 2] {
         let from = self.from_s + as_f64(index) * self.every_s;
         [from, from + self.every_s]
+    }
+
+    /// Area of one of them, m²; `None` where the ephemeris doesn't reach.
+    fn area_m2(&self, scene: &Scene<'_>, index: usize) -> Option<f64> {
+        let [from_s, until_s] = self.ends_s(index);
+        sweep::area_m2(&scene.show.ephemeris, self.body, self.about, from_s, until_s)
     }
 }
 
@@ -128,6 +137,8 @@ pub struct AreaLabel {
     pub text: String,
     /// Where it stands.
     pub rect: Rect,
+    /// A line from its sector's rim, where it doesn't stand beside it.
+    pub leader: Option<[Px; 2]>,
     /// 0 while its sector still grows, 1 soon after.
     pub opacity: f64,
 }
@@ -150,7 +161,7 @@ pub fn areas_of(scene: &Scene<'_>) -> (Vec<Areas>, Option<&'static str>) {
     let all: Vec<Sectors> =
         scene.beat.marks.iter().filter_map(|m| Sectors::of(scene, m)).filter(|s| s.area).collect();
     let values: Vec<Vec<Option<f64>>> =
-        all.iter().map(|s| (0..s.count).map(|i| area_m2(scene, s, i)).collect()).collect();
+        all.iter().map(|s| (0..s.count).map(|i| s.area_m2(scene, i)).collect()).collect();
     let largest = values.iter().flatten().flatten().copied().fold(0.0, f64::max);
     if largest <= 0.0 {
         return (Vec::new(), None);
@@ -178,30 +189,6 @@ pub fn areas_of(scene: &Scene<'_>) -> (Vec<Areas>, Option<&'static str>) {
     (sets.collect(), Some(words))
 }
 
-/// Area of one sector, m²; `None` where the ephemeris doesn't reach.
-fn area_m2(scene: &Scene<'_>, sectors: &Sectors, index: usize) -> Option<f64> {
-    let [from_s, until_s] = sectors.ends_s(index);
-    let eph = &scene.show.ephemeris;
-    if from_s < eph.from_s() || until_s > eph.until_s() {
-        return None;
-    }
-    let n = 400;
-    let mut sum = 0.0;
-    for i in 0..=n {
-        let t = from_s + (until_s - from_s) * f64::from(i) / f64::from(n);
-        let s = eph.relative(sectors.body, sectors.about, t)?;
-        let w = if i == 0 || i == n {
-            1.0
-        } else if i % 2 == 1 {
-            4.0
-        } else {
-            2.0
-        };
-        sum += w * 0.5 * s.pos.cross(&s.vel).norm();
-    }
-    Some(sum * (until_s - from_s) / (3.0 * f64::from(n)))
-}
-
 impl Areas {
     /// The labels of a scene.
     pub fn labels(&self, scene: &Scene<'_>) -> Vec<AreaLabel> {
@@ -222,25 +209,44 @@ impl Areas {
                 _ => 1.0,
             };
             let text = self.texts.iter().find(|t| t.0 == index)?.1.clone();
-            Some(AreaLabel { index, body: self.sectors.body, text, rect, opacity })
+            let leader = self.leader(scene, index, &rect);
+            Some(AreaLabel { index, body: self.sectors.body, text, rect, leader, opacity })
         };
         rects.into_iter().filter_map(label).collect()
+    }
+
+    /// From the middle of a sector's rim to its area's box, where that has slid away from it.
+    fn leader(&self, scene: &Scene<'_>, index: usize, rect: &Rect) -> Option<[Px; 2]> {
+        let size = scene.frame.label;
+        let [from_s, until_s] = self.sectors.ends_s(index);
+        let middle_s = 0.5 * (from_s + until_s);
+        let curve = scene.curve(self.sectors.body, Some(self.sectors.about));
+        let at = |t: f64| curve.trace(&scene.camera, &scene.keep(), t, t).first().map(|s| s.at);
+        let rim = at(middle_s)?;
+        let near = rect.grown(0.1 * size);
+        let end = [rim[0].clamp(near.left, near.right), rim[1].clamp(near.top, near.bottom)];
+        let half_rim = 0.5 * length(between(at(from_s)?, at(until_s)?));
+        let way = between(rim, end);
+        (length(way) > half_rim + 0.9 * size).then(|| [along(rim, way, 0.12 * size / length(way)), end])
     }
 
     /// Where the areas stand, those to come included, so that none has to make room later.
     ///
     /// Each starts outside the middle of its rim, along the path's normal, and slides along the path away from its
-    /// neighbours until all are clear of one another.
+    /// neighbours, past the ends of the covered stretch if it must, until all are clear of one another.
     fn spread(&self, scene: &Scene<'_>) -> Vec<(usize, Rect)> {
         let sectors = &self.sectors;
         let centre = scene.camera.project(scene.position(sectors.about));
         let curve = scene.curve(sectors.body, Some(sectors.about));
         let size = scene.frame.label;
         let at_px = |t: f64| curve.trace(&scene.camera, &scene.keep(), t, t).first().map(|s| s.at);
-        let last_s = sectors.ends_s(sectors.count - 1)[1].min(scene.show.ephemeris.until_s());
+        let eph = &scene.show.ephemeris;
+        let whole_s = sectors.every_s * as_f64(sectors.count);
+        let first_s = (sectors.from_s - SLIDE_PAST * whole_s).max(eph.from_s());
+        let last_s = (sectors.from_s + (1.0 + SLIDE_PAST) * whole_s).min(eph.until_s());
         let place = |t: f64, width: f64| -> Option<Rect> {
             let h = 0.02 * sectors.every_s;
-            let (a, b) = (at_px((t - h).max(sectors.from_s))?, at_px((t + h).min(last_s))?);
+            let (a, b) = (at_px((t - h).max(first_s))?, at_px((t + h).min(last_s))?);
             let at = at_px(t)?;
             let from_centre = between(centre, at);
             let along_path = unit(between(a, b)).or_else(|| unit([-from_centre[1], from_centre[0]]))?;
@@ -257,17 +263,23 @@ impl Areas {
             self.texts.iter().map(|t| 0.5 * sectors.ends_s(t.0).iter().sum::<f64>()).collect();
         let mut rects: Vec<Option<Rect>> =
             times.iter().zip(&self.texts).map(|(t, text)| place(*t, text.2)).collect();
-        let push = 0.04 * sectors.every_s;
+        // About a tenth of a letter at a time, whatever the body's speed there.
+        let push = |t: f64| {
+            let h = 0.05 * sectors.every_s;
+            let (a, b) = (at_px((t - h).max(first_s)), at_px((t + h).min(last_s)));
+            let gone = a.zip(b).map_or(0.0, |(a, b)| length(between(a, b)));
+            (2.0 * h * 0.12 * size / gone.max(1e-3)).clamp(0.02 * sectors.every_s, 2.0 * sectors.every_s)
+        };
         // Each pass pushes every touching pair of neighbours apart in time; the number of passes bounds the work.
-        for _ in 0..60 {
+        for _ in 0..120 {
             let mut moved = false;
             for i in 1..times.len() {
                 let (Some(a), Some(b)) = (rects[i - 1], rects[i]) else {
                     continue;
                 };
                 if a.gap(&b) < 0.22 * size {
-                    times[i - 1] = (times[i - 1] - push).max(sectors.from_s);
-                    times[i] = (times[i] + push).min(last_s);
+                    times[i - 1] = (times[i - 1] - push(times[i - 1])).max(first_s);
+                    times[i] = (times[i] + push(times[i])).min(last_s);
                     rects[i - 1] = place(times[i - 1], self.texts[i - 1].2);
                     rects[i] = place(times[i], self.texts[i].2);
                     moved = true;

@@ -14,38 +14,40 @@ const LINES: [(f64, f64, f64); 5] =
 const LENGTH: f64 = 0.13;
 const AU_M: f64 = 149_597_870_700.0;
 
-/// Draws the tails of all comets on stage, away from the star with the greatest GM. They shorten as the star's
-/// warmth does, with the distance, between a third and 1.2 of their length at 1 au; seen from the end they are short.
+/// Draws the tails of all comets on stage.
 pub fn draw(scene: &mut Scene<'_>, spots: &[Spot]) {
-    let Some(star) = brightest(scene) else {
-        return;
-    };
-    for spot in spots {
-        let comet = scene.show.scenario.bodies.get(spot.body.0).is_some_and(|b| b.kind == Kind::Comet);
-        if !comet {
-            continue;
+    for (body, segments) in pieces(scene, spots) {
+        let stroke = stroke(scene.frame.line(look::HATCH), look::INK);
+        if segments.iter().flatten().any(|p| scene.keep().holds(*p)) {
+            scene.add(Tag::Tail(body), Shape::Segments { segments: segments.to_vec(), stroke });
         }
+    }
+}
+
+/// The lines of all tails, away from the star with the greatest GM. They shorten as the star's warmth does, with the
+/// distance, between a third and 1.2 of their length at 1 au; seen from the end they are short.
+pub fn pieces(scene: &Scene<'_>, spots: &[Spot]) -> Vec<(BodyId, [[Px; 2]; 5])> {
+    let Some(star) = brightest(scene) else {
+        return Vec::new();
+    };
+    let is_comet = |id: BodyId| scene.show.scenario.bodies.get(id.0).is_some_and(|b| b.kind == Kind::Comet);
+    let of = |spot: &Spot| {
         let away = scene.position(spot.body) - scene.position(star);
         let distance = away.norm();
         if distance <= 0.0 {
-            continue;
+            return None;
         }
         let unit = scene.camera.turn(away / distance).map(|v| v / scene.camera.px_per_m);
         let long = scene.frame.part(LENGTH) * (AU_M / distance).sqrt().clamp(0.33, 1.2);
-        if length(unit) <= 0.05 {
-            continue;
-        }
         let segments = LINES.map(|(turn_deg, from, to)| {
             let (s, c) = float::sin_cos(turn_deg.to_radians());
             let d = [unit[0] * c - unit[1] * s, unit[0] * s + unit[1] * c];
             let start: Px = along(spot.at, d, spot.radius * 1.15 + from * long);
             [start, along(spot.at, d, spot.radius * 1.15 + to * long)]
         });
-        let stroke = stroke(scene.frame.line(look::HATCH), look::INK);
-        if segments.iter().flatten().any(|p| scene.keep().holds(*p)) {
-            scene.add(Tag::Tail(spot.body), Shape::Segments { segments: segments.to_vec(), stroke });
-        }
-    }
+        (length(unit) > 0.05).then_some((spot.body, segments))
+    };
+    spots.iter().filter(|s| is_comet(s.body)).filter_map(of).collect()
 }
 
 fn brightest(scene: &Scene<'_>) -> Option<BodyId> {
