@@ -249,18 +249,16 @@ impl Planner<'_> {
         count * slower
     }
 
-    /// The time that belongs to a body's distance and speed, where it has no period.
+    /// The time that belongs to a body's distance and speed, or to its fall, where it has no period.
     fn fall_s(&self, body: BodyId, t_s: f64) -> f64 {
-        let relative = self
-            .initial
-            .bodies
-            .get(body.0)
-            .and_then(|b| b.primary)
-            .and_then(|primary| self.ephemeris.relative(body, primary, t_s));
-        match relative {
-            Some(state) if state.vel.norm() > 0.0 => (state.pos.norm() / state.vel.norm()).max(1.0),
-            _ => 86_400.0,
-        }
+        let Some(primary) = self.initial.bodies.get(body.0).and_then(|b| b.primary) else {
+            return constants::DAY_S;
+        };
+        let Some(state) = self.ephemeris.relative(body, primary, t_s) else { return constants::DAY_S };
+        let r = state.pos.norm();
+        let gm = self.ephemeris.gm_m3_s2(primary, t_s) + self.ephemeris.gm_m3_s2(body, t_s);
+        let time_s = (r / state.vel.norm()).min(std::f64::consts::TAU * r * (r / gm).sqrt());
+        if time_s.is_finite() { time_s.max(1.0) } else { constants::DAY_S }
     }
 
     fn never(&self, beat: &Beat, event: EventRef, after_s: f64) -> Problem {
