@@ -45,11 +45,13 @@ function settled(worker) {
  */
 async function keepOffline() {
   if (!("serviceWorker" in navigator) || !isSecureContext) return false;
-  const version = await servedVersion();
-  if (!version) return false;
-  const url = new URL(`sw.js?v=${encodeURIComponent(version)}`, location.href).href;
   const controller = navigator.serviceWorker.controller;
-  if (controller && controller.scriptURL === url) return false;
+  const running = controller && new URL(controller.scriptURL).searchParams.get("v");
+  const version = (await servedVersion()) ?? running;
+  if (!version) return false;
+  document.documentElement.dataset.build = version;
+  const url = new URL(`sw.js?v=${encodeURIComponent(version)}`, location.href).href;
+  if (version === running) return false;
   try {
     const registration = await navigator.serviceWorker.register(url, { updateViaCache: "none" });
     const coming = registration.installing ?? registration.waiting;

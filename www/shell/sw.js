@@ -1,51 +1,21 @@
 // Keeps a whole build, so that a show opens with no server and no network.
-// The query names the build; a new build is a new worker with a cache of its own.
+// A new build is a new worker with a cache of its own.
 
-const VERSION = new URL(location.href).searchParams.get("v") ?? "unknown";
+// The build fills in its own version and the paths of all its files.
+const VERSION = "__VERSION__";
+const FILES = ["__FILES__"];
 const CACHE = `fallaround-build-${VERSION}`;
-const FILES = [
-  "./",
-  "app.js",
-  "app_bg.wasm",
-  "boot.js",
-  "fonts.css",
-  "fonts/literata-latin-400.woff2",
-  "fonts/literata-latin-ext-400.woff2",
-  "fonts/mono-latin-400.woff2",
-  "fonts/mono-latin-ext-400.woff2",
-  "fonts/next-latin-400.woff2",
-  "fonts/next-latin-500.woff2",
-  "fonts/next-latin-600.woff2",
-  "fonts/next-latin-700.woff2",
-  "fonts/next-latin-ext-400.woff2",
-  "fonts/next-latin-ext-500.woff2",
-  "fonts/next-latin-ext-600.woff2",
-  "fonts/next-latin-ext-700.woff2",
-  "icons/fallaround-192.png",
-  "icons/fallaround-512.png",
-  "icons/fallaround.svg",
-  "manifest.webmanifest",
-  "present.css",
-  "scenarios/index.json",
-  "start.css",
-  "style.css",
-  "tokens.css",
-  "worker.js",
-];
 
 /** Fetches one file past every other cache and keeps it. */
 async function keep(cache, path) {
   const answer = await fetch(path, { cache: "no-store" });
   if (!answer.ok) throw new Error(`${path}: ${answer.status}`);
-  await cache.put(path, answer.clone());
-  return answer;
+  await cache.put(path, answer);
 }
 
 async function install() {
   const cache = await caches.open(CACHE);
   await Promise.all(FILES.map((path) => keep(cache, path)));
-  const names = await (await cache.match("scenarios/index.json")).json();
-  await Promise.all(names.map((name) => keep(cache, `scenarios/${encodeURIComponent(name)}`)));
   await self.skipWaiting();
 }
 

@@ -1,0 +1,100 @@
+//! Present: the house picture fills the window; everything else comes when asked for and goes by itself.
+
+pub mod controls;
+pub mod dialogs;
+pub mod spoken;
+pub mod words_to_say;
+
+use crate::command::Press;
+use crate::panels::Progress;
+use crate::stage::StageCanvas;
+use crate::state::State;
+use controls::Controls;
+use dialogs::{KeysCard, LeaveQuestion};
+use leptos::ev;
+use leptos::prelude::*;
+use leptos_use::{use_event_listener, use_window};
+use spoken::Spoken;
+use std::time::Duration;
+use wasm_bindgen::JsCast;
+use words_to_say::WordsToSay;
+
+/// How long the controls stay after the last sign of a hand.
+const STAY: Duration = Duration::from_secs(3);
+
+/// The place where a show runs.
+#[component]
+pub fn Present() -> impl IntoView {
+    let state = expect_context::<State>();
+    let shown = hands_seen();
+    _ = use_event_listener(use_window(), ev::keydown, move |event| hear(state, &event));
+    let away = Signal::derive(move || !shown.get() || state.keys.get() || state.leaving.get());
+    view! {
+        <main class="present" class:still=move || away.get() class:speaking=move || state.words.get()>
+            <h1 class="unseen">{move || state.title.get()}</h1>
+            <div class="stage"><StageCanvas/></div>
+            <Show when=move || state.words.get()>
+                <WordsToSay/>
+            </Show>
+            <Controls away/>
+            <Progress/>
+            <Spoken/>
+        </main>
+        <KeysCard/>
+        <LeaveQuestion/>
+    }
+}
+
+/// Whether a pointer, a touch or the focus has been at work in the last three seconds.
+fn hands_seen() -> ReadSignal<bool> {
+    let (shown, set_shown) = signal(true);
+    let timer = StoredValue::new_local(None::<TimeoutHandle>);
+    let seen = move || {
+        timer.update_value(|timer| timer.take().into_iter().for_each(|timer| timer.clear()));
+        if !shown.get_untracked() {
+            set_shown.set(true);
+        }
+        let hide = move || {
+            let busy = focus_in_controls();
+            set_shown.set(busy);
+        };
+        timer.set_value(set_timeout_with_handle(hide, STAY).ok());
+    };
+    _ = use_event_listener(use_window(), ev::pointermove, move |_| seen());
+    _ = use_event_listener(use_window(), ev::pointerdown, move |_| seen());
+    _ = use_event_listener(use_window(), ev::focusin, move |_| seen());
+    on_cleanup(move || timer.update_value(|timer| timer.take().into_iter().for_each(|timer| timer.clear())));
+    seen();
+    shown
+}
+
+/// Whether a keyboard is at the controls: then they stay.
+fn focus_in_controls() -> bool {
+    let document = web_sys::window().and_then(|w| w.document());
+    document.and_then(|d| d.query_selector(".controls :focus-visible").ok().flatten()).is_some()
+}
+
+/// Hears a key, unless it belongs to what has the focus.
+fn hear(state: State, event: &web_sys::KeyboardEvent) {
+    let key = event.key();
+    let at = event.target().and_then(|target| target.dyn_into::<web_sys::Element>().ok());
+    let within = |what: &str| at.as_ref().and_then(|at| at.closest(what).ok().flatten()).is_some();
+    let for_focus = match key.as_str() {
+        // In a dialog and in the list of problems, these are for what has the focus.
+        "Enter" | " " | "Tab" => within("dialog, .problems, .progress"),
+        "ArrowUp" | "ArrowDown" => true,
+        // A focused button is pressed by Enter; a number being typed is finished by it elsewhere.
+        _ => false,
+    };
+    let for_button = key == "Enter" && within("button");
+    if for_focus || for_button || within("input, textarea, select") {
+        return;
+    }
+    // Shift and Tab go back through what can be pressed, as everywhere.
+    let backwards = key == "Tab" && event.shift_key();
+    let modified = event.ctrl_key() || event.alt_key() || event.meta_key() || backwards;
+    let press = Press { key: &key, repeat: event.repeat(), modified };
+    if state.press(press) {
+        event.prevent_default();
+    }
+}
