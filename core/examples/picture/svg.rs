@@ -4,7 +4,7 @@ use fallaround_core::picture::{Anchor, Colour, DisplayList, Shape, Stroke};
 use std::fmt::Write;
 
 /// The whole list. `fonts` goes into the style sheet as it stands.
-pub fn svg(list: &DisplayList, fonts: &str) -> String {
+pub(crate) fn svg(list: &DisplayList, fonts: &str) -> String {
     let (w, h) = (list.width, list.height);
     let mut out = format!(
         "<svg xmlns=\"http://www.w3.org/2000/svg\" width=\"{w}\" height=\"{h}\" viewBox=\"0 0 {w} {h}\">\n<style>{fonts}\

@@ -24,6 +24,8 @@ const BODY_LOOKS: u32 = 120;
 const MARK_LOOKS: u32 = 4;
 /// The most steps in which labels are placed; later instants have the last one's places.
 const MOST_STEPS: usize = 6000;
+/// How many steps past the planned end, or past the last one decided, are decided at once.
+const STEPS_PAST_PLAN: usize = 16;
 
 /// The layout of one beat.
 #[derive(Debug)]
@@ -42,6 +44,7 @@ pub struct Layout {
     step_s: f64,
     /// Model time of the first step.
     first_step_s: f64,
+    planned_steps: f64,
     order: Vec<BodyId>,
     clutter: Vec<Px>,
     steps: Vec<Vec<Standing>>,
@@ -111,10 +114,14 @@ impl Layout {
                 Some(planned) if planned.keeps_sectors => planned.from_s.max(key.beat_from_s),
                 _ => key.beat_from_s,
             },
+            planned_steps: 0.0,
             order: order(show, beat),
             clutter: Vec::new(),
             steps: Vec::new(),
         };
+        if layout.step_s > 0.0 {
+            layout.planned_steps = (scene.until_s - layout.first_step_s) / layout.step_s;
+        }
         if frame.has_text {
             let text = caption::text_of(beat, &options.language, &show.scenario.language);
             let empty = layout.look_round(show, beat, frame);
@@ -283,9 +290,12 @@ impl Layout {
         let position =
             if self.step_s > 0.0 { ((t_s - self.first_step_s) / self.step_s).max(0.0) } else { 0.0 };
         let position = if position.is_finite() { position } else { 0.0 };
-        let wanted = (0..MOST_STEPS).take_while(|&i| to_real(i) <= position).count() + 1;
+        // Past the planned end steps are added as time goes on. On the way here from an instant far beyond (a restart) there
+        // is nothing to be decided out there: the last places hold.
+        let planned = index(self.planned_steps).max(self.steps.len()) + STEPS_PAST_PLAN;
+        let wanted = (index(position) + 2).min(planned).min(MOST_STEPS);
         if self.steps.len() < wanted {
-            self.extend(show, beat, frame, wanted.min(MOST_STEPS));
+            self.extend(show, beat, frame, wanted);
         }
         let last = self.steps.len() - 1;
         let (a, b) = ((wanted - 2).min(last), (wanted - 1).min(last));
@@ -315,6 +325,15 @@ impl Layout {
             ahead.push_back(soon);
         }
     }
+}
+
+#[expect(
+    clippy::cast_possible_truncation,
+    clippy::cast_sign_loss,
+    reason = "clamped to 0..=MOST_STEPS before"
+)]
+fn index(value: f64) -> usize {
+    value.clamp(0.0, 6000.0) as usize
 }
 
 fn to_real(index: usize) -> f64 {
