@@ -29,8 +29,10 @@ fn root() -> PathBuf {
 }
 
 fn files(folder: &Path, ending: &str, found: &mut Vec<PathBuf>) {
-    let mut entries: Vec<_> =
-        fs::read_dir(folder).expect("a readable folder").map(|e| e.expect("a readable entry").path()).collect();
+    let mut entries: Vec<_> = fs::read_dir(folder)
+        .expect("a readable folder")
+        .map(|e| e.expect("a readable entry").path())
+        .collect();
     entries.sort();
     for path in entries {
         if path.is_dir() {
@@ -62,7 +64,8 @@ fn core_imports_downwards_only() {
     let mut wrong = Vec::new();
     for path in found {
         let inside = path.strip_prefix(&base).expect("below core/src");
-        let first = inside.components().next().expect("a name").as_os_str().to_string_lossy().replace(".rs", "");
+        let first =
+            inside.components().next().expect("a name").as_os_str().to_string_lossy().replace(".rs", "");
         let Some(floor) = floor_of(&first) else { continue };
         let text = fs::read_to_string(&path).expect("a readable file");
         // What tests at the foot of a file reach for is their own affair.
@@ -106,7 +109,8 @@ fn the_developers_page_names_only_what_is_there() {
     let mut seen = 0;
     let mut wrong = Vec::new();
     for word in text.split('`').skip(1).step_by(2) {
-        let is_path = ["core/", "app/", "www/", "tests/", "scenarios/", ".ci/"].iter().any(|top| word.starts_with(top));
+        let is_path =
+            ["core/", "app/", "www/", "tests/", "scenarios/", ".ci/"].iter().any(|top| word.starts_with(top));
         if is_path && !word.contains(['*', '<', ' ']) {
             seen += 1;
             if !root().join(word).exists() {
