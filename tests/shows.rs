@@ -2,6 +2,8 @@
 //!
 //! The numbers are those of the words and captions in `scenarios/`; each is computed here from the show's own paths.
 
+#![allow(clippy::expect_used, reason = "what a test needs and lacks fails it")]
+
 use fallaround_core::ephemeris::events::{self, Query};
 use fallaround_core::ephemeris::osculating::osculating;
 use fallaround_core::math::float::atan2;

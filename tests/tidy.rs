@@ -1,5 +1,7 @@
 //! The rules of the house that a machine can see.
 
+#![allow(clippy::expect_used, reason = "what a test needs and lacks fails it")]
+
 use std::fs;
 use std::path::{Path, PathBuf};
 

@@ -13,9 +13,7 @@ pub(crate) const PATIENCE: Duration = Duration::from_secs(60);
 
 /// Keys that have no character of their own, in WebDriver's code.
 pub(crate) const PAGE_DOWN: &str = "\u{E00F}";
-pub(crate) const PAGE_UP: &str = "\u{E00E}";
 pub(crate) const ESCAPE: &str = "\u{E00C}";
-pub(crate) const ENTER: &str = "\u{E007}";
 
 /// A browser at work.
 pub(crate) struct Session {

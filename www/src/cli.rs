@@ -25,10 +25,14 @@ pub(crate) enum Command {
     Serve(Serve),
     /// Set up what the tests need, and run formatting, lints and every test, browser included.
     Test,
+    /// Prove scenarios before a show; exit code 1 when one of them can't be shown.
+    Check(Check),
     /// Print where every body is and how it moves, as CSV.
     Trace(Trace),
     /// Print what happens: apsides, closest approaches, contacts, conjunctions, oppositions, as CSV.
     Events(Events),
+    /// Print the digest that the app shows for the same file.
+    Fingerprint(Fingerprint),
 }
 
 /// How to serve.
@@ -48,6 +52,19 @@ pub(crate) struct Today {
     /// Take this day where a scenario says `date = "today"` [default: today's, UTC].
     #[arg(long, value_name = "YYYY-MM-DD", value_parser = day)]
     pub(crate) today: Option<f64>,
+}
+
+/// What to check.
+#[derive(Debug, Args)]
+pub(crate) struct Check {
+    /// Scenario files.
+    #[arg(required = true, value_name = "SCENARIO")]
+    pub(crate) scenarios: Vec<PathBuf>,
+    /// Print JSON.
+    #[arg(long)]
+    pub(crate) json: bool,
+    #[command(flatten)]
+    pub(crate) today: Today,
 }
 
 /// What to trace.
@@ -112,6 +129,16 @@ pub(crate) struct Events {
     /// Print JSON.
     #[arg(long)]
     pub(crate) json: bool,
+    #[command(flatten)]
+    pub(crate) today: Today,
+}
+
+/// What to take the fingerprint of.
+#[derive(Debug, Args)]
+pub(crate) struct Fingerprint {
+    /// Scenario file.
+    #[arg(value_name = "SCENARIO")]
+    pub(crate) scenario: PathBuf,
     #[command(flatten)]
     pub(crate) today: Today,
 }

@@ -9,8 +9,8 @@ use anyhow::{Context as _, Result};
 use fallaround_core::ephemeris::{Ephemeris, Propagation};
 use fallaround_core::initial::InitialState;
 use fallaround_core::resolve::resolve;
-use fallaround_core::scenario::today::dated;
-use fallaround_core::scenario::{self, BodyId, Place, Problem, Scenario};
+use fallaround_core::scenario::{self, BodyId, Place, Problem, Scenario, Severity, dated};
+use fallaround_core::show::{Rehearsal, Show};
 use indicatif::{ProgressBar, ProgressStyle};
 
 use crate::cli::Today;
@@ -38,7 +38,7 @@ impl fmt::Display for Wrong {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         for (index, problem) in self.problems.iter().enumerate() {
             let end = if index + 1 == self.problems.len() { "" } else { "\n" };
-            write!(f, "{}:{problem}{end}", self.file)?;
+            write!(f, "{}{end}", line(&self.file, problem))?;
         }
         Ok(())
     }
@@ -46,31 +46,27 @@ impl fmt::Display for Wrong {
 
 impl std::error::Error for Wrong {}
 
+/// A problem as editors read it: `file:line:column: what is wrong; what would be right`.
+pub(crate) fn line(file: &str, problem: &Problem) -> String {
+    let Problem { place, severity, wrong, remedy } = problem;
+    let note = if *severity == Severity::Note { "note: " } else { "" };
+    format!("{file}:{}:{}: {note}{wrong}; {remedy}", place.line, place.column)
+}
+
 /// The text of a scenario, with the day written in where it says "today".
 ///
 /// # Errors
 /// [`Wrong`] when the file can't be read or isn't UTF-8.
 pub(crate) fn text(path: &Path, today: &Today) -> Result<String> {
-    let fail =
-        |place, wrong: String, remedy: &str| Wrong::new(path, vec![Problem::error(place, wrong, remedy)]);
-    let start = Place { line: 1, column: 1 };
     let bytes = fs::read(path).map_err(|error| {
-        fail(start, format!("the file can't be read ({error})"), "give the path of a scenario file")
+        let wrong = format!("the file can't be read ({error})");
+        let place = Place { line: 1, column: 1 };
+        Wrong::new(path, vec![Problem::error(place, wrong, "give the path of a scenario file")])
     })?;
-    let text = String::from_utf8(bytes).map_err(|error| {
-        let good = error.utf8_error().valid_up_to();
-        let place = place_after(&String::from_utf8_lossy(&error.as_bytes()[..good]));
-        fail(place, "the file isn't text in UTF-8 from here on".to_owned(), "save it as UTF-8")
-    })?;
+    let text = String::from_utf8(bytes)
+        .map_err(|error| Wrong::new(path, scenario::parse_bytes(error.as_bytes()).problems))?;
     let now = SystemTime::now().duration_since(UNIX_EPOCH).map_or(0.0, |since| since.as_secs_f64());
     Ok(dated(&text, today.today.unwrap_or(now)).into_owned())
-}
-
-/// The place just behind a text.
-fn place_after(text: &str) -> Place {
-    let line = text.matches('\n').count() + 1;
-    let column = text.rsplit('\n').next().unwrap_or_default().chars().count() + 1;
-    Place { line, column }
 }
 
 /// A scenario and where everything in it starts.
@@ -139,6 +135,40 @@ impl Resolved {
     }
 }
 
+/// A rehearsed show, the text that it was made from, and what an author should look at.
+#[derive(Debug)]
+pub(crate) struct Rehearsed {
+    /// The text, its day written in.
+    pub(crate) text: String,
+    /// The show.
+    pub(crate) show: Show,
+    /// Problems that don't keep it from being shown.
+    pub(crate) notes: Vec<Problem>,
+}
+
+/// Rehearses a scenario.
+///
+/// # Errors
+/// [`Wrong`] with every problem.
+pub(crate) fn rehearsed(path: &Path, today: &Today) -> Result<Rehearsed> {
+    let text = text(path, today)?;
+    let wrong = |problems| Wrong::new(path, problems);
+    let mut rehearsal = Rehearsal::start(&text).map_err(wrong)?;
+    let bar = bar("Rehearsing")?;
+    loop {
+        let progress = rehearsal.work(STEPS).map_err(wrong)?;
+        bar.set_position(share(progress.fraction));
+        if progress.done {
+            break;
+        }
+    }
+    bar.finish_and_clear();
+    let notes = rehearsal.notes().to_vec();
+    let show =
+        rehearsal.finish().with_context(|| format!("{}: the rehearsal came to no end", path.display()))?;
+    Ok(Rehearsed { text, show, notes })
+}
+
 /// A bar on standard error, where that is a terminal and the work takes long enough to be seen.
 fn bar(what: &'static str) -> Result<ProgressBar> {
     let bar = ProgressBar::new(SCALE);
@@ -164,7 +194,7 @@ mod tests {
         let path = folder.path().join("bad.toml");
         fs::write(&path, b"format = 1\ntitle = \"\xe9\xff\"\n").unwrap();
         let error = text(&path, &Today::default()).unwrap_err().to_string();
-        assert!(error.starts_with(&format!("{}:2:10: ", path.display())), "{error}");
+        assert!(error.starts_with(&format!("{}:2:", path.display())), "{error}");
     }
 
     #[test]

@@ -44,7 +44,9 @@ fn run(cli: Cli) -> Result<ExitCode> {
     match cli.command.unwrap_or(Command::Serve(cli.serve)) {
         Command::Serve(options) => serve::command(&options),
         Command::Test => commands::test::command(),
-        Command::Events(options) => commands::events::command(&options),
+        Command::Check(options) => commands::check::command(&options),
         Command::Trace(options) => commands::trace::command(&options),
+        Command::Events(options) => commands::events::command(&options),
+        Command::Fingerprint(options) => commands::fingerprint::command(&options),
     }
 }

@@ -200,11 +200,13 @@ fn report(folder: &Path, started: Instant) -> Result<()> {
         Ok(fs::metadata(path).with_context(|| format!("{} can't be read", path.display()))?.len())
     };
     let kilobytes = |bytes: u64| (bytes + 500) / 1000;
+    let compressed = with_suffix(&module, ".br");
+    let compressed = if compressed.is_file() { compressed } else { module.clone() };
     eprintln!(
         "Built the app in {:.1} s: {} kB of wasm, {} kB compressed (brotli)",
         started.elapsed().as_secs_f64(),
         kilobytes(size(&module)?),
-        kilobytes(size(&with_suffix(&module, ".br"))?)
+        kilobytes(size(&compressed)?)
     );
     Ok(())
 }
