@@ -195,3 +195,64 @@ fn several_events_in_one_step_are_all_found() {
     assert_eq!(both.len(), 41);
     assert!(both.windows(2).all(|w| w[0].kind != w[1].kind));
 }
+
+/// A stone let go 100 m above an airless ground, with what its contact does.
+fn stone(surface: Surface) -> InitialState {
+    let mut ground = point("ground", 4e14, None, Vector3::zeros(), Vector3::zeros());
+    ground.radius_m = 6e6;
+    ground.surface = surface;
+    let stone = point("stone", 0.0, Some(0), Vector3::new(6e6 + 100.0, 0.0, 0.0), Vector3::zeros());
+    state(vec![ground, stone])
+}
+
+#[test]
+fn a_fall_ends_in_a_contact_and_nothing_happens_to_what_rests() {
+    let initial = stone(Surface::Stop);
+    let eph = run(&initial, 0.0, 1e5);
+    let found = all(&eph, &initial, 0.0, 1e5);
+    // It starts at the top of its fall; the ground stops it.
+    let kinds: Vec<_> = found.iter().map(|e| (e.kind, e.body, e.other)).collect();
+    let (stone, ground) = (BodyId(1), Some(BodyId(0)));
+    assert_eq!(
+        kinds,
+        vec![(EventKind::Apoapsis, stone, ground), (EventKind::Contact, stone, ground)],
+        "{found:?}"
+    );
+    // h = g t² / 2 and v = g t with g = GM / r², which grows by 3e-5 of itself on the way.
+    let g = 4e14 / (6e6 * 6e6);
+    assert!((found[1].t_s - (200.0_f64 / g).sqrt()).abs() < 1e-4, "{found:?}");
+    assert!((found[1].value - (200.0 * g).sqrt()).abs() < 1e-2 && found[1].unit == "m/s", "{found:?}");
+}
+
+#[test]
+fn rebounds_are_contacts_and_no_apsides_but_the_tops_between_them_are() {
+    let initial = stone(Surface::Bounce { restitution: 1.0 });
+    let eph = run(&initial, 0.0, 60.0);
+    let g = 4e14 / (6e6 * 6e6);
+    let fall = (200.0_f64 / g).sqrt();
+    let look = |kind| times(&find(&eph, &initial, &Query { kind, body: BodyId(1), other: None }, 0.0, 60.0));
+    let contacts = look(EventKind::Contact);
+    let want: Vec<f64> = (0..20).map(|k| fall * f64::from(2 * k + 1)).filter(|&t| t < 60.0).collect();
+    same_times(&contacts, &want, 1e-2);
+    let tops: Vec<f64> = (0..20).map(|k| fall * f64::from(2 * k)).filter(|&t| t < 60.0).collect();
+    same_times(&look(EventKind::Apoapsis), &tops, 1e-2);
+    assert_eq!(look(EventKind::Periapsis), Vec::<f64>::new());
+    let third = EventRef { kind: EventKind::Contact, body: BodyId(1), other: Some(BodyId(0)), nth: 3 };
+    assert_eq!(first(&eph, &initial, &third, 0.0).map(|e| e.t_s), Some(contacts[2]));
+}
+
+#[test]
+fn bodies_that_are_not_there_and_empty_paths_have_no_events() {
+    let initial = state(vec![star(), orbiting(GM, 0.0, AU, 0.3, 0.0)]);
+    let nothing = Ephemeris::new(vec![GM, 0.0]);
+    assert_eq!(find(&nothing, &initial, &PERI, -1e9, 1e9), vec![]);
+    let eph = run(&initial, 0.0, 1e8);
+    for (body, other) in [(7, None), (1, Some(7)), (1, Some(1)), (0, None)] {
+        for kind in EventKind::ALL {
+            let query = Query { kind, body: BodyId(body), other: other.map(BodyId) };
+            assert_eq!(find(&eph, &initial, &query, 0.0, 1e8), vec![], "{query:?}");
+        }
+    }
+    assert_eq!(find(&eph, &initial, &PERI, 1e8, 0.0), vec![]);
+    assert_eq!(find(&eph, &initial, &PERI, f64::NAN, 1e8), vec![]);
+}
