@@ -5,7 +5,7 @@
 use crate::drawing::{self, Drawing};
 use crate::protocol::{Facts, Fault, FromWorker, ToWorker};
 use fallaround_core::picture::{Composer, DisplayList, Options, Screen};
-use fallaround_core::scenario::{self, BeatClock, Scenario};
+use fallaround_core::scenario::{self, Beat, BeatClock, Mark, Scenario};
 use fallaround_core::show::{Action, Clock, Fingerprint, Rehearsal, Show};
 use std::collections::VecDeque;
 
@@ -230,10 +230,15 @@ fn small_picture(show: &Show) -> DisplayList {
     drawing::small(&list, SMALL_LINE_PX, SMALL_DISC_PX)
 }
 
-/// The first of the beats with the most marks.
+/// The first of the beats that explain most: areas before anything else, then as many marks as there are.
 fn telling_beat(scenario: &Scenario) -> usize {
-    let most = scenario.beats.iter().map(|beat| beat.marks.len()).max().unwrap_or(0);
-    scenario.beats.iter().position(|beat| beat.marks.len() == most).unwrap_or(0)
+    let tells = |beat: &Beat| {
+        let sectors =
+            beat.marks.iter().any(|mark| matches!(mark, Mark::Sector { count, .. } if *count != Some(1)));
+        (sectors, beat.marks.len())
+    };
+    let most = scenario.beats.iter().map(tells).max();
+    scenario.beats.iter().position(|beat| Some(tells(beat)) == most).unwrap_or(0)
 }
 
 #[cfg(test)]

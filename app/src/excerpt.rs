@@ -16,7 +16,7 @@ pub struct Excerpt {
 /// end of the line marks its end.
 pub fn excerpt(text: &str, line: usize, column: usize) -> Option<Excerpt> {
     let line = text.lines().nth(line.checked_sub(1)?)?;
-    let at = column.saturating_sub(1);
+    let at = column.saturating_sub(1).min(line.chars().count());
     let skipped = at.saturating_sub(AROUND);
     let mut before: String = line.chars().take(at).skip(skipped).map(visible).collect();
     if skipped > 0 {

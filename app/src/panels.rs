@@ -76,15 +76,20 @@ fn fault_row(text: &str, fault: Fault) -> impl IntoView + use<> {
     }
 }
 
+/// Words of less than three letters, and these, may be units, which keep their case: "kg is a mass".
+const SHORT_WORDS: [&str; 12] = ["a", "an", "as", "at", "by", "if", "in", "is", "it", "no", "on", "to"];
+const LONG_UNITS: [&str; 3] = ["min", "deg", "rad"];
+
 /// A problem's half sentence as a sentence.
 fn sentence(half: &str) -> String {
+    let first_word: &str = half.split_whitespace().next().unwrap_or_default();
+    let plain = first_word.chars().all(char::is_alphabetic) && !LONG_UNITS.contains(&first_word);
+    let plain = plain && (first_word.chars().count() > 2 || SHORT_WORDS.contains(&first_word));
     let mut chars = half.chars();
+    let end = if half.is_empty() || half.ends_with(['.', '?', '!']) { "" } else { "." };
     match chars.next() {
-        Some(first) => {
-            let end = if half.ends_with(['.', '?', '!']) { "" } else { "." };
-            first.to_uppercase().chain(chars).collect::<String>() + end
-        }
-        None => String::new(),
+        Some(first) if plain => first.to_uppercase().chain(chars).collect::<String>() + end,
+        _ => format!("{half}{end}"),
     }
 }
 
@@ -151,5 +156,8 @@ mod tests {
         assert_eq!(sentence("is it?"), "Is it?");
         assert_eq!(sentence(""), "");
         assert_eq!(sentence("élan"), "Élan.");
+        assert_eq!(sentence("it stands"), "It stands.");
+        assert_eq!(sentence("kg is a mass"), "kg is a mass.");
+        assert_eq!(sentence("m/s is a speed"), "m/s is a speed.");
     }
 }

@@ -43,8 +43,12 @@ pub fn Controls(
         })
     };
     view! {
+        <div class="foot">
         <nav class="controls" class:away=move || away.get() aria-label="the show">
-            <p class="now"><b>{place} "  " {title}</b><span>{times}</span></p>
+            <p class="now">
+                <span>{place} <b>{title}</b></span>
+                <span class="times">{times}</span>
+            </p>
             <div class="keys">
                 {press(Command::Next, "Next", true)}
                 {press(Command::Back, "Back", false)}
@@ -57,6 +61,7 @@ pub fn Controls(
                 {press(Command::Keys, "All keys", false)}
             </div>
         </nav>
+        </div>
     }
 }
 

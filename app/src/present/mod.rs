@@ -28,9 +28,10 @@ pub fn Present() -> impl IntoView {
     let state = expect_context::<State>();
     let shown = hands_seen();
     _ = use_event_listener(use_window(), ev::keydown, move |event| hear(state, &event));
-    let away = Signal::derive(move || !shown.get() || state.keys.get() || state.leaving.get());
+    let covered = move || state.keys.get() || state.leaving.get() || state.trouble.with(Option::is_some);
+    let away = Signal::derive(move || !shown.get() || covered());
     view! {
-        <main class="present" class:still=move || away.get() class:speaking=move || state.words.get()>
+        <main class="present" class:still=move || !shown.get() class:speaking=move || state.words.get()>
             <h1 class="unseen">{move || state.title.get()}</h1>
             <div class="stage"><StageCanvas/></div>
             <Show when=move || state.words.get()>
