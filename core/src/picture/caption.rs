@@ -1,5 +1,6 @@
 //! The caption: what the audience reads, set into the emptiness of the picture.
 
+use super::emptiness::Emptiness;
 use super::frame::Frame;
 use super::geometry::{Px, Rect};
 use super::list::{Anchor, Tag};
@@ -108,9 +109,9 @@ pub struct Caption {
 }
 
 impl Caption {
-    /// Lays lines out; the box's corner is at the origin still.
-    pub fn set(text: &str, frame: &Frame) -> Self {
-        let most = frame.width - 2.0 * frame.margin.max(0.5 * frame.label);
+    /// Lays lines out, none wider than a share of the window's room; the box's corner is at the origin still.
+    pub fn set(text: &str, frame: &Frame, share: f64) -> Self {
+        let most = share * (frame.width - 2.0 * frame.margin.max(0.5 * frame.label));
         let mut size = frame.caption;
         let (mut lines, mut width, mut height);
         loop {
@@ -124,6 +125,32 @@ impl Caption {
             size = (0.9 * size).max(frame.label);
         }
         Self { lines, rect: Rect { left: 0.0, top: 0.0, right: width, bottom: height.max(0.0) }, size }
+    }
+
+    /// A caption in the emptiness: with the margin of the house; else nearer to the window's edge; else, where its author
+    /// wrote one line, broken into more; else where it covers least.
+    pub fn in_emptiness(empty: &Emptiness, text: &str, frame: &Frame) -> Self {
+        let margin = frame.margin.max(0.5 * frame.label);
+        let shares: &[f64] = if text.trim().lines().count() > 1 { &[1.0] } else { &[1.0, 0.5, 0.3] };
+        let mut least: Option<(f64, Self)> = None;
+        for (share, margins) in shares.iter().flat_map(|s| [(*s, 1.0), (*s, 0.5)]) {
+            let mut caption = Self::set(text, frame, share);
+            let within = Rect {
+                left: margins * margin,
+                top: 0.8 * margins * margin,
+                right: frame.width - margins * margin,
+                bottom: frame.foot_baseline() - frame.label,
+            };
+            let (corner, covered) = empty.best(caption.rect.width(), caption.rect.height(), &within, frame);
+            caption.move_to(corner);
+            if least.as_ref().is_none_or(|l| covered < l.0) {
+                least = Some((covered, caption));
+            }
+            if covered <= 0.0 {
+                break;
+            }
+        }
+        least.map_or_else(|| Self::set(text, frame, 1.0), |l| l.1)
     }
 
     /// Moves its corner.

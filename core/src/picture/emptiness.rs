@@ -127,12 +127,12 @@ impl Emptiness {
         }
     }
 
-    /// The corner for a box inside `within`, and whether it covers anything there: the one that covers least, then stands farthest from all things (up to enough
+    /// The corner for a box inside `within`, and how much it covers there: the one that covers least, then stands farthest from all things (up to enough
     /// room), then nearest to the picture's middle.
-    pub fn best(&self, width: f64, height: f64, within: &Rect, frame: &Frame) -> (Px, bool) {
+    pub fn best(&self, width: f64, height: f64, within: &Rect, frame: &Frame) -> (Px, f64) {
         let sums = self.sums();
         let away = self.distances();
-        let mut best: Option<(f64, Px, bool)> = None;
+        let mut best: Option<(f64, Px, f64)> = None;
         let across = (within.width() - width).max(0.0);
         let down = (within.height() - height).max(0.0);
         let steps = |room: f64| index((room / self.cell).floor()).min(400);
@@ -156,11 +156,11 @@ impl Emptiness {
                 let off = length(between([0.5 * frame.width, 0.5 * frame.height], middle));
                 let score = 100.0 * covered - 10.0 * room / enough + off / (frame.width + frame.height);
                 if best.is_none_or(|b| score < b.0) {
-                    best = Some((score, corner, covered > 0.0));
+                    best = Some((score, corner, covered));
                 }
             }
         }
-        best.map_or(([within.left, within.top], true), |b| (b.1, b.2))
+        best.map_or(([within.left, within.top], f64::INFINITY), |b| (b.1, b.2))
     }
 
     /// Sums of all weights above and left of each cell's corner.
@@ -239,7 +239,7 @@ mod tests {
         empty.mark_rect(&Rect { left: 0.0, top: 0.0, right: 1919.0, bottom: 500.0 }, 1.0);
         empty.mark_rect(&Rect { left: 0.0, top: 0.0, right: 900.0, bottom: 1079.0 }, 1.0);
         let (corner, covered) = empty.best(500.0, 200.0, &HOUSE.whole().grown(-96.0), &HOUSE);
-        assert!(!covered && corner[0] > 930.0 && corner[1] > 530.0, "{corner:?}");
+        assert!(covered <= 0.0 && corner[0] > 930.0 && corner[1] > 530.0, "{corner:?}");
     }
 
     #[test]

@@ -91,7 +91,8 @@ impl Layout {
     /// Decides what can be decided once.
     pub fn new(show: &Show, beat: &Beat, key: LayoutKey, frame: Frame, options: &Options) -> Self {
         let mut scene = scene_at(show, beat, key, frame, key.beat_from_s);
-        let (areas, area_words) = if frame.has_text { sector::areas_of(&scene) } else { (Vec::new(), None) };
+        let (mut areas, area_words) =
+            if frame.has_text { sector::areas_of(&scene) } else { (Vec::new(), None) };
         let foot = foot_of(&scene, area_words);
         let readings = readout::of_beat(&scene);
         let foot_rects = if frame.has_text {
@@ -102,6 +103,9 @@ impl Layout {
         } else {
             Vec::new()
         };
+        for set in &mut areas {
+            set.settle(&scene, &foot_rects);
+        }
         let mut layout = Self {
             key,
             caption: None,
@@ -125,26 +129,7 @@ impl Layout {
         if frame.has_text {
             let text = caption::text_of(beat, &options.language, &show.scenario.language);
             let empty = layout.look_round(show, beat, frame);
-            layout.caption = text.map(|text| {
-                let mut caption = Caption::set(text, &frame);
-                let (w, h) = (caption.rect.width(), caption.rect.height());
-                let margin = frame.margin.max(0.5 * frame.label);
-                let within = |margin: f64, top: f64| Rect {
-                    left: margin,
-                    top,
-                    right: frame.width - margin,
-                    bottom: frame.foot_baseline() - frame.label,
-                };
-                let (corner, covered) = empty.best(w, h, &within(margin, 0.8 * margin), &frame);
-                // Where there is no empty place, nearer to the edge there may be one.
-                let tight = if covered {
-                    empty.best(w, h, &within(0.5 * margin, 0.4 * margin), &frame).0
-                } else {
-                    corner
-                };
-                caption.move_to(tight);
-                caption
-            });
+            layout.caption = text.map(|text| Caption::in_emptiness(&empty, text, &frame));
         }
         layout
     }

@@ -154,6 +154,8 @@ pub struct Areas {
     resting: Vec<(usize, Rect)>,
     scale: f64,
     axes: [Vector3<f64>; 2],
+    /// Boxes of the foot line.
+    kept_clear: Vec<Rect>,
 }
 
 /// The areas of all sectors that want them written, and the words of their common unit.
@@ -174,22 +176,28 @@ pub fn areas_of(scene: &Scene<'_>) -> (Vec<Areas>, Option<&'static str>) {
             let width = type_metrics::width(&text, scene.frame.label, 600);
             Some((index, text, width))
         });
-        let mut set = Areas {
+        Areas {
             sectors,
             texts: texts.collect(),
             resting: Vec::new(),
             scale: scene.camera.px_per_m,
             axes: [scene.camera.right, scene.camera.up],
-        };
-        let centre = scene.camera.project(scene.position(sectors.about));
-        set.resting =
-            set.spread(scene).into_iter().map(|(i, r)| (i, r.moved([-centre[0], -centre[1]]))).collect();
-        set
+            kept_clear: Vec::new(),
+        }
     });
     (sets.collect(), Some(words))
 }
 
 impl Areas {
+    /// Decides where the areas stand while the view rests, clear of what stands fast.
+    pub fn settle(&mut self, scene: &Scene<'_>, fast: &[Rect]) {
+        self.kept_clear = fast.to_vec();
+        self.scale = scene.camera.px_per_m;
+        self.axes = [scene.camera.right, scene.camera.up];
+        let [x, y] = scene.camera.project(scene.position(self.sectors.about));
+        self.resting = self.spread(scene).into_iter().map(|(i, r)| (i, r.moved([-x, -y]))).collect();
+    }
+
     /// The labels of a scene.
     pub fn labels(&self, scene: &Scene<'_>) -> Vec<AreaLabel> {
         let same = (self.scale - scene.camera.px_per_m).abs() <= 1e-12 * self.scale
@@ -256,8 +264,12 @@ impl Areas {
             }
             // The box touches the path with the side or corner that faces it.
             let height = 0.78 * size;
-            let reach = 0.5 * (width * out[0].abs() + height * out[1].abs());
-            Some(Rect::about(along(at, out, reach + 0.42 * size), width, height))
+            let reach = 0.5 * (width * out[0].abs() + height * out[1].abs()) + 0.42 * size;
+            let outside = Rect::about(along(at, out, reach), width, height);
+            // Where foot line or window end leave no room outside, it stands inside, on its sector.
+            let fits = self.kept_clear.iter().all(|r| r.gap(&outside) > 0.1 * size)
+                && scene.frame.whole().encloses(&outside);
+            Some(if fits { outside } else { Rect::about(along(at, out, -reach), width, height) })
         };
         let mut times: Vec<f64> =
             self.texts.iter().map(|t| 0.5 * sectors.ends_s(t.0).iter().sum::<f64>()).collect();
