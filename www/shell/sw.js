@@ -38,6 +38,8 @@ self.addEventListener("activate", (event) => event.waitUntil(activate()));
 self.addEventListener("fetch", (event) => {
   const url = new URL(event.request.url);
   const own = event.request.method === "GET" && url.origin === location.origin;
-  // The version is asked of the server alone: it is how a new build is noticed.
-  if (own && !url.pathname.endsWith("/version.txt")) event.respondWith(answer(event.request));
+  if (!own) return;
+  // The version is asked of the server first: it is how a new build is noticed.
+  const asked = url.pathname.endsWith("/version.txt");
+  event.respondWith(asked ? fetch(event.request).catch(() => new Response(VERSION)) : answer(event.request));
 });

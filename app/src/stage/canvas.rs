@@ -4,9 +4,11 @@ use super::frame_loop::FrameLoop;
 use super::paint;
 use crate::drawing::Drawing;
 use crate::state::State;
+use fallaround_core::picture::DisplayList;
+use leptos::ev::resize;
 use leptos::html::Canvas;
 use leptos::prelude::*;
-use leptos_use::use_prefers_reduced_motion;
+use leptos_use::{use_event_listener, use_prefers_reduced_motion, use_window};
 use wasm_bindgen::JsCast;
 use web_sys::{CanvasRenderingContext2d, HtmlCanvasElement};
 
@@ -42,7 +44,7 @@ pub fn StageCanvas() -> impl IntoView {
     view! { <canvas node_ref=canvas id="house" aria-hidden="true"></canvas> }
 }
 
-/// A picture that stands still, at its own pixels.
+/// A picture that stands still, drawn at the pixels of its place.
 #[component]
 pub fn Picture(
     /// What to show; nothing leaves the ground.
@@ -53,16 +55,36 @@ pub fn Picture(
     about: Signal<String>,
 ) -> impl IntoView {
     let canvas = NodeRef::<Canvas>::new();
-    Effect::new(move |_| {
-        let Some(canvas) = canvas.get() else { return };
-        drawing.with(|drawing| {
-            let (Some(drawing), Some(ctx)) = (drawing, context(&canvas)) else { return };
-            let list = drawing.list();
-            super::house::set_size(&canvas, list.width, list.height);
-            paint::paint(&ctx, &list, 0.0);
+    let draw = move || {
+        let Some(canvas) = canvas.get_untracked() else { return };
+        drawing.with_untracked(|drawing| {
+            if let Some(drawing) = drawing {
+                still(&canvas, &drawing.list());
+            }
         });
+    };
+    Effect::new(move |_| {
+        canvas.track();
+        drawing.track();
+        draw();
     });
+    _ = use_event_listener(use_window(), resize, move |_| draw());
     view! { <canvas node_ref=canvas role="img" aria-label=move || about.get()></canvas> }
+}
+
+/// Draws a list over the whole of a canvas, whatever size either has.
+fn still(canvas: &HtmlCanvasElement, list: &DisplayList) {
+    let Some(ctx) = context(canvas) else { return };
+    let density = super::house::density();
+    let width_px = (f64::from(canvas.client_width()) * density).round();
+    let height_px = (f64::from(canvas.client_height()) * density).round();
+    if width_px < 1.0 || height_px < 1.0 || list.width < 1.0 {
+        return;
+    }
+    super::house::set_size(canvas, width_px, height_px);
+    // Setting the size has reset the canvas, so this is the whole transform; a canvas with a size takes it.
+    drop(ctx.scale(width_px / list.width, height_px / list.height));
+    paint::paint(&ctx, list, 0.0);
 }
 
 fn context(canvas: &HtmlCanvasElement) -> Option<CanvasRenderingContext2d> {

@@ -123,7 +123,7 @@ impl House {
     }
 
     fn paint(&mut self, canvas: &HtmlCanvasElement, ctx: &CanvasRenderingContext2d) {
-        let density = web_sys::window().map_or(1.0, |w| w.device_pixel_ratio()).clamp(0.5, 4.0);
+        let density = density();
         let width_px = (f64::from(canvas.client_width()) * density).round().max(1.0);
         let height_px = (f64::from(canvas.client_height()) * density).round().max(1.0);
         let resized = f64::from(canvas.width()).to_bits() != width_px.to_bits()
@@ -229,6 +229,11 @@ impl House {
         let camera = Camera::of(&self.show, view, moment.model_s, &Frame::new(*screen));
         (!moving).then(|| 1.0 / camera.px_per_m)
     }
+}
+
+/// Device pixels per CSS pixel.
+pub(super) fn density() -> f64 {
+    web_sys::window().map_or(1.0, |w| w.device_pixel_ratio()).clamp(0.5, 4.0)
 }
 
 #[derive(Serialize)]
