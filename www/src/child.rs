@@ -78,12 +78,12 @@ impl Drop for Running {
     }
 }
 
-/// Runs a command to its end, its output going where ours goes.
+/// Runs a command to its end. What it writes goes to standard error: standard output is for our own data.
 ///
 /// # Errors
 /// When it can't be started.
 pub(crate) fn run(command: &mut Command) -> Result<ExitStatus> {
-    Ok(Running::start(command)?.wait()?)
+    Ok(Running::start(command.stdout(io::stderr()))?.wait()?)
 }
 
 /// Runs a command to its end and keeps what it wrote.

@@ -97,14 +97,13 @@ pub(crate) fn clean(program: &str) -> Command {
 
 /// Whether a variable must not reach an inner cargo.
 fn leftover(name: &str) -> bool {
-    const KEPT: [&str; 6] = [
+    const KEPT: [&str; 5] = [
         "CARGO_HOME",
         "CARGO_BUILD_JOBS",
         "CARGO_NET_OFFLINE",
         "RUSTUP_HOME",
         // Which toolchain is the one at hand.
         "RUSTUP_TOOLCHAIN",
-        "RUST_BACKTRACE",
     ];
     const KEPT_STARTS: [&str; 4] = ["CARGO_HTTP_", "CARGO_REGISTR", "CARGO_TERM_", "RUSTUP_DIST_"];
     let ours = name.starts_with("CARGO") || name.starts_with("RUST") || name == "LD_LIBRARY_PATH";
