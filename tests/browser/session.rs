@@ -12,7 +12,7 @@ use crate::webdriver::Driver;
 pub(crate) const PATIENCE: Duration = Duration::from_secs(60);
 
 /// Keys that have no character of their own, in WebDriver's code.
-pub(crate) const PAGE_DOWN: &str = "\u{E00F}";
+const PAGE_DOWN: &str = "\u{E00F}";
 pub(crate) const ESCAPE: &str = "\u{E00C}";
 
 /// A browser at work.
@@ -73,6 +73,20 @@ impl Session {
         let actions = json!([{ "type": "keyDown", "value": key }, { "type": "keyUp", "value": key }]);
         let actions = json!({ "actions": [{ "type": "key", "id": "keyboard", "actions": actions }] });
         self.driver.post(&format!("{}/actions", self.path), &actions);
+    }
+
+    /// Goes on by a clicker's key: a show that waits for its start starts, any other goes to its next beat.
+    pub(crate) fn next(&self) -> Value {
+        let before = self.wait_for_frame();
+        // A second press right after the first is taken for a slip of the hand.
+        thread::sleep(Duration::from_millis(300));
+        self.press(PAGE_DOWN);
+        let starts = before["waiting"] == true;
+        self.wait_for("the show to go on", || {
+            let frame = self.frame()?;
+            let on = if starts { frame["waiting"] == false } else { frame["beat"] != before["beat"] };
+            on.then_some(frame)
+        })
     }
 
     /// Sends a command of the browser's own debugging protocol.

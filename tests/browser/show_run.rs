@@ -3,12 +3,12 @@
 use fallaround_core::Vector3;
 use fallaround_core::math::float;
 use fallaround_core::scenario::{BodyId, View};
-use fallaround_core::show::Show;
+use fallaround_core::show::{Run, Show};
 use serde_json::{Value, json};
 
 use crate::house;
 use crate::server::Server;
-use crate::session::{PAGE_DOWN, Session};
+use crate::session::Session;
 
 const SHOW: &str = "../scenarios/equal-areas.toml";
 /// How long each beat is watched, ms. Long enough for the move of the view, and for some seconds after it.
@@ -31,15 +31,14 @@ fn a_whole_show_run_by_keys_draws_every_body_where_it_is() {
     let session = Session::start();
     session.open(&server.address);
     session.open_show(&show.scenario.title);
+    let waiting = session.wait_for_frame();
+    assert_eq!(waiting["waiting"], true, "a show must wait for its presenter");
+    assert_eq!(waiting["model_s"], show.plan.beats[0].from_s);
     let beats = show.plan.beats.len();
     let mut checked = 0;
     let mut slowest = f64::INFINITY;
     for beat in 0..beats {
-        if beat > 0 {
-            session.press(PAGE_DOWN);
-            session
-                .wait_for(&format!("beat {}", beat + 1), || (session.frame()?["beat"] == beat).then_some(()));
-        }
+        assert_eq!(session.next()["beat"], beat);
         let frames = session.run_async(WATCH, &[json!(WATCH_MS)]);
         let frames: Vec<(f64, Value)> = frames
             .as_array()
@@ -53,15 +52,16 @@ fn a_whole_show_run_by_keys_draws_every_body_where_it_is() {
         let rate = frames.len() as f64 / (WATCH_MS as f64 / 1000.0);
         slowest = slowest.min(rate);
         assert!(rate >= LEAST_RATE, "beat {}: {rate:.1} frames a second", beat + 1);
+        // A beat that starts at a time of its own is cut to once, under the veil.
+        let mut cuts = usize::from(show.plan.beats[beat].run == Run::Anew);
         let mut before_s = f64::NEG_INFINITY;
         for (at_ms, frame) in &frames {
             assert_eq!(frame["beat"], beat, "at {at_ms} ms of beat {}", beat + 1);
             let model_s = frame["model_s"].as_f64().expect("a number");
-            assert!(
-                model_s >= before_s,
-                "beat {}: model time went back from {before_s} to {model_s} s",
-                beat + 1
-            );
+            if model_s < before_s {
+                assert!(cuts > 0, "beat {}: model time went back from {before_s} to {model_s} s", beat + 1);
+                cuts -= 1;
+            }
             before_s = model_s;
             checked += check_frame(&show, beat, frame);
         }
@@ -126,11 +126,12 @@ fn project(view: &View, from_centre: Vector3<f64>, metres_per_px: f64, middle: [
 
 /// At each body's place on the canvas there is something other than ground.
 fn check_pixels(session: &Session) {
-    let script = "const frame = JSON.parse(window.fallaround_frame()); const canvas = document.querySelector('main canvas, canvas');\
-        const paint = canvas.getContext('2d'); const corner = paint.getImageData(0, 0, 1, 1).data.join();\
+    // Read from a copy: the page's own canvas isn't made to be read.
+    let script = "const frame = JSON.parse(window.fallaround_frame()); const canvas = document.querySelector('canvas');\
+        const copy = new OffscreenCanvas(canvas.width, canvas.height).getContext('2d', { willReadFrequently: true });\
+        copy.drawImage(canvas, 0, 0); const at = (x, y) => copy.getImageData(x, y, 1, 1).data.join(); const corner = at(0, 0);\
         return frame.bodies.filter(b => b.x_px > 2 && b.y_px > 2 && b.x_px < frame.width_px - 2 && b.y_px < frame.height_px - 2)\
-          .filter(b => paint.getImageData(Math.floor(b.x_px), Math.floor(b.y_px), 1, 1).data.join() === corner)\
-          .map(b => b.name);";
+          .filter(b => at(Math.floor(b.x_px), Math.floor(b.y_px)) === corner).map(b => b.name);";
     let blank = session.run(script, &[]);
     assert_eq!(blank, json!([]), "bodies that aren't painted");
 }

@@ -10,11 +10,12 @@ use crate::house;
 use crate::server::Server;
 use crate::session::Session;
 
-/// A hundred years of the whole solar system, to be rehearsed in one go.
+/// A hundred years of the Sun and its planets, to be rehearsed in one go. Without the Moon, which alone asks for steps of a day.
 const CENTURY: &str = r#"
 format = 1
 title = "A hundred years"
-date = "2000-01-01T12:00:00Z"
+date = "1950-01-01T00:00:00Z"
+physics = { companions = false }
 
 [[body]]
 name = "Sun"
@@ -24,9 +25,37 @@ real = "Sun"
 name = "Mercury"
 real = "Mercury"
 
+[[body]]
+name = "Venus"
+real = "Venus"
+
+[[body]]
+name = "Earth"
+real = "Earth"
+
+[[body]]
+name = "Mars"
+real = "Mars"
+
+[[body]]
+name = "Jupiter"
+real = "Jupiter"
+
+[[body]]
+name = "Saturn"
+real = "Saturn"
+
+[[body]]
+name = "Uranus"
+real = "Uranus"
+
+[[body]]
+name = "Neptune"
+real = "Neptune"
+
 [[beat]]
 title = "All of it"
-clock = { span = "99.9 yr", lasts = "60 s" }
+clock = { span = "100 yr", lasts = "60 s" }
 view = { centre = "Sun", span = "2 au" }
 "#;
 
@@ -37,11 +66,13 @@ const MOST_RATIO: f64 = 6.0;
 const MOST_FRAME_MS: f64 = 16.0;
 const WATCH_MS: u64 = 6000;
 
-/// Times every frame that the page draws from now on, painting included: reading a pixel back waits for it.
+/// Times every frame that the page draws from now on, painting included: a pixel that is copied and read waits for it.
 const TIMED_FRAMES: &str = "window.frameTimes = []; const ask = window.requestAnimationFrame.bind(window);\
+    const copy = new OffscreenCanvas(1, 1).getContext('2d', { willReadFrequently: true });\
     window.requestAnimationFrame = draw => ask(now => { const start = performance.now(); draw(now);\
-      const canvas = document.querySelector('main canvas, canvas'); if (canvas && canvas.width > 800) {\
-        canvas.getContext('2d').getImageData(0, 0, 1, 1); window.frameTimes.push(performance.now() - start); } });";
+      const canvas = document.querySelector('canvas'); if (canvas && canvas.width > 800) {\
+        copy.drawImage(canvas, 0, 0, 1, 1, 0, 0, 1, 1); copy.getImageData(0, 0, 1, 1);\
+        window.frameTimes.push(performance.now() - start); } });";
 
 #[test]
 fn a_century_of_the_solar_system_is_rehearsed_in_the_browser_nearly_as_fast_as_natively() {
@@ -67,7 +98,7 @@ fn a_century_of_the_solar_system_is_rehearsed_in_the_browser_nearly_as_fast_as_n
     let browser_s = session.run_async(script, &[json!(CENTURY)]).as_f64().expect("a number") / 1000.0;
     let ratio = browser_s / native_s;
     println!(
-        "solar system, 100 years, {steps} steps of 11 bodies: native {native_s:.3} s ({:.0} steps/s), \
+        "solar system, 100 years, {steps} steps of 9 bodies: native {native_s:.3} s ({:.0} steps/s), \
          Chromium {browser_s:.3} s ({:.0} steps/s), ratio {ratio:.2}",
         steps / native_s,
         steps / browser_s
@@ -85,9 +116,7 @@ fn a_frame_at_full_hd_leaves_time_to_spare() {
     session.open(&server.address);
     session.open_show(&show.scenario.title);
     for beat in 0..show.plan.beats.len() {
-        if beat > 0 {
-            session.press(crate::session::PAGE_DOWN);
-        }
+        assert_eq!(session.next()["beat"], beat);
         let script = "const [ms, done] = arguments; window.frameTimes.length = 0; setTimeout(() => done(window.frameTimes), ms);";
         let times = session.run_async(script, &[json!(WATCH_MS / 2)]);
         let mut times: Vec<f64> = times.as_array().expect("times").iter().filter_map(Value::as_f64).collect();
