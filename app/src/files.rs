@@ -52,6 +52,11 @@ pub fn dropped(transfer: &DataTransfer) -> Result<File, Trouble> {
     picked(transfer.files().as_ref())
 }
 
+/// Whether what is dragged over the page is files, rather than a piece of it.
+pub fn are_held(transfer: &DataTransfer) -> bool {
+    transfer.types().includes(&"Files".into(), 0)
+}
+
 /// The one file of a list.
 ///
 /// # Errors

@@ -143,7 +143,7 @@ pub fn QuietLine() -> impl IntoView {
 /// Shown while a file is held over the page.
 #[component]
 pub fn Landing() -> impl IntoView {
-    view! { <div class="landing" aria-hidden="true">"Let it fall"</div> }
+    view! { <div class="landing" aria-hidden="true"><p>"Let it fall"</p></div> }
 }
 
 #[cfg(test)]

@@ -109,7 +109,7 @@ fn hear_drops(state: State) -> ReadSignal<bool> {
     let (over, set_over) = signal(false);
     _ = use_event_listener(use_window(), ev::dragover, move |event| {
         event.prevent_default();
-        set_over.set(true);
+        set_over.set(event.data_transfer().is_some_and(|held| files::are_held(&held)));
     });
     _ = use_event_listener(use_window(), ev::dragleave, move |event| {
         // Leaving one element for another has the other as its related target; leaving the window has none.

@@ -80,6 +80,14 @@ impl Shows {
         }
     }
 
+    /// The title of a shipped show, once the worker has said it.
+    pub fn title_of(&self, source: &Source) -> Option<String> {
+        self.cards.with_untracked(|cards| {
+            let card = cards.iter().find(|card| card.source == *source)?;
+            card.facts.as_ref().map(|facts| facts.title.clone())
+        })
+    }
+
     /// The worker says what a text is about.
     pub fn facts(&self, run: u32, facts: Facts) {
         self.cards.update(|cards| {

@@ -187,7 +187,8 @@ impl State {
         if self.works().pending.borrow().as_ref().is_some_and(asked) {
             return;
         }
-        let name = at.as_ref().map_or_else(|| source.name.clone(), |place| place.title.clone());
+        let known = at.as_ref().map(|place| place.title.clone()).or_else(|| self.shows.title_of(&source));
+        let name = known.unwrap_or_else(|| source.name.clone());
         self.rehearsing.set(Some(Rehearsing { name, fraction: 0.0, what: String::new() }));
         let text = source.text.clone();
         let run = self.ask(|run| ToWorker::Rehearse { run, text });

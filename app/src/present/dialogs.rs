@@ -37,12 +37,6 @@ pub fn KeysCard() -> impl IntoView {
             on:close=move |_| state.keys.set(false)
         >
             <h2 id="keys-title">"All keys"</h2>
-            <table>
-                <tbody>
-                    {rows}
-                    <tr><th scope="row">"a number, then enter"</th><td>"to that beat"</td></tr>
-                </tbody>
-            </table>
             <div class="presses">
                 <button type="button" class="press first" on:click=move |_| state.keys.set(false)>"Close"</button>
                 <button type="button" class="press" on:click=move |_| crate::dom::toggle_full_screen()>"Full screen"</button>
@@ -57,6 +51,12 @@ pub fn KeysCard() -> impl IntoView {
                     "Leave the show"
                 </button>
             </div>
+            <table>
+                <tbody>
+                    {rows}
+                    <tr><th scope="row">"a number, then enter"</th><td>"to that beat"</td></tr>
+                </tbody>
+            </table>
         </dialog>
     }
 }
