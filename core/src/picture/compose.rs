@@ -1,5 +1,6 @@
 //! The composer: from a show and a moment of its clock to a display list.
 
+use super::caption::Caption;
 use super::frame::Frame;
 use super::layout::{Layout, LayoutKey, scene_at};
 use super::list::{Anchor, DisplayList, Item, Shape, Tag};
@@ -8,8 +9,7 @@ use super::marks::foot::Foot;
 use super::marks::sector::{self, AreaLabel, Sectors};
 use super::marks::{self, apsides, body, conic, foot, path, tail, trail};
 use super::scene::{Scene, Spot, Words, stroke};
-use super::view::Camera;
-use super::{Options, Screen, labels, look};
+use super::{Options, Screen, labels, look, passage};
 use crate::scenario::Mark;
 use crate::show::{Moment, Show};
 
@@ -22,8 +22,8 @@ pub struct Composer {
     layouts: Vec<Layout>,
 }
 
-/// Layouts kept: the beat on show, the one before, the one to come, and one more.
-const LAYOUTS_KEPT: usize = 4;
+/// Layouts kept: the beat on show, the one to come, and those whose captions are on their way out.
+const LAYOUTS_KEPT: usize = 6;
 
 impl Composer {
     /// For a show that is ready (or still being integrated: what isn't covered yet stands at its start).
@@ -56,12 +56,13 @@ impl Composer {
     /// The picture at a moment. Never empty of its ground; holds finite numbers only.
     pub fn compose(&mut self, show: &Show, moment: &Moment) -> DisplayList {
         let frame = self.frame;
-        let mut items = match show.scenario.beats.get(moment.beat) {
-            Some(_) if moment.model_s.is_finite() => self.items(show, moment),
-            _ => Vec::new(),
-        };
+        let calm = self.options.reduced_motion;
+        let (shown, fade) = if calm { passage::cross_fade(show, moment) } else { (usize::MAX, 0.0) };
+        let shown = moment.lately.as_slice().get(shown).map_or(LayoutKey::of(moment), LayoutKey::left);
+        let mut items = if moment.model_s.is_finite() { self.items(show, moment, shown) } else { Vec::new() };
         items.retain(|item| is_finite(&item.shape));
         let veil = if moment.veil.is_finite() { moment.veil.clamp(0.0, 1.0) } else { 0.0 };
+        let veil = 1.0 - (1.0 - veil) * (1.0 - fade);
         if veil > 0.0 {
             let (w, h) = (frame.width, frame.height);
             let points = vec![[0.0, 0.0], [w, 0.0], [w, h], [0.0, h]];
@@ -71,21 +72,19 @@ impl Composer {
         DisplayList { width: frame.width, height: frame.height, ground: look::GROUND, items }
     }
 
-    fn items(&mut self, show: &Show, moment: &Moment) -> Vec<Item> {
-        let (frame, key) = (self.frame, LayoutKey::of(moment));
-        let calm = !self.options.reduced_motion;
-        let leaving = self.leaving_caption(moment);
-        let Some(beat) = show.scenario.beats.get(moment.beat) else {
+    fn items(&mut self, show: &Show, moment: &Moment, shown: LayoutKey) -> Vec<Item> {
+        let frame = self.frame;
+        let captions = if frame.has_text { self.captions(show, moment, shown) } else { Vec::new() };
+        let moves = !self.options.reduced_motion;
+        let Some(beat) = show.scenario.beats.get(shown.beat) else {
             return Vec::new();
         };
-        let Some(layout) = self.layout(show, key) else {
+        let Some(layout) = self.layout(show, shown) else {
             return Vec::new();
         };
-        let mut scene = scene_at(show, beat, key, frame, moment.model_s);
-        let from = moment.before.and_then(|b| show.scenario.beats.get(b)).map(|b| b.view);
-        let share = moment.since_cut_s / look::SCENE_S;
-        if let Some(from) = from.filter(|f| calm && share < 1.0 && *f != beat.view) {
-            scene.camera = Camera::moving(show, &from, &beat.view, share, moment.model_s, &frame);
+        let mut scene = scene_at(show, beat, shown, frame, moment.model_s);
+        if let Some(camera) = passage::camera(show, moment, &frame).filter(|_| moves) {
+            scene.camera = camera;
         }
         let spots = draw_marks(&mut scene, &layout.foot);
         if frame.has_text {
@@ -96,32 +95,48 @@ impl Composer {
             let (earlier, later, share) = layout.standings(show, beat, frame, moment.model_s);
             let placed = labels::place(&blocks, earlier, later, share, &obstacles, &frame);
             labels::draw(&mut scene, &placed);
-            // Words come in once the old ones are gone.
-            let entered = match moment.before {
-                Some(_) => look::ease((moment.since_cut_s - FADE_OUT_S) / look::CALM_S),
-                None => 1.0,
-            };
-            if let Some((caption, opacity)) = leaving {
+            for (caption, opacity) in captions {
                 caption.draw(&mut scene, opacity);
-            }
-            if let Some(caption) = layout.caption.as_ref().filter(|_| entered > 0.0) {
-                caption.draw(&mut scene, entered);
             }
             foot::draw(&mut scene, &layout.foot, moment.pace, moment.held);
         }
         scene.items
     }
 
-    /// The caption of the beat that was left, on its way out.
-    fn leaving_caption(&self, moment: &Moment) -> Option<(super::caption::Caption, f64)> {
-        let before = moment.before.filter(|_| moment.since_cut_s < FADE_OUT_S)?;
-        let layout = self.layouts.iter().rev().find(|l| l.beat() == before)?;
-        Some((layout.caption.clone()?, 1.0 - moment.since_cut_s / FADE_OUT_S))
+    /// The captions to be seen, with their opacities: those of the beats left lately on their way out, then the one
+    /// of the beat shown.
+    fn captions(&mut self, show: &Show, moment: &Moment, shown: LayoutKey) -> Vec<(Caption, f64)> {
+        let mut wanted: Vec<(LayoutKey, f64)> = Vec::new();
+        if shown == LayoutKey::of(moment) {
+            let view_of = |beat: usize| show.scenario.beats.get(beat).map(|b| b.view);
+            // A cross-fade takes the old words along with their view.
+            let stays = |beat: usize| !self.options.reduced_motion || view_of(beat) == view_of(shown.beat);
+            let left = moment.lately.as_slice();
+            let mut lasted_s = f64::INFINITY;
+            for (i, beat) in left.iter().enumerate() {
+                if stays(beat.beat) {
+                    wanted
+                        .push((LayoutKey::left(beat), entered(lasted_s) * (1.0 - beat.since_s / FADE_OUT_S)));
+                }
+                lasted_s = beat.since_s - left.get(i + 1).map_or(0.0, |l| l.since_s);
+            }
+            let since_s = if moment.before.is_some() { moment.since_cut_s } else { f64::INFINITY };
+            wanted.push((shown, entered(since_s)));
+        } else {
+            wanted.push((shown, 1.0));
+        }
+        let seen = wanted.into_iter().filter(|w| w.1 > 0.0);
+        seen.filter_map(|(key, opacity)| Some((self.layout(show, key)?.caption.clone()?, opacity))).collect()
     }
 }
 
 /// Show time in which the words of the beat before go, seconds.
 const FADE_OUT_S: f64 = 0.3;
+
+/// How far a caption has come in, that long after its beat was entered: words come in once the old ones are gone.
+fn entered(since_s: f64) -> f64 {
+    look::ease((since_s - FADE_OUT_S) / look::CALM_S)
+}
 
 /// Draws bodies and marks, everything but words; returns the discs.
 pub fn draw_marks(scene: &mut Scene<'_>, foot: &Foot) -> Vec<Spot> {

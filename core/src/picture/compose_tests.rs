@@ -1,6 +1,7 @@
 use super::super::fixture::{self, DAY};
 use super::super::geometry::Rect;
 use super::super::type_metrics;
+use super::super::view::Camera;
 use super::*;
 use crate::ephemeris::Ephemeris;
 use crate::scenario::BodyId;
@@ -207,22 +208,6 @@ fn a_conic_passes_through_its_body() {
         })
         .fold(f64::INFINITY, f64::min);
     assert!(nearest < 0.3, "the conic passes {nearest} px from its body");
-}
-
-#[test]
-fn a_move_between_views_starts_and_ends_without_a_jump() {
-    let show = fixture::planets();
-    let mut composer = composer(&show, HOUSE);
-    let mut at = |beat: usize, since: f64| {
-        let mut moment = fixture::moment(beat, 800.0 * DAY, 800.0 * DAY, 0.0);
-        moment.before = (beat > 0).then_some(0);
-        moment.since_cut_s = since;
-        disc(&composer.compose(&show, &moment), BodyId(3)).unwrap().0
-    };
-    let (old, first) = (at(0, 9.0), at(1, 0.0));
-    assert!((old[0] - first[0]).abs() < 1e-6 && (old[1] - first[1]).abs() < 1e-6);
-    let (last, rest) = (at(1, 1.2 - 1e-6), at(1, 1.2));
-    assert!((last[0] - rest[0]).abs() < 1e-3 && (last[1] - rest[1]).abs() < 1e-3);
 }
 
 #[test]

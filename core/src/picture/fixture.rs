@@ -161,6 +161,7 @@ pub(crate) fn moment(beat: usize, model_s: f64, from_s: f64, pace: f64) -> Momen
         held: false,
         beat,
         before: None,
+        lately: crate::show::Lately::default(),
         since_cut_s: 10.0,
         beat_from_s: from_s,
         run_from_s: from_s,

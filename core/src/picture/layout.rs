@@ -16,7 +16,7 @@ use super::view::Camera;
 use super::wording::Grain;
 use super::{Options, compose, look};
 use crate::scenario::{Beat, BodyId, Mark, Readout};
-use crate::show::{Moment, Show};
+use crate::show::{Left, Moment, Show};
 
 /// Instants at which a beat's bodies are looked at to find where it is empty.
 const BODY_LOOKS: u32 = 120;
@@ -65,6 +65,11 @@ impl LayoutKey {
     /// Of a moment.
     pub const fn of(moment: &Moment) -> Self {
         Self { beat: moment.beat, beat_from_s: moment.beat_from_s, run_from_s: moment.run_from_s }
+    }
+
+    /// Of a beat that was left.
+    pub const fn left(left: &Left) -> Self {
+        Self { beat: left.beat, beat_from_s: left.beat_from_s, run_from_s: left.run_from_s }
     }
 }
 
@@ -137,11 +142,6 @@ impl Layout {
     /// Whether it is the layout of that beat, entered so.
     pub fn is_of(&self, key: LayoutKey) -> bool {
         self.key == key
-    }
-
-    /// The index of its beat.
-    pub const fn beat(&self) -> usize {
-        self.key.beat
     }
 
     /// Looks at all that the beat will draw.

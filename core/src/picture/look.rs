@@ -50,7 +50,9 @@ pub const HATCH_TURN_RAD: f64 = core::f64::consts::PI / 6.0;
 pub const PAST: f64 = 0.62;
 
 /// Show time in which the picture moves from one view to the next, seconds.
-pub const SCENE_S: f64 = 1.2;
+pub const SCENE_S: f64 = crate::show::VIEW_MOVE_S;
+/// Show time in which one view is cross-faded into the next where nothing should move, seconds.
+pub const CROSS_FADE_S: f64 = 0.2;
 /// Show time in which a mark is drawn on, seconds.
 pub const CALM_S: f64 = 0.4;
 

@@ -12,6 +12,7 @@ pub mod layout;
 pub mod list;
 pub mod look;
 pub mod marks;
+pub mod passage;
 pub mod sample;
 pub mod scene;
 pub mod type_metrics;
@@ -37,6 +38,6 @@ pub struct Screen {
 pub struct Options {
     /// Language of captions, as a BCP 47 tag; empty: the scenario's own.
     pub language: String,
-    /// No moves between views.
+    /// No moves between views: cross-fades instead.
     pub reduced_motion: bool,
 }

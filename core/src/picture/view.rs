@@ -41,26 +41,24 @@ impl Camera {
         Self::at(pose(show, view, t_s), frame)
     }
 
-    /// The camera on its way from one view to another, both at the same model time; `share` of the time has
-    /// passed, 0 to 1, before easing.
+    /// The camera on its way from a view through others, all at the same model time. Each move is a view and the share
+    /// of its time that has passed, 0 to 1, before easing; it starts from what the moves before it show at this instant,
+    /// which may still be on their way. So a move that begins before another is over neither jumps nor jerks.
     ///
     /// The logarithm of the span goes evenly. The centre goes so that what will stand in the middle moves
     /// straight and never leaves the picture: its distance from the middle, in spans, falls steadily to 0.
-    pub fn moving(show: &Show, from: &View, to: &View, share: f64, t_s: f64, frame: &Frame) -> Self {
-        let (a, b) = (pose(show, from, t_s), pose(show, to, t_s));
-        let u = look::ease(share);
-        let ratio = b.span_m / a.span_m;
-        let grown = float::exp(u * float::ln(ratio));
-        let gone = if (ratio - 1.0).abs() < 1e-6 { u } else { (grown - 1.0) / (ratio - 1.0) };
-        Self::at(
-            Pose {
-                centre: a.centre + (b.centre - a.centre) * gone,
-                span_m: a.span_m * grown,
-                tilt_rad: a.tilt_rad + (b.tilt_rad - a.tilt_rad) * u,
-                turn_rad: a.turn_rad + shorter_way(b.turn_rad - a.turn_rad) * u,
-            },
-            frame,
-        )
+    pub fn moving(show: &Show, from: &View, moves: &[(View, f64)], t_s: f64, frame: &Frame) -> Self {
+        let mut now = pose(show, from, t_s);
+        // The way round is chosen between views at rest, as they are stated: between moving ones it could change under
+        // way, and views half a round apart would be at the mercy of a rounding.
+        let (mut turned_rad, mut stated_rad) = (now.turn_rad, now.turn_rad);
+        for (to, share) in moves {
+            let goal = pose(show, to, t_s);
+            turned_rad += shorter_way(goal.turn_rad - stated_rad);
+            stated_rad = goal.turn_rad;
+            now = now.toward(&Pose { turn_rad: turned_rad, ..goal }, look::ease(*share));
+        }
+        Self::at(now, frame)
     }
 
     fn at(pose: Pose, frame: &Frame) -> Self {
@@ -93,6 +91,21 @@ impl Camera {
     /// How far a point is in front of the centre, towards the eye, px.
     pub fn depth(&self, point: Vector3<f64>) -> f64 {
         (point - self.centre).dot(&self.toward) * self.px_per_m
+    }
+}
+
+impl Pose {
+    /// The pose after a share of the way to another.
+    fn toward(&self, goal: &Self, share: f64) -> Self {
+        let ratio = goal.span_m / self.span_m;
+        let grown = float::exp(share * float::ln(ratio));
+        let gone = if (ratio - 1.0).abs() < 1e-6 { share } else { (grown - 1.0) / (ratio - 1.0) };
+        Self {
+            centre: self.centre + (goal.centre - self.centre) * gone,
+            span_m: self.span_m * grown,
+            tilt_rad: self.tilt_rad + (goal.tilt_rad - self.tilt_rad) * share,
+            turn_rad: self.turn_rad + (goal.turn_rad - self.turn_rad) * share,
+        }
     }
 }
 
@@ -174,18 +187,18 @@ mod tests {
         let mut last = f64::INFINITY;
         for i in 0..=100 {
             let share = f64::from(i) / 100.0;
-            let camera = Camera::moving(&show, &wide, &close, share, 0.0, &HOUSE);
+            let camera = Camera::moving(&show, &wide, &[(close, share)], 0.0, &HOUSE);
             let p = camera.project(target);
             let off = super::super::geometry::length([p[0] - 960.0, p[1] - 540.0]);
             assert!(off < last + 1e-6, "{off} after {last}");
             last = off;
         }
-        let end = Camera::moving(&show, &wide, &close, 1.0, 0.0, &HOUSE);
+        let end = Camera::moving(&show, &wide, &[(close, 1.0)], 0.0, &HOUSE);
         let rest = Camera::of(&show, &close, 0.0, &HOUSE);
         near(end.project(target), rest.project(target));
         assert!((end.px_per_m / rest.px_per_m - 1.0).abs() < 1e-12);
         // 350 to 10 degrees is a turn by 20, not by 340.
-        let half = Camera::moving(&show, &wide, &close, 0.3125, 0.0, &HOUSE);
+        let half = Camera::moving(&show, &wide, &[(close, 0.3125)], 0.0, &HOUSE);
         assert!(half.right.y.abs() < 1e-9, "{}", half.right.y);
     }
 }

@@ -6,6 +6,7 @@
 //! changes over under a veil.
 
 use super::glide::Glide;
+use super::lately::Lately;
 use super::pacing::Pacing;
 use super::plan::{Plan, PlannedBeat, Run};
 use crate::scenario::Then;
@@ -44,6 +45,8 @@ pub struct Moment {
     pub beat: usize,
     /// The beat that was left for this one.
     pub before: Option<usize>,
+    /// The beats left so lately that the picture still moves on from their views.
+    pub lately: Lately,
     /// Show time since this beat was entered, holding or not, seconds.
     pub since_cut_s: f64,
     /// Model time at which this beat's sectors start.
@@ -93,6 +96,7 @@ const UNDO_S: f64 = 5.0;
 pub struct Clock {
     beat: usize,
     before: Option<usize>,
+    lately: Lately,
     /// Beat time since the beat's start was reached.
     beat_s: f64,
     /// Beat time that went into getting there.
@@ -120,6 +124,7 @@ impl Clock {
         let mut clock = Self {
             beat: 0,
             before: None,
+            lately: Lately::default(),
             beat_s: 0.0,
             lead_s: 0.0,
             pacing: Pacing::still(from_s),
@@ -194,6 +199,7 @@ impl Clock {
             held: self.held || self.waiting,
             beat: self.beat,
             before: self.before,
+            lately: self.lately,
             since_cut_s: self.since_cut_s,
             beat_from_s: self.beat_from_s,
             run_from_s: self.run_from_s,
@@ -288,6 +294,7 @@ impl Clock {
             return;
         }
         self.since_cut_s += elapsed_s;
+        self.lately.advance(elapsed_s);
         if !self.waiting {
             self.show_s += elapsed_s;
         }
@@ -312,6 +319,7 @@ impl Clock {
         {
             let over_s = self.beat_s + self.lead_s - beat.lasts_s;
             self.beat_s -= over_s;
+            self.lately.advance(-over_s);
             self.enter(plan, self.beat + 1, Some(self.beat));
             let left_s = match &mut self.glide {
                 Some(glide) => glide.advance(over_s),
@@ -322,6 +330,7 @@ impl Clock {
                 self.run(plan, left_s);
             }
             self.since_cut_s = over_s;
+            self.lately.advance(over_s);
         }
     }
 
@@ -368,13 +377,14 @@ impl Clock {
         match self.undo.take() {
             Some(mark) => {
                 let now = self.moment(plan);
-                let left = self.beat;
                 let show_s = self.show_s;
                 let mut clock = Self::resume(plan, mark);
                 let target_s = clock.pacing.model_s(clock.beat_s);
-                clock.glide =
-                    Glide::between(now.model_s, target_s, 0.0, 0.0, self.reach_pace(plan, mark.beat));
-                clock.before = Some(left);
+                let reach = self.reach_pace(plan, mark.beat);
+                clock.glide = Glide::between(now.model_s, target_s, [0.0; 2], reach, now.veil);
+                clock.before = Some(self.beat);
+                clock.lately = self.lately;
+                clock.lately.leave(self.beat, self.beat_from_s, self.run_from_s);
                 clock.since_cut_s = 0.0;
                 clock.show_s = show_s;
                 *self = clock;
@@ -418,7 +428,9 @@ impl Clock {
         self.waiting = false;
         self.held = false;
         self.speed = 0;
-        let seamless = before.is_some() && (from_s - now.model_s).abs() <= 1e-9 * from_s.abs().max(1.0);
+        let seamless = before.is_some()
+            && now.veil <= 0.0
+            && (from_s - now.model_s).abs() <= 1e-9 * from_s.abs().max(1.0);
         let mut first_pace = 0.0;
         if seamless {
             first_pace = now.pace;
@@ -426,10 +438,13 @@ impl Clock {
         } else {
             let arriving = beat.pacing(from_s, 0.0, 0.0).pace;
             let reach = self.reach_pace(plan, index);
-            self.glide = Glide::between(now.model_s, from_s, now.pace, arriving, reach);
+            self.glide = Glide::between(now.model_s, from_s, [now.pace, arriving], reach, now.veil);
             if let Some(glide) = &self.glide {
                 first_pace = glide.last_pace();
             }
+        }
+        if index != self.beat {
+            self.lately.leave(self.beat, self.beat_from_s, self.run_from_s);
         }
         self.beat = index;
         self.before = before;

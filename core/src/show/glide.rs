@@ -19,25 +19,32 @@ pub(super) struct Glide {
     lasts_s: f64,
     gone_s: f64,
     veiled: bool,
+    /// The veil under which it begins.
+    first_veil: f64,
 }
 
 impl Glide {
-    /// A glide between two model times, from a pace to a pace; `usual_pace` says what the eye is used to.
-    /// `None` where there is no way to go.
+    /// A glide between two model times, from a pace to a pace; `usual_pace` says what the eye is used to. A veil
+    /// that has begun to fall goes on falling where one is needed, and rises where none is.
+    /// `None` where there is no way to go and nothing to be unveiled.
     pub(super) fn between(
         from_s: f64,
         to_s: f64,
-        first_pace: f64,
-        last_pace: f64,
+        [first_pace, last_pace]: [f64; 2],
         usual_pace: f64,
+        first_veil: f64,
     ) -> Option<Self> {
         let way = to_s - from_s;
-        if way == 0.0 || !way.is_finite() {
+        if !way.is_finite() || (way == 0.0 && first_veil <= 0.0) {
             return None;
         }
         let show_s = way.abs() / usual_pace.max(f64::MIN_POSITIVE);
         let veiled = show_s > FARTHEST_SHOW_S;
-        let lasts_s = if veiled { VEIL_S } else { (SHORTEST_S + show_s / 40.0).clamp(SHORTEST_S, LONGEST_S) };
+        let lasts_s = if veiled {
+            VEIL_S * (1.0 - 0.5 * first_veil)
+        } else {
+            (SHORTEST_S + show_s / 40.0).clamp(SHORTEST_S, LONGEST_S)
+        };
         // A cubic through both ends is monotone when both slopes have the sign of the way and are at most three
         // times its mean slope (Fritsch and Carlson 1980, SIAM J. Numer. Anal. 17, 238).
         let most = 3.0 * way / lasts_s;
@@ -45,7 +52,8 @@ impl Glide {
             if pace * way <= 0.0 || veiled { 0.0 } else { pace.abs().min(most.abs()) * way.signum() }
         };
         let last_pace = if veiled { last_pace } else { fit(last_pace) };
-        Some(Self { from_s, to_s, first_pace: fit(first_pace), last_pace, lasts_s, gone_s: 0.0, veiled })
+        let first_pace = fit(first_pace);
+        Some(Self { from_s, to_s, first_pace, last_pace, lasts_s, gone_s: 0.0, veiled, first_veil })
     }
 
     /// Lets show time pass; what is left of it when the glide is over, else 0.
@@ -78,7 +86,7 @@ impl Glide {
     /// Model time now.
     pub(super) fn model_s(&self) -> f64 {
         if self.veiled {
-            return if 2.0 * self.gone_s < self.lasts_s { self.from_s } else { self.to_s };
+            return if self.lasts_s - self.gone_s > 0.5 * VEIL_S { self.from_s } else { self.to_s };
         }
         if self.over() {
             return self.to_s;
@@ -102,11 +110,10 @@ impl Glide {
 
     /// The veil: 0 clear, 1 only ground.
     pub(super) fn veil(&self) -> f64 {
-        if !self.veiled {
-            return 0.0;
-        }
-        let x = 1.0 - (2.0 * self.gone_s / self.lasts_s - 1.0).abs();
-        x.clamp(0.0, 1.0)
+        let moved = self.gone_s / (0.5 * VEIL_S);
+        let left = (self.lasts_s - self.gone_s) / (0.5 * VEIL_S);
+        let veil = if self.veiled { (self.first_veil + moved).min(left) } else { self.first_veil - moved };
+        veil.clamp(0.0, 1.0)
     }
 }
 
@@ -121,7 +128,7 @@ mod tests {
             from in -1e9..1e9f64, way in prop::sample::select(vec![-1e8, -3.0, 1.0, 5e7]),
             first in 0.0..1e7f64, last in 0.0..1e7f64, usual in 1.0..1e6f64,
         ) {
-            let mut glide = Glide::between(from, from + way, first, last, usual).unwrap();
+            let mut glide = Glide::between(from, from + way, [first, last], usual, 0.0).unwrap();
             let mut before = glide.model_s();
             let mut left = 0.0;
             for _ in 0..400 {
@@ -138,10 +145,25 @@ mod tests {
 
     #[test]
     fn a_long_way_is_changed_under_a_full_veil() {
-        let mut glide = Glide::between(0.0, 1e9, 1.0, 1.0, 1.0).unwrap();
+        let mut glide = Glide::between(0.0, 1e9, [1.0, 1.0], 1.0, 0.0).unwrap();
         glide.advance(0.499);
         assert!(glide.model_s() == 0.0 && glide.veil() > 0.99);
         glide.advance(0.002);
         assert!((glide.model_s() - 1e9).abs() == 0.0 && glide.veil() > 0.99);
+    }
+
+    #[test]
+    fn a_veil_that_has_begun_to_fall_never_jumps() {
+        for (way, level) in [(1e9, 0.3), (1e9, 1.0), (1.0, 0.7), (0.0, 0.5)] {
+            let mut glide = Glide::between(0.0, way, [0.0, 0.0], 1.0, level).unwrap();
+            let mut before = glide.veil();
+            assert!((before - level).abs() < 1e-12);
+            while !glide.over() {
+                glide.advance(0.01);
+                assert!((glide.veil() - before).abs() < 0.0201, "from {before} to {}", glide.veil());
+                before = glide.veil();
+            }
+            assert!(before < 1e-9 && (glide.model_s() - way).abs() < 1e-9);
+        }
     }
 }

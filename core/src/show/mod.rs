@@ -7,6 +7,7 @@ use crate::scenario::Scenario;
 pub mod clock;
 pub mod fingerprint;
 mod glide;
+mod lately;
 mod pacing;
 pub mod plan;
 pub mod planner;
@@ -14,6 +15,7 @@ pub mod rehearsal;
 
 pub use clock::{Action, Bookmark, Clock, Moment};
 pub use fingerprint::Fingerprint;
+pub use lately::{Lately, Left, VIEW_MOVE_S};
 pub use pacing::{EaseOut, Pacing};
 pub use plan::{Cue, Plan, PlannedBeat, Run, Way};
 pub use planner::{Limits, Need};
