@@ -127,30 +127,41 @@ impl Caption {
         Self { lines, rect: Rect { left: 0.0, top: 0.0, right: width, bottom: height.max(0.0) }, size }
     }
 
-    /// A caption in the emptiness: with the margin of the house; else nearer to the window's edge; else, where its author
-    /// wrote one line, broken into more; else where it covers least.
+    /// A caption in the emptiness: where it covers nothing and has room around it, with the margin of the house rather
+    /// than nearer to the window's edge, in the lines that its author wrote rather than broken into more. Where
+    /// nothing is free, it covers as little as it can.
     pub fn in_emptiness(empty: &Emptiness, text: &str, frame: &Frame) -> Self {
-        let margin = frame.margin.max(0.5 * frame.label);
-        let shares: &[f64] = if text.trim().lines().count() > 1 { &[1.0] } else { &[1.0, 0.5, 0.3] };
-        let mut least: Option<(f64, Self)> = None;
-        for (share, margins) in shares.iter().flat_map(|s| [(*s, 1.0), (*s, 0.5)]) {
-            let mut caption = Self::set(text, frame, share);
-            let within = Rect {
-                left: margins * margin,
-                top: 0.8 * margins * margin,
-                right: frame.width - margins * margin,
-                bottom: frame.foot_baseline() - frame.label,
-            };
-            let (corner, covered) = empty.best(caption.rect.width(), caption.rect.height(), &within, frame);
-            caption.move_to(corner);
-            if least.as_ref().is_none_or(|l| covered < l.0) {
-                least = Some((covered, caption));
+        let usual = frame.margin.max(0.5 * frame.label);
+        let least = (0.5 * usual).max(frame.part(look::LEAST_MARGIN)).min(usual);
+        let mut best: Option<(f64, Self)> = None;
+        let mut tried: Option<Vec<Vec<Run>>> = None;
+        for share in [1.0, 0.72, 0.5, 0.36, 0.26] {
+            let set = Self::set(text, frame, share);
+            if tried.as_ref() == Some(&set.lines) {
+                continue;
             }
-            if covered <= 0.0 {
-                break;
+            tried = Some(set.lines.clone());
+            let written = text.trim().lines().count().max(1);
+            let broken = set.lines.len().saturating_sub(written);
+            for (margin, nearness) in [(usual, 0.0), (least, 1.0)] {
+                let within = Rect {
+                    left: margin,
+                    top: margin,
+                    right: frame.width - margin,
+                    bottom: frame.foot_baseline() - frame.label,
+                };
+                let found = empty.best(set.rect.width(), set.rect.height(), &within, frame);
+                let score = 100.0 * found.covered - 10.0 * found.room
+                    + 4.0 * nearness
+                    + if written > 1 { 12.0 } else { 4.0 } * u32::try_from(broken).map_or(0.0, f64::from);
+                if best.as_ref().is_none_or(|b| score < b.0) {
+                    let mut caption = set.clone();
+                    caption.move_to(found.corner);
+                    best = Some((score, caption));
+                }
             }
         }
-        least.map_or_else(|| Self::set(text, frame, 1.0), |l| l.1)
+        best.map_or_else(|| Self::set(text, frame, 1.0), |b| b.1)
     }
 
     /// Moves its corner.

@@ -19,6 +19,17 @@ pub struct Emptiness {
     weights: Vec<f64>,
 }
 
+/// A place for a box.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Found {
+    /// Its upper left corner, px.
+    pub corner: Px,
+    /// How much it covers there; 0: nothing.
+    pub covered: f64,
+    /// How far it stands from all things, 0 to 1: enough.
+    pub room: f64,
+}
+
 #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "clamped to 0..=100,000 before")]
 fn index(value: f64) -> usize {
     value.clamp(0.0, 100_000.0) as usize
@@ -63,7 +74,8 @@ impl Emptiness {
         }
     }
 
-    fn mark_piece(&mut self, a: Px, b: Px, weight: f64) {
+    /// Counts the cells along a straight piece.
+    pub fn mark_piece(&mut self, a: Px, b: Px, weight: f64) {
         let steps = (2.0 * length(between(a, b)) / self.cell).ceil().clamp(1.0, 2000.0);
         let mut i = 0.0;
         while i <= steps {
@@ -127,12 +139,12 @@ impl Emptiness {
         }
     }
 
-    /// The corner for a box inside `within`, and how much it covers there: the one that covers least, then stands farthest from all things (up to enough
+    /// The place for a box inside `within`: the one that covers least, then stands farthest from all things (up to enough
     /// room), then nearest to the picture's middle.
-    pub fn best(&self, width: f64, height: f64, within: &Rect, frame: &Frame) -> (Px, f64) {
+    pub fn best(&self, width: f64, height: f64, within: &Rect, frame: &Frame) -> Found {
         let sums = self.sums();
         let away = self.distances();
-        let mut best: Option<(f64, Px, f64)> = None;
+        let mut best: Option<(f64, Found)> = None;
         let across = (within.width() - width).max(0.0);
         let down = (within.height() - height).max(0.0);
         let steps = |room: f64| index((room / self.cell).floor()).min(400);
@@ -156,11 +168,12 @@ impl Emptiness {
                 let off = length(between([0.5 * frame.width, 0.5 * frame.height], middle));
                 let score = 100.0 * covered - 10.0 * room / enough + off / (frame.width + frame.height);
                 if best.is_none_or(|b| score < b.0) {
-                    best = Some((score, corner, covered));
+                    best = Some((score, Found { corner, covered, room: room / enough }));
                 }
             }
         }
-        best.map_or(([within.left, within.top], f64::INFINITY), |b| (b.1, b.2))
+        let none = Found { corner: [within.left, within.top], covered: f64::INFINITY, room: 0.0 };
+        best.map_or(none, |b| b.1)
     }
 
     /// Sums of all weights above and left of each cell's corner.
@@ -238,14 +251,14 @@ mod tests {
         // All but the lower right quarter is full.
         empty.mark_rect(&Rect { left: 0.0, top: 0.0, right: 1919.0, bottom: 500.0 }, 1.0);
         empty.mark_rect(&Rect { left: 0.0, top: 0.0, right: 900.0, bottom: 1079.0 }, 1.0);
-        let (corner, covered) = empty.best(500.0, 200.0, &HOUSE.whole().grown(-96.0), &HOUSE);
+        let Found { corner, covered, .. } = empty.best(500.0, 200.0, &HOUSE.whole().grown(-96.0), &HOUSE);
         assert!(covered <= 0.0 && corner[0] > 930.0 && corner[1] > 530.0, "{corner:?}");
     }
 
     #[test]
     fn a_box_larger_than_the_room_still_starts_inside() {
         let empty = Emptiness::new(&HOUSE);
-        let (corner, _) = empty.best(5000.0, 5000.0, &HOUSE.whole().grown(-96.0), &HOUSE);
+        let Found { corner, .. } = empty.best(5000.0, 5000.0, &HOUSE.whole().grown(-96.0), &HOUSE);
         assert!((corner[0] - 96.0).abs() < 1e-9 && (corner[1] - 96.0).abs() < 1e-9);
     }
 }

@@ -8,7 +8,7 @@
 
 use super::Tag;
 use super::frame::Frame;
-use super::geometry::{Px, Rect, clip_piece, length};
+use super::geometry::{Px, Rect, between, clip_piece, length};
 use super::list::{Anchor, Colour};
 use super::look;
 use super::scene::{Scene, Spot, Words};
@@ -21,6 +21,11 @@ const SLIDE: f64 = 0.3;
 pub const LOOK_AHEAD: usize = 8;
 /// How much worse a place must be than another before a label leaves it.
 const LOYALTY: f64 = 6.0;
+
+/// Radius from which a disc is ground for the names of what is in front of it, in label sizes.
+const LARGE: f64 = 3.0;
+/// How much worse a place is for a path or a disc's rim that runs through it: enough to leave it.
+const STRUCK: f64 = 7.0;
 
 /// What a label belongs to. Also its order among equals.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
@@ -180,7 +185,10 @@ pub fn step(
             }
             let middle = [block.at[0] + offset[0], block.at[1] + offset[1]];
             let rect = ink_box(middle, block.size(frame), frame).grown(0.15 * frame.label);
-            cost += 1.5 * count(clutter.iter().filter(|p| rect.holds(**p)).count().min(8));
+            let struck = count(clutter.iter().filter(|p| rect.holds(**p)).count().min(8));
+            cost += if struck > 0.0 { STRUCK + 1.5 * struck } else { 0.0 };
+            // A short way is better than one across its own body.
+            cost += old.map_or(0.0, |o| 0.8 * length(between(o.offset, offset)) / frame.label);
             cost += if place == INSIDE { -20.0 } else { 0.6 * count(place) };
             if old.is_some_and(|o| o.place == place) {
                 kept = Some((place, cost, offset));
@@ -249,8 +257,17 @@ fn trouble(
     let need = 0.35 * frame.label;
     let near = rect.grown(0.12 * frame.label);
     let crossed = obstacles.pieces.iter().any(|[a, b]| clip_piece(*a, *b, &near).is_some());
-    let through = if crossed { 30.0 } else { 0.0 };
+    let on_rim = obstacles.discs.iter().any(|&(_, at, radius)| straddles(&rect, at, radius, frame));
+    let through = if crossed { 30.0 } else { 0.0 } + if on_rim { 2.0 * STRUCK } else { 0.0 };
     if clear >= need { through } else { 40.0 + 60.0 * (need - clear) / need + through }
+}
+
+/// Whether the rim of a large disc runs through a box.
+fn straddles(rect: &Rect, at: Px, radius: f64, frame: &Frame) -> bool {
+    let middle = rect.middle();
+    let far =
+        [(middle[0] - at[0]).abs() + 0.5 * rect.width(), (middle[1] - at[1]).abs() + 0.5 * rect.height()];
+    radius > LARGE * frame.label && rect.gap_to_disc(at, radius) < 0.0 && length(far) > radius
 }
 
 /// How far a label's box stands from the nearest thing that it must not touch, px.
@@ -262,12 +279,12 @@ fn clearance(
     taken: &[Rect],
     frame: &Frame,
 ) -> f64 {
-    let whole = frame.whole().grown(-0.3 * frame.label);
+    let whole = frame.whole().grown(-0.45 * frame.label);
     let to_edge = (rect.left - whole.left)
         .min(whole.right - rect.right)
         .min(rect.top - whole.top)
         .min(whole.bottom - rect.bottom)
-        + 0.4 * frame.label;
+        + 0.35 * frame.label;
     let mut clear = to_edge;
     for other in obstacles.rects.iter().chain(taken) {
         clear = clear.min(other.gap(rect));
@@ -278,7 +295,7 @@ fn clearance(
         }
         let own = key == Key::Body(body);
         // On a large disc, names of what is in front of it are welcome.
-        if !own && radius > 3.0 * frame.label {
+        if !own && radius > LARGE * frame.label {
             continue;
         }
         clear = clear.min(rect.gap_to_disc(at, radius) + if own { 0.3 * frame.label } else { 0.0 });

@@ -6,10 +6,10 @@ use super::frame::Frame;
 use super::geometry::{Px, Rect, along, between, length};
 use super::labels::{self, Block, Key, Line, Obstacles, Standing};
 use super::list::{Shape, Tag};
+use super::marks::area::{self, AreaLabel, Areas};
 use super::marks::arrow::{self, Kind};
 use super::marks::foot::Foot;
 use super::marks::readout::{self, Reading};
-use super::marks::sector::{self, AreaLabel, Areas};
 use super::marks::{apsides, body, foot, tail};
 use super::scene::{Scene, Spot};
 use super::view::Camera;
@@ -97,17 +97,11 @@ impl Layout {
     pub fn new(show: &Show, beat: &Beat, key: LayoutKey, frame: Frame, options: &Options) -> Self {
         let mut scene = scene_at(show, beat, key, frame, key.beat_from_s);
         let (mut areas, area_words) =
-            if frame.has_text { sector::areas_of(&scene) } else { (Vec::new(), None) };
+            if frame.has_text { area::areas_of(&scene) } else { (Vec::new(), None) };
         let foot = foot_of(&scene, area_words);
         let readings = readout::of_beat(&scene);
-        let foot_rects = if frame.has_text {
-            {
-                let pace = scene.pace;
-                foot::draw(&mut scene, &foot, pace, false)
-            }
-        } else {
-            Vec::new()
-        };
+        let pace = scene.pace;
+        let foot_rects = if frame.has_text { foot::draw(&mut scene, &foot, pace, false) } else { Vec::new() };
         for set in &mut areas {
             set.settle(&scene, &foot_rects);
         }
@@ -152,7 +146,12 @@ impl Layout {
         let at = |look: u32, of: u32| self.key.beat_from_s + stretch * f64::from(look) / f64::from(of);
         for look in 0..=(if stretch > 0.0 { BODY_LOOKS } else { 0 }) {
             let scene = scene_at(show, beat, self.key, frame, at(look, BODY_LOOKS));
-            for block in self.blocks(&scene, &scene.spots()) {
+            let spots = scene.spots();
+            // Arrows and tails, which turn quickly.
+            for [a, b] in self.obstacles(&scene, &spots, &[]).pieces {
+                empty.mark_piece(a, b, 2.0);
+            }
+            for block in self.blocks(&scene, &spots) {
                 let [w, h] = block.size(&frame);
                 let name = Rect {
                     left: block.at[0] - block.radius,

@@ -84,6 +84,8 @@ pub const HATCH_STEP: f64 = 1.0 / 83.0;
 pub const DOT_STEP: f64 = 1.0 / 83.0;
 /// The margin left free around captions and foot line.
 pub const MARGIN: f64 = 96.0 / 1080.0;
+/// The least margin of a caption that has no room for that one.
+pub const LEAST_MARGIN: f64 = 48.0 / 1080.0;
 /// The ground-coloured edge of a disc, that parts it from the lines that end at it.
 pub const DISC_EDGE: f64 = 1.0 / 300.0;
 

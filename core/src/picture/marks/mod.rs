@@ -1,6 +1,7 @@
 //! Marks: what is drawn to explain, each kind in a file of its own.
 
 pub mod apsides;
+pub mod area;
 pub mod arrow;
 pub mod body;
 pub mod conic;

@@ -38,7 +38,7 @@ pub fn pieces(scene: &Scene<'_>, spots: &[Spot]) -> Vec<(BodyId, [[Px; 2]; 5])> 
             return None;
         }
         let unit = scene.camera.turn(away / distance).map(|v| v / scene.camera.px_per_m);
-        let long = scene.frame.part(LENGTH) * (AU_M / distance).sqrt().clamp(0.33, 1.2);
+        let long = long(scene, distance);
         let segments = LINES.map(|(turn_deg, from, to)| {
             let (s, c) = float::sin_cos(turn_deg.to_radians());
             let d = [unit[0] * c - unit[1] * s, unit[0] * s + unit[1] * c];
@@ -48,6 +48,19 @@ pub fn pieces(scene: &Scene<'_>, spots: &[Spot]) -> Vec<(BodyId, [[Px; 2]; 5])> 
         (length(unit) > 0.05).then_some((spot.body, segments))
     };
     spots.iter().filter(|s| is_comet(s.body)).filter_map(of).collect()
+}
+
+/// Length of a tail at a distance from the star, px.
+fn long(scene: &Scene<'_>, distance_m: f64) -> f64 {
+    scene.frame.part(LENGTH) * (AU_M / distance_m).sqrt().clamp(0.33, 1.2)
+}
+
+/// How far the tail of a body reaches at most now, in whichever direction it is seen, px; `None`: it has none.
+pub fn longest(scene: &Scene<'_>, body: BodyId) -> Option<f64> {
+    let comet = scene.show.scenario.bodies.get(body.0).is_some_and(|b| b.kind == Kind::Comet);
+    let star = brightest(scene).filter(|_| comet)?;
+    let distance_m = (scene.position(body) - scene.position(star)).norm();
+    (distance_m > 0.0).then(|| long(scene, distance_m))
 }
 
 fn brightest(scene: &Scene<'_>) -> Option<BodyId> {
