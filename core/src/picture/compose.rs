@@ -9,7 +9,8 @@ use super::marks::arrow::{self, Kind};
 use super::marks::foot::Foot;
 use super::marks::sector::{self, Sectors};
 use super::marks::{self, apsides, body, conic, foot, path, tail, trail};
-use super::scene::{Scene, Spot, Words, stroke};
+use super::scene::{House, Scene, Spot, Words, stroke};
+use super::words::Language;
 use super::{Options, Screen, labels, look, passage};
 use crate::scenario::Mark;
 use crate::show::{Moment, Show};
@@ -18,7 +19,7 @@ use crate::show::{Moment, Show};
 /// follows from show, window, options and moment alone.
 #[derive(Debug)]
 pub struct Composer {
-    frame: Frame,
+    house: House,
     options: Options,
     layouts: Vec<Layout>,
 }
@@ -28,8 +29,10 @@ const LAYOUTS_KEPT: usize = 6;
 
 impl Composer {
     /// For a show that is ready (or still being integrated: what isn't covered yet stands at its start).
-    pub fn new(_show: &Show, screen: Screen, options: Options) -> Self {
-        Self { frame: Frame::new(screen), options, layouts: Vec::new() }
+    pub fn new(show: &Show, screen: Screen, options: Options) -> Self {
+        let own = options.language.is_empty();
+        let language = Language::of(if own { &show.scenario.language } else { &options.language });
+        Self { house: House { frame: Frame::new(screen), language }, options, layouts: Vec::new() }
     }
 
     /// Decides what a beat entered so will need, so that its first frame costs no more than the others.
@@ -43,7 +46,7 @@ impl Composer {
             Some(index) => index,
             None => {
                 let beat = show.scenario.beats.get(key.beat)?;
-                let layout = Layout::new(show, beat, key, self.frame, &self.options);
+                let layout = Layout::new(show, beat, key, self.house, &self.options);
                 if self.layouts.len() >= LAYOUTS_KEPT {
                     self.layouts.remove(0);
                 }
@@ -56,7 +59,7 @@ impl Composer {
 
     /// The picture at a moment. Never empty of its ground; holds finite numbers only.
     pub fn compose(&mut self, show: &Show, moment: &Moment) -> DisplayList {
-        let frame = self.frame;
+        let frame = self.house.frame;
         let calm = self.options.reduced_motion;
         let (shown, fade) = if calm { passage::cross_fade(show, moment) } else { (usize::MAX, 0.0) };
         let shown = moment.lately.as_slice().get(shown).map_or(LayoutKey::of(moment), LayoutKey::left);
@@ -74,7 +77,8 @@ impl Composer {
     }
 
     fn items(&mut self, show: &Show, moment: &Moment, shown: LayoutKey) -> Vec<Item> {
-        let frame = self.frame;
+        let house = self.house;
+        let frame = house.frame;
         let captions = if frame.has_text { self.captions(show, moment, shown) } else { Vec::new() };
         let moves = !self.options.reduced_motion;
         let Some(beat) = show.scenario.beats.get(shown.beat) else {
@@ -83,7 +87,7 @@ impl Composer {
         let Some(layout) = self.layout(show, shown) else {
             return Vec::new();
         };
-        let mut scene = scene_at(show, beat, shown, frame, moment.model_s);
+        let mut scene = scene_at(show, beat, shown, house, moment.model_s);
         if let Some(camera) = passage::camera(show, moment, &frame).filter(|_| moves) {
             scene.camera = camera;
         }
@@ -93,7 +97,7 @@ impl Composer {
             draw_areas(&mut scene, &areas);
             let blocks = layout.blocks(&scene, &spots);
             let obstacles = layout.obstacles(&scene, &spots, &areas);
-            let (earlier, later, share) = layout.standings(show, beat, frame, moment.model_s);
+            let (earlier, later, share) = layout.standings(show, beat, house, moment.model_s);
             let placed = labels::place(&blocks, earlier, later, share, &obstacles, &frame);
             labels::draw(&mut scene, &placed);
             for (caption, opacity) in captions {

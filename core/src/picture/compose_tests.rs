@@ -169,7 +169,7 @@ fn areas_beside_sectors_are_equal_and_right() {
     let e = fixture::FENN;
     // Half the angular momentum times the time.
     let area = 0.5 * (e.gm * e.a * (1.0 - e.e * e.e)).sqrt() * 20.0 * DAY / 1e18;
-    assert_eq!(areas, vec![super::super::wording::grouped(area, 0); 6]);
+    assert_eq!(areas, vec![super::super::wording::grouped(&super::super::words::ENGLISH, area, 0); 6]);
     assert!(texts(&list).iter().any(|t| t.2 == "areas in million million km²"));
 }
 
@@ -274,4 +274,21 @@ fn merged_bodies_are_gone_and_the_cast_is_kept() {
     };
     assert_eq!(bodies(99.0), [0, 2, 3]);
     assert_eq!(bodies(101.0), [0, 3]);
+}
+
+#[test]
+fn foot_line_and_read_outs_speak_the_language_asked_for_or_the_shows_own() {
+    let mut show = fixture::equal_areas();
+    let moment = fixture::moment(0, 125.0 * DAY, 0.0, DAY);
+    let mut said = |own: &str, asked: &str| -> Vec<String> {
+        show.scenario.language = own.into();
+        let options = Options { language: asked.into(), ..Options::default() };
+        let list = Composer::new(&show, HOUSE, options).compose(&show, &moment);
+        texts(&list).into_iter().filter(|t| t.0 == Tag::Foot).map(|t| t.2).collect()
+    };
+    let spanish = said("es", "");
+    assert!(spanish.contains(&"áreas en billones de km²".to_owned()), "{spanish:?}");
+    assert!(spanish.contains(&"6 de septiembre de 2031".to_owned()), "{spanish:?}");
+    assert!(said("es", "de").contains(&"6. September 2031".to_owned()));
+    assert_eq!(said("es", "en"), said("en", "cy"));
 }

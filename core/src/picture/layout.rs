@@ -11,7 +11,7 @@ use super::marks::arrow::{self, Kind};
 use super::marks::foot::Foot;
 use super::marks::readout::{self, Reading};
 use super::marks::{apsides, body, foot, tail};
-use super::scene::{Scene, Spot};
+use super::scene::{House, Scene, Spot};
 use super::view::Camera;
 use super::wording::Grain;
 use super::{Options, compose, look};
@@ -74,13 +74,15 @@ impl LayoutKey {
 }
 
 /// A scene of a beat at an instant, in its view at rest.
-pub fn scene_at<'a>(show: &'a Show, beat: &'a Beat, key: LayoutKey, frame: Frame, t_s: f64) -> Scene<'a> {
+pub fn scene_at<'a>(show: &'a Show, beat: &'a Beat, key: LayoutKey, house: House, t_s: f64) -> Scene<'a> {
+    let House { frame, language } = house;
     let planned = show.plan.beats.get(key.beat);
     let stretch = planned.map_or(0.0, |p| p.until_s - p.from_s);
     Scene {
         show,
         beat,
         frame,
+        language,
         camera: Camera::of(show, &beat.view, t_s, &frame),
         t_s,
         run_from_s: key.run_from_s,
@@ -94,8 +96,9 @@ pub fn scene_at<'a>(show: &'a Show, beat: &'a Beat, key: LayoutKey, frame: Frame
 
 impl Layout {
     /// Decides what can be decided once.
-    pub fn new(show: &Show, beat: &Beat, key: LayoutKey, frame: Frame, options: &Options) -> Self {
-        let mut scene = scene_at(show, beat, key, frame, key.beat_from_s);
+    pub fn new(show: &Show, beat: &Beat, key: LayoutKey, house: House, options: &Options) -> Self {
+        let frame = house.frame;
+        let mut scene = scene_at(show, beat, key, house, key.beat_from_s);
         let (mut areas, area_words) =
             if frame.has_text { area::areas_of(&scene) } else { (Vec::new(), None) };
         let foot = foot_of(&scene, area_words);
@@ -127,7 +130,7 @@ impl Layout {
         }
         if frame.has_text {
             let text = caption::text_of(beat, &options.language, &show.scenario.language);
-            let empty = layout.look_round(show, beat, frame);
+            let empty = layout.look_round(show, beat, house);
             layout.caption = text.map(|text| Caption::in_emptiness(&empty, text, &frame));
         }
         layout
@@ -139,13 +142,14 @@ impl Layout {
     }
 
     /// Looks at all that the beat will draw.
-    fn look_round(&mut self, show: &Show, beat: &Beat, frame: Frame) -> Emptiness {
+    fn look_round(&mut self, show: &Show, beat: &Beat, house: House) -> Emptiness {
+        let frame = house.frame;
         let mut empty = Emptiness::new(&frame);
-        let first = scene_at(show, beat, self.key, frame, self.key.beat_from_s);
+        let first = scene_at(show, beat, self.key, house, self.key.beat_from_s);
         let stretch = first.until_s - first.beat_from_s;
         let at = |look: u32, of: u32| self.key.beat_from_s + stretch * f64::from(look) / f64::from(of);
         for look in 0..=(if stretch > 0.0 { BODY_LOOKS } else { 0 }) {
-            let scene = scene_at(show, beat, self.key, frame, at(look, BODY_LOOKS));
+            let scene = scene_at(show, beat, self.key, house, at(look, BODY_LOOKS));
             let spots = scene.spots();
             // Arrows and tails, which turn quickly.
             for [a, b] in self.obstacles(&scene, &spots, &[]).pieces {
@@ -166,7 +170,7 @@ impl Layout {
         }
         let looks = if stretch > 0.0 { MARK_LOOKS } else { 0 };
         for look in 0..=looks {
-            let mut scene = scene_at(show, beat, self.key, frame, at(look, MARK_LOOKS));
+            let mut scene = scene_at(show, beat, self.key, house, at(look, MARK_LOOKS));
             compose::draw_marks(&mut scene, &self.foot);
             if look == looks {
                 for area in self.area_labels(&scene) {
@@ -268,7 +272,7 @@ impl Layout {
         &mut self,
         show: &Show,
         beat: &Beat,
-        frame: Frame,
+        house: House,
         t_s: f64,
     ) -> (&[Standing], &[Standing], f64) {
         let position =
@@ -279,7 +283,7 @@ impl Layout {
         let planned = index(self.planned_steps).max(self.steps.len()) + STEPS_PAST_PLAN;
         let wanted = (index(position) + 2).min(planned).min(MOST_STEPS);
         if self.steps.len() < wanted {
-            self.extend(show, beat, frame, wanted);
+            self.extend(show, beat, house, wanted);
         }
         let last = self.steps.len() - 1;
         let (a, b) = ((wanted - 2).min(last), (wanted - 1).min(last));
@@ -287,10 +291,10 @@ impl Layout {
         (&self.steps[a], &self.steps[b], share)
     }
 
-    fn extend(&mut self, show: &Show, beat: &Beat, frame: Frame, until: usize) {
+    fn extend(&mut self, show: &Show, beat: &Beat, house: House, until: usize) {
         let at = |layout: &Self, step: usize| {
             let t_s = layout.first_step_s + layout.step_s * to_real(step);
-            let scene = scene_at(show, beat, layout.key, frame, t_s);
+            let scene = scene_at(show, beat, layout.key, house, t_s);
             let spots = scene.spots();
             (layout.blocks(&scene, &spots), layout.obstacles(&scene, &spots, &layout.area_labels(&scene)))
         };
@@ -304,7 +308,8 @@ impl Layout {
                 break;
             };
             let before = self.steps.last().map_or(&[][..], Vec::as_slice);
-            let standings = labels::step(before, (&now.0, &now.1), (&soon.0, &soon.1), &self.clutter, &frame);
+            let standings =
+                labels::step(before, (&now.0, &now.1), (&soon.0, &soon.1), &self.clutter, &house.frame);
             self.steps.push(standings);
             ahead.push_back(soon);
         }

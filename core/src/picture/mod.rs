@@ -18,6 +18,7 @@ pub mod scene;
 pub mod type_metrics;
 pub mod view;
 pub mod wording;
+pub mod words;
 
 pub use compose::Composer;
 pub use list::*;
@@ -36,7 +37,7 @@ pub struct Screen {
 /// What the audience wants to see it like.
 #[derive(Debug, Clone, PartialEq, Eq, Default)]
 pub struct Options {
-    /// Language of captions, as a BCP 47 tag; empty: the scenario's own.
+    /// Language of captions, foot line and read-outs, as a BCP 47 tag; empty: the scenario's own.
     pub language: String,
     /// No moves between views: cross-fades instead.
     pub reduced_motion: bool,

@@ -6,6 +6,7 @@ use super::list::{Anchor, Colour, Item, Shape, Stroke, Tag};
 use super::sample::{Curve, Sample};
 use super::view::Camera;
 use super::wording::SpeedUnit;
+use super::words::Language;
 use super::{look, type_metrics};
 use crate::Vector3;
 use crate::scenario::{Beat, BodyId, Kind};
@@ -20,6 +21,15 @@ pub fn position(show: &Show, body: BodyId, t_s: f64) -> Vector3<f64> {
         .unwrap_or_else(Vector3::zeros)
 }
 
+/// What the frames of one window have in common.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct House {
+    /// Sizes.
+    pub frame: Frame,
+    /// The language of words and numbers.
+    pub language: &'static Language,
+}
+
 /// One frame in the making.
 #[derive(Debug)]
 pub struct Scene<'a> {
@@ -29,6 +39,8 @@ pub struct Scene<'a> {
     pub beat: &'a Beat,
     /// Sizes.
     pub frame: Frame,
+    /// The language of words and numbers.
+    pub language: &'static Language,
     /// The camera.
     pub camera: Camera,
     /// Model time.

@@ -5,6 +5,7 @@ use super::super::list::{Shape, Tag};
 use super::super::look;
 use super::super::scene::{Scene, stroke};
 use super::super::wording::LengthUnit;
+use super::super::words::fill;
 use super::conic::Osculating;
 use crate::scenario::BodyId;
 
@@ -25,14 +26,15 @@ pub fn of(scene: &Scene<'_>, body: BodyId, about: Option<BodyId>, in_au: bool) -
         return Vec::new();
     };
     let largest = conic.apoapsis_m().unwrap_or_else(|| conic.periapsis_m());
-    let lengths = [("closest", 1.0, Some(conic.periapsis_m())), ("farthest", -1.0, conic.apoapsis_m())];
+    let l = scene.language;
+    let lengths = [(l.closest, 1.0, Some(conic.periapsis_m())), (l.farthest, -1.0, conic.apoapsis_m())];
     lengths
         .into_iter()
-        .filter_map(|(word, side, distance)| {
+        .filter_map(|(phrase, side, distance)| {
             let distance = distance?;
             let at = scene.camera.project(conic.focus + conic.toward_periapsis * (side * distance));
             let unit = LengthUnit::upto(largest, in_au);
-            let words = format!("{word} {}", unit.say(distance, distance));
+            let words = fill(phrase, &unit.say(l, distance, distance));
             at.iter().all(|v| v.is_finite()).then_some(Apsis { body, at, words })
         })
         .collect()

@@ -55,11 +55,11 @@ pub fn areas_of(scene: &Scene<'_>) -> (Vec<Areas>, Option<&'static str>) {
     if largest <= 0.0 {
         return (Vec::new(), None);
     }
-    let (unit, words) = wording::area_unit(largest);
+    let (unit, words) = wording::area_unit(scene.language, largest);
     let sets = all.into_iter().zip(values).map(|(sectors, values)| {
         let texts = values.iter().enumerate().filter_map(|(index, area)| {
             let value = (*area)? / unit;
-            let text = wording::grouped(value, wording::decimals(value, 4));
+            let text = wording::grouped(scene.language, value, wording::decimals(value, 4));
             let width = type_metrics::width(&text, scene.frame.label, 600);
             Some((index, text, width))
         });

@@ -3,6 +3,8 @@ use super::super::super::fixture::{self, AU, DAY};
 use super::super::super::frame::Frame;
 use super::super::super::geometry::clip_piece;
 use super::super::super::layout::{LayoutKey, scene_at};
+use super::super::super::scene::House;
+use super::super::super::words::ENGLISH;
 use super::*;
 
 /// The fixture's comet at the far end of its way, where six sectors are needles.
@@ -25,7 +27,8 @@ fn all_areas_of_needles_are_seen_clear_of_each_other_of_the_tail_and_of_the_wind
         let frame = Frame::new(Screen { width_px: w, height_px: h, density: 1.0 });
         for step in 0..=20 {
             let t_s = planned.from_s + (planned.until_s - planned.from_s) * f64::from(step) / 20.0;
-            let scene = scene_at(&show, beat, key, frame, t_s);
+            let house = House { frame, language: &ENGLISH };
+            let scene = scene_at(&show, beat, key, house, t_s);
             let (mut sets, _) = areas_of(&scene);
             assert_eq!(sets.len(), 1);
             sets[0].settle(&scene, &[]);

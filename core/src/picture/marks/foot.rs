@@ -5,6 +5,7 @@ use super::super::list::{Anchor, Shape, Tag};
 use super::super::look;
 use super::super::scene::{Scene, Words, stroke};
 use super::super::wording::{self, Grain, LengthUnit};
+use super::super::words::fill;
 use super::arrow::{self, Kind};
 use crate::scenario::Mark;
 
@@ -24,6 +25,7 @@ pub struct Foot {
 /// The foot line, laid out: where it stands, so that others keep clear.
 pub fn draw(scene: &mut Scene<'_>, foot: &Foot, pace: f64, held: bool) -> Vec<Rect> {
     let mut taken = Vec::new();
+    let l = scene.language;
     let size = scene.frame.label;
     let (left, right) = (scene.frame.margin, scene.frame.width - scene.frame.margin);
     let lead = 1.3 * size;
@@ -36,13 +38,19 @@ pub fn draw(scene: &mut Scene<'_>, foot: &Foot, pace: f64, held: bool) -> Vec<Re
         let mut lines: Vec<String> = Vec::new();
         if date {
             let text = scene.show.scenario.date.map_or_else(
-                || wording::since_start(scene.t_s, foot.grain),
-                |d| wording::date(d.plus_s(scene.t_s), if held { foot.grain.min_day() } else { foot.grain }),
+                || wording::since_start(l, scene.t_s, foot.grain),
+                |d| {
+                    wording::date(
+                        l,
+                        d.plus_s(scene.t_s),
+                        if held { foot.grain.min_day() } else { foot.grain },
+                    )
+                },
             );
             lines.push(text);
         }
         if has_pace {
-            lines.push(wording::pace(if held { 0.0 } else { pace }));
+            lines.push(wording::pace(l, if held { 0.0 } else { pace }));
         }
         let mut y = base;
         for text in lines {
@@ -74,7 +82,7 @@ pub fn draw(scene: &mut Scene<'_>, foot: &Foot, pace: f64, held: bool) -> Vec<Re
         let most = 0.16 * scene.frame.width.max(scene.frame.height) / scene.camera.px_per_m;
         let unit = LengthUnit::upto(most, foot.in_au);
         let long_m = wording::round_below(most / unit.metres()) * unit.metres();
-        let (text, long) = (unit.say_round(long_m), long_m * scene.camera.px_per_m);
+        let (text, long) = (unit.say_round(l, long_m), long_m * scene.camera.px_per_m);
         let at = next(long + 0.6 * size + quiet(&text, size).width());
         taken.push(bar(scene, at, long, &text));
     }
@@ -86,7 +94,7 @@ pub fn draw(scene: &mut Scene<'_>, foot: &Foot, pace: f64, held: bool) -> Vec<Re
         }
     }
     if let Some(unit) = foot.area_words {
-        let text = format!("areas in {unit}");
+        let text = fill(l.areas_in, unit);
         let words = Words { text: &text, size, weight: 500, colour: look::LAMP };
         let at = next(words.width());
         taken.push(text_rect(at, words.width(), size));
@@ -121,11 +129,12 @@ fn bar(scene: &mut Scene<'_>, at: Px, long: f64, words: &str) -> Rect {
 
 /// Length of an arrow of a round size, px, and that size in words.
 fn arrow_key(scene: &Scene<'_>, kind: Kind, largest: f64) -> (f64, String) {
+    let l = scene.language;
     let (round, text) = match kind {
-        Kind::Velocity => arrow::speed_unit(scene).round_below(0.6 * largest),
+        Kind::Velocity => arrow::speed_unit(scene).round_below(l, 0.6 * largest),
         Kind::Gravity => {
             let round = wording::round_below(0.6 * largest);
-            (round, format!("pull of {}", wording::pull_round(round)))
+            (round, fill(l.pull_of, &wording::pull_round(l, round)))
         }
     };
     (round * arrow::scale(scene, largest), text)

@@ -2,6 +2,7 @@
 
 use super::super::scene::Scene;
 use super::super::wording::{self, LengthUnit};
+use super::super::words::fill;
 use super::conic::Osculating;
 use crate::scenario::{BodyId, Mark, Readout};
 
@@ -68,25 +69,25 @@ fn value(scene: &Scene<'_>, reading: &Reading, t_s: f64) -> Option<f64> {
 
 /// What a read-out says at the scene's instant; `None` where there is nothing to say.
 pub fn words(scene: &Scene<'_>, reading: &Reading, in_au: bool) -> Option<String> {
-    let largest = reading.largest;
+    let (largest, l) = (reading.largest, scene.language);
     match reading.what {
         Readout::Speed => {
-            Some(scene.speed_unit(reading.body).say(value(scene, reading, scene.t_s)?, largest))
+            Some(scene.speed_unit(reading.body).say(l, value(scene, reading, scene.t_s)?, largest))
         }
         Readout::Distance => {
             let unit = LengthUnit::upto(largest, in_au);
-            Some(unit.say(value(scene, reading, scene.t_s)?, largest))
+            Some(unit.say(l, value(scene, reading, scene.t_s)?, largest))
         }
         Readout::Height => {
             // A body at rest on the ground is at height 0, not at a rounding error below it.
             let height = value(scene, reading, scene.t_s)?;
             let height = if height.abs() < 1e-6 * largest.max(1.0) { 0.0 } else { height };
             let unit = LengthUnit::upto(largest, in_au);
-            Some(format!("{} up", unit.say(height, largest)))
+            Some(fill(l.up, &unit.say(l, height, largest)))
         }
         Readout::Period => {
             let conic = Osculating::of(scene, reading.body, reading.stated)?;
-            Some(conic.period_s().map_or_else(|| "never returns".into(), |p| wording::span(p, largest)))
+            Some(conic.period_s().map_or_else(|| l.never_returns.into(), |p| wording::span(l, p, largest)))
         }
     }
 }
