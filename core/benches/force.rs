@@ -17,11 +17,11 @@ fn main() {
 fn evaluate(bencher: Bencher<'_, '_>, names: &[&str], more: bool) {
     let mut initial = solar_system(names);
     if more {
-        initial.forces.relativity = Some(BodyId(0));
+        initial.forces.relativity = true;
         let pole = Vector3::z();
         initial.forces.oblate.push(Oblate { body: BodyId(3), j2: 1.0826e-3, radius_m: 6.378e6, pole });
     }
-    let field = Field::new(&initial);
+    let mut field = Field::new(&initial);
     let pos: Vec<f64> = initial.bodies.iter().flat_map(|body| <[f64; 3]>::from(body.pos)).collect();
     let vel: Vec<f64> = initial.bodies.iter().flat_map(|body| <[f64; 3]>::from(body.vel)).collect();
     let mut out = vec![0.0; pos.len()];

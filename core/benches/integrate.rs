@@ -2,7 +2,6 @@
 
 use divan::Bencher;
 use fallaround_core::ephemeris::{Propagation, states_at};
-use fallaround_core::scenario::BodyId;
 
 #[path = "common/solar_system.rs"]
 mod solar_system;
@@ -25,7 +24,7 @@ fn sun_and_planets_100_years(bencher: Bencher<'_, '_>) {
 #[divan::bench(sample_count = 5)]
 fn eleven_bodies_with_relativity_100_years(bencher: Bencher<'_, '_>) {
     let mut initial = solar_system(&[]);
-    initial.forces.relativity = Some(BodyId(0));
+    initial.forces.relativity = true;
     bencher.bench_local(|| states_at(divan::black_box(&initial), 100.0 * YEAR_S));
 }
 

@@ -12,7 +12,7 @@ fn main() {
     const YEAR_S: f64 = 365.25 * 86_400.0;
     let years = std::env::args().nth(1).and_then(|years| years.parse().ok()).unwrap_or(1000.0);
     let initial = solar_system::solar_system(&solar_system::PLANETS);
-    let field = Field::new(&initial);
+    let mut field = Field::new(&initial);
     let mut pos: Vec<f64> = initial.bodies.iter().flat_map(|body| <[f64; 3]>::from(body.pos)).collect();
     let mut vel: Vec<f64> = initial.bodies.iter().flat_map(|body| <[f64; 3]>::from(body.vel)).collect();
     let start = drift::energy(field.gms_m3_s2(), &pos, &vel);
@@ -20,7 +20,7 @@ fn main() {
     let (mut steps, mut next_year, mut largest) = (0_u32, 1.0, 0.0_f64);
     println!("{:>8} {:>10} {:>12} {:>12}", "years", "steps", "error", "largest");
     while next_year <= 1.001 * years {
-        if radau.solve(&field).is_err() {
+        if radau.solve(&mut field).is_err() {
             println!("the step became too small");
             return;
         }

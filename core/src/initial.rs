@@ -36,8 +36,8 @@ pub struct InitialBody {
 /// The forces beyond Newton's attraction of points.
 #[derive(Debug, Clone, PartialEq, Default)]
 pub struct Forces {
-    /// The body whose first post-Newtonian term acts on all others.
-    pub relativity: Option<BodyId>,
+    /// Whether the massive bodies act on one another, and on tracers, by relativity to first post-Newtonian order.
+    pub relativity: bool,
     /// Oblate bodies.
     pub oblate: Vec<Oblate>,
 }

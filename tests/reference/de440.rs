@@ -57,9 +57,9 @@ fn errors(got: &[Vector3<f64>], want: &[State]) -> (f64, f64) {
 }
 
 /// Required: planets 0.02 arcsec, the Moon 30 arcsec. What the model misses in at most 2.5 years from a published state is less: for the
-/// planets the asteroids and the masses in the post-Newtonian terms; for the Moon these terms above all, 2 arcsec a year.
+/// planets the asteroids; for the Moon the tides and the figures of both bodies beyond the Earth's J2.
 const PLANETS_ARCSEC: f64 = 0.006;
-const MOON_ARCSEC: f64 = 8.0;
+const MOON_ARCSEC: f64 = 1.5;
 
 #[test]
 fn real_bodies_stand_where_de440_has_them() {
@@ -80,18 +80,18 @@ fn real_bodies_stand_where_de440_has_them() {
         assert!(moon < MOON_ARCSEC, "JD {}: the Moon {moon} arcsec off", date.at.tdb_jd());
         for (body, want) in initial.bodies.iter().zip(&date.states) {
             let (got, want) = (body.vel - initial.bodies[SUN].vel, want.vel - date.states[SUN].vel);
-            // 8 arcsec of the Moon's 1 km/s about the Earth.
-            assert!((got - want).norm() < 0.04, "{}: {} m/s off", body.name, (got - want).norm());
+            // 1.5 arcsec of the Moon's 1 km/s about the Earth, and as much again for where it is on its ellipse.
+            assert!((got - want).norm() < 0.015, "{}: {} m/s off", body.name, (got - want).norm());
         }
     }
 }
 
-/// What a model of 11 points with the Sun's 1PN term and Earth's J2 reaches over 50 years from J2000, as an independent
-/// implementation measured it against DE440 (angle seen from Earth, arcsec), and the factor allowed on it.
-const SUN_TO_MARS_ARCSEC: f64 = 0.013;
-const JUPITER_TO_PLUTO_ARCSEC: f64 = 0.010;
-const MOON_50_YEARS_ARCSEC: f64 = 99.0;
-const FACTOR: f64 = 1.5;
+/// What a model of 11 points with relativity between all of them and Earth's J2 reaches over 50 years from J2000, as an
+/// independent implementation measured it against DE440 (angle seen from Earth, arcsec), and the factor allowed on it.
+const SUN_TO_MARS_ARCSEC: f64 = 0.015;
+const JUPITER_TO_PLUTO_ARCSEC: f64 = 0.009;
+const MOON_50_YEARS_ARCSEC: f64 = 16.0;
+const FACTOR: f64 = 1.2;
 
 #[test]
 fn from_j2000_alone_fifty_years_lead_to_de440() {

@@ -119,7 +119,7 @@ impl Run {
 
     /// One step, cut short by the first contact in it.
     pub(super) fn step(&mut self, initial: &InitialState) -> Result<Step, StepTooSmall> {
-        self.radau.solve(&self.field)?;
+        self.radau.solve(&mut self.field)?;
         for (place, numbers) in self.moving.chunks_exact_mut(PER_BODY).enumerate() {
             numbers.copy_from_slice(&self.radau.numbers(place));
         }

@@ -38,6 +38,9 @@ const MOST_ROUNDS: usize = 12;
 /// Relative change of the acceleration, in a further round, that would be lost in roundings.
 const CONVERGED: f64 = 1e-16;
 
+/// The share of a change of the last coefficient that velocities change by, in units of the step; places change by less.
+const LAST_IN_VELOCITY: f64 = 1.0 / 8.0;
+
 /// Accelerations below this part of the largest are taken as made of roundings alone (a body held between equal pulls), and set
 /// no step.
 const NOISE: f64 = 1e-11;
@@ -122,7 +125,7 @@ impl Radau {
     ///
     /// # Errors
     /// [`StepTooSmall`] when it would have to be shorter than time can be told apart.
-    pub fn solve(&mut self, field: &Field) -> Result<(), StepTooSmall> {
+    pub fn solve(&mut self, field: &mut Field) -> Result<(), StepTooSmall> {
         debug_assert_eq!(field.bodies(), self.bodies);
         if !self.acc_known {
             self.start_accelerations(field);
@@ -201,7 +204,7 @@ impl Radau {
         numbers
     }
 
-    fn start_accelerations(&mut self, field: &Field) {
+    fn start_accelerations(&mut self, field: &mut Field) {
         for (i, block) in self.blocks.iter().enumerate() {
             self.pos[i * LANES..][..LANES].copy_from_slice(&block.pos);
             self.vel[i * LANES..][..LANES].copy_from_slice(&block.vel);
@@ -250,13 +253,15 @@ impl Radau {
     }
 
     /// Predicts and corrects until the polynomials stay as they are. False when a number is no longer finite.
-    fn iterate(&mut self, field: &Field) -> bool {
+    fn iterate(&mut self, field: &mut Field) -> bool {
         let mut last = f64::INFINITY;
+        // Forces so slight that the next change of the path changes them by roundings only are worked out no more.
+        let mut anew = true;
         for round in 0..MOST_ROUNDS {
             let (mut changed, mut largest) = (0.0_f64, 0.0_f64);
             for node in 1..8 {
-                self.place(node, field.needs_velocities());
-                field.accelerations(&self.pos, &self.vel, &mut self.acc);
+                self.place(node, anew && field.needs_velocities());
+                field.accelerations_at(node, anew, &self.pos, &self.vel, &mut self.acc);
                 let (change, acc) = match node {
                     1 => self.correct::<1>(),
                     2 => self.correct::<2>(),
@@ -278,6 +283,9 @@ impl Radau {
                 return true;
             }
             last = changed;
+            if anew && field.slight_share() * LAST_IN_VELOCITY * changed <= CONVERGED * largest {
+                anew = false;
+            }
         }
         true
     }

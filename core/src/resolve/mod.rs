@@ -72,7 +72,7 @@ pub fn resolve(scenario: &Scenario) -> Result<InitialState, Vec<Problem>> {
         problems.sort_by_key(|problem| problem.place);
         return Err(problems);
     }
-    let forces = forces(scenario, &initial, &reals);
+    let forces = forces(scenario, &reals);
     to_barycentre(&mut initial);
     Ok(InitialState { bodies: initial, listed: bodies.len(), forces })
 }
@@ -258,31 +258,17 @@ fn find_shared_places(initial: &[InitialBody], bodies: &[Body], problems: &mut V
     }
 }
 
-/// The forces beyond Newton's: those that real bodies bring along, unless `[physics]` says otherwise. Asked for without
-/// real bodies, relativity is that of the body with the largest GM. Oblateness is the Earth's alone.
-fn forces(scenario: &Scenario, initial: &[InitialBody], reals: &[Option<RealBody>]) -> Forces {
+/// The forces beyond Newton's: those that real bodies bring along, unless `[physics]` says otherwise. Oblateness is the
+/// Earth's alone.
+fn forces(scenario: &Scenario, reals: &[Option<RealBody>]) -> Forces {
     let find = |real: RealBody| reals.iter().position(|r| *r == Some(real)).map(BodyId);
     let any_real = reals.iter().any(Option::is_some);
-    let relativity = match scenario.physics.relativity {
-        Some(false) => None,
-        None if !any_real => None,
-        _ => find(RealBody::Sun).or_else(|| heaviest(initial)),
-    };
+    let relativity = scenario.physics.relativity.unwrap_or(any_real);
     let oblate = match (scenario.physics.oblateness, find(RealBody::Earth), scenario.date) {
         (Some(false), ..) | (_, None, _) | (_, _, None) => Vec::new(),
         (_, Some(earth), Some(date)) => vec![real::earth_bulge(earth, date)],
     };
     Forces { relativity, oblate }
-}
-
-fn heaviest(initial: &[InitialBody]) -> Option<BodyId> {
-    let mut best: Option<usize> = None;
-    for (index, body) in initial.iter().enumerate() {
-        if body.gm_m3_s2 > best.map_or(0.0, |b| initial[b].gm_m3_s2) {
-            best = Some(index);
-        }
-    }
-    best.map(BodyId)
 }
 
 /// Moves everything so that the centre of mass of the massive bodies is at rest at the origin.

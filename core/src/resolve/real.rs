@@ -81,8 +81,8 @@ pub fn earth_bulge(earth: BodyId, at: Epoch) -> Oblate {
     Oblate { body: earth, j2: c::EARTH_J2, radius_m: c::EARTH_J2_RADIUS_M, pole }
 }
 
-/// The solar system as [`states`] integrates it: all eleven bodies in the order of [`ALL`], with the Sun's first
-/// post-Newtonian term and Earth's bulge. `states` are those at the instant `at`, ecliptic, m and m/s.
+/// The solar system as [`states`] integrates it: all eleven bodies in the order of [`ALL`], with
+/// relativity between all of them and Earth's bulge. `states` are those at the instant `at`, ecliptic, m and m/s.
 pub fn system(states: &[State; 11], at: Epoch) -> InitialState {
     let bodies = ALL.iter().zip(states).map(|(&body, state)| {
         let facts = facts(body);
@@ -103,7 +103,7 @@ pub fn system(states: &[State; 11], at: Epoch) -> InitialState {
     InitialState {
         bodies: bodies.collect(),
         listed: ALL.len(),
-        forces: Forces { relativity: Some(SUN), oblate: vec![earth_bulge(EARTH, at)] },
+        forces: Forces { relativity: true, oblate: vec![earth_bulge(EARTH, at)] },
     }
 }
 

@@ -64,7 +64,7 @@ pub const PHYSICS: Section = Section {
             "relativity",
             "true or false",
             "true",
-            "the Sun's first post-Newtonian term; on with real bodies",
+            "first post-Newtonian relativity between all bodies; on with real bodies",
         ),
         key("oblateness", "true or false", "true", "the Earth's J2; on with real bodies"),
         key(

@@ -77,7 +77,7 @@ fn check(path: &Path, today: &Today) -> Result<Report> {
 fn energy_error(show: &Show) -> Option<f64> {
     let forces = &show.initial.forces;
     let eph = &show.ephemeris;
-    if forces.relativity.is_some() || !forces.oblate.is_empty() || !eph.contacts().is_empty() {
+    if forces.relativity || !forces.oblate.is_empty() || !eph.contacts().is_empty() {
         return None;
     }
     let gms: Vec<f64> = show.initial.bodies.iter().map(|body| body.gm_m3_s2).collect();

@@ -7,6 +7,7 @@ use crate::scenario::{BodyId, Surface};
 
 mod contacts;
 mod orbits;
+mod relativity;
 
 /// A point.
 fn body(gm_m3_s2: f64, pos: [f64; 3], vel: [f64; 3]) -> InitialBody {

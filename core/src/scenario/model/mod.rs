@@ -39,7 +39,7 @@ pub struct Scenario {
 /// `[physics]`. `None` leaves the choice to what the bodies bring along.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
 pub struct Physics {
-    /// First post-Newtonian term; on by itself where a body is `real`.
+    /// First post-Newtonian relativity between all bodies; on by itself where a body is `real`.
     pub relativity: Option<bool>,
     /// Oblateness (J2) of the Earth; on by itself where a body is `real`.
     pub oblateness: Option<bool>,
