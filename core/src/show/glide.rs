@@ -58,9 +58,10 @@ impl Glide {
 
     /// Lets show time pass; what is left of it when the glide is over, else 0.
     pub(super) fn advance(&mut self, elapsed_s: f64) -> f64 {
-        let left_s = (self.gone_s + elapsed_s - self.lasts_s).max(0.0);
-        self.gone_s += elapsed_s - left_s;
-        left_s
+        let gone_s = self.gone_s + elapsed_s;
+        // Arriving is set, not added up to: a sum could stay one rounding short of the end for ever.
+        self.gone_s = gone_s.min(self.lasts_s);
+        (gone_s - self.lasts_s).max(0.0)
     }
 
     /// Whether it has arrived.
@@ -140,6 +141,20 @@ mod tests {
             prop_assert!(glide.over());
             prop_assert!((glide.model_s() - from - way).abs() < 1e-6);
             prop_assert!((left - (4.0 - glide.lasts_s)).abs() < 1e-9);
+        }
+    }
+
+    #[test]
+    fn a_glide_ends_however_its_time_is_parted() {
+        for parts in 1..5000 {
+            let mut glide = Glide::between(0.0, 1.0, [0.0, 0.0], 1.0, 0.0).unwrap();
+            let frame_s = 1.3 / f64::from(parts);
+            let mut frames = 0;
+            while !glide.over() {
+                glide.advance(frame_s);
+                frames += 1;
+                assert!(frames <= parts, "still gliding after {frames} frames of {frame_s} s");
+            }
         }
     }
 
