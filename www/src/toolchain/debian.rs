@@ -16,19 +16,26 @@ use crate::child;
 
 /// The packages asked for; what they depend on comes along. The linker is added when its version is known.
 const WANTED: [&str; 2] = ["rustc-web", "rust-web-src"];
+/// The folder in the cache.
+const FOLDER: &str = "toolchain";
 /// Needed by the native build as well: whoever runs this program has them.
 const AT_HAND: [&str; 4] = ["gcc", "libc-dev", "binutils", "libc6"];
 
-/// The compiler (a wrapper) and the linker; from the cache if they have been unpacked before.
+/// The compiler (a wrapper) and the linker that an earlier start unpacked.
+///
+/// # Errors
+/// When there are none.
+pub(super) fn unpacked() -> Result<(PathBuf, PathBuf)> {
+    parts(&cache()?.join(FOLDER))
+}
+
+/// The compiler (a wrapper) and the linker, unpacked into the cache.
 ///
 /// # Errors
 /// When this isn't Debian, the packages can't be fetched, or they don't hold what they should.
 pub(super) fn obtain() -> Result<(PathBuf, PathBuf)> {
     let cache = cache()?;
-    let unpacked = cache.join("toolchain");
-    if let Ok(found) = parts(&unpacked) {
-        return Ok(found);
-    }
+    let unpacked = cache.join(FOLDER);
     for tool in ["apt-get", "apt-cache", "dpkg", "dpkg-query"] {
         ensure!(
             child::answer(Command::new(tool).arg("--version")).is_some(),

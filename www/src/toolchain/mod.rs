@@ -41,6 +41,10 @@ pub(crate) fn obtain() -> Result<Toolchain> {
     if installed() {
         return Ok(Toolchain::AtHand);
     }
+    // Unpacked at an earlier start: nothing is asked of the network again.
+    if let Ok((rustc, linker)) = debian::unpacked() {
+        return Ok(Toolchain::Apart { rustc, linker });
+    }
     eprintln!("The {TARGET} target is needed to build the app, and is not installed.");
     let mut tried = vec!["it is not among the installed targets".to_owned()];
     match add_by_rustup() {
