@@ -301,15 +301,17 @@ impl Clock {
         if self.since_cut_s > UNDO_S {
             self.undo = None;
         }
-        let mut left_s = elapsed_s;
+        let flow_s = self.flow(elapsed_s);
+        let mut left_s = flow_s;
         if let Some(glide) = &mut self.glide {
-            left_s = glide.advance(left_s);
+            // A hold holds a glide too; but a veil is never left down, and the way back to the start is gone before the show waits.
+            left_s = glide.advance(if glide.veiled() || self.waiting { elapsed_s } else { flow_s });
             if !glide.over() {
                 return;
             }
             self.glide = None;
         }
-        self.run(plan, left_s);
+        self.beat_s += left_s.min(flow_s);
         // A beat that starts the next by itself hands over what is left of the time; each turn enters a later beat.
         while let Some(beat) = plan.beats.get(self.beat)
             && beat.then == Then::Next
@@ -327,35 +329,29 @@ impl Clock {
             };
             if self.glide.is_none_or(|glide| glide.over()) {
                 self.glide = None;
-                self.run(plan, left_s);
+                self.beat_s += left_s;
             }
             self.since_cut_s = over_s;
             self.lately.advance(over_s);
         }
     }
 
-    /// Beat time runs, at a rate that eases towards what is wanted. It stands where the ephemeris ends.
-    fn run(&mut self, plan: &Plan, elapsed_s: f64) {
+    /// Beat time that passes in an amount of show time, at a rate that eases towards what is wanted.
+    fn flow(&mut self, elapsed_s: f64) -> f64 {
         let wanted = self.wanted_rate();
         let slope = (wanted - self.rate_from) / HOLD_S;
         let ramp_s =
             if (wanted - self.rate).abs() > 0.0 && slope != 0.0 { (wanted - self.rate) / slope } else { 0.0 };
-        let mut beat_s = self.beat_s;
         if elapsed_s < ramp_s {
-            let rate = self.rate + slope * elapsed_s;
-            beat_s += 0.5 * (self.rate + rate) * elapsed_s;
-            self.rate = rate;
+            let before = self.rate;
+            self.rate += slope * elapsed_s;
+            0.5 * (before + self.rate) * elapsed_s
         } else {
-            beat_s += 0.5 * (self.rate + wanted) * ramp_s + wanted * (elapsed_s - ramp_s);
+            let passed_s = 0.5 * (self.rate + wanted) * ramp_s + wanted * (elapsed_s - ramp_s);
             self.rate = wanted;
             self.rate_from = wanted;
+            passed_s
         }
-        let model_s = self.pacing.model_s(beat_s);
-        let beyond = model_s > plan.covers_until_s || model_s < plan.covers_from_s;
-        if beyond && self.pacing.pace_at(beat_s) != 0.0 {
-            return;
-        }
-        self.beat_s = beat_s;
     }
 
     fn wanted_rate(&self) -> f64 {

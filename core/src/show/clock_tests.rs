@@ -180,6 +180,46 @@ fn a_beat_that_says_so_starts_the_next_by_itself_at_its_time() {
 }
 
 #[test]
+fn the_next_beat_starts_by_itself_also_where_the_ephemeris_ends_with_the_beat() {
+    let mut plan = plan();
+    plan.beats[4].until_s = 30.0 * DAY;
+    plan.beats[4].way = Way::Still;
+    plan.covers_until_s = 30.0 * DAY;
+    let mut clock = at(&plan, 3);
+    run(&mut clock, &plan, 40.0);
+    assert_eq!(clock.beat(), 4);
+}
+
+#[test]
+fn a_hold_holds_a_glide_too() {
+    let plan = plan();
+    let mut clock = at(&plan, 1);
+    run(&mut clock, &plan, 10.0);
+    clock.act(&plan, Action::Next);
+    run(&mut clock, &plan, 0.5);
+    assert!(clock.glide.is_some());
+    clock.act(&plan, Action::Hold);
+    run(&mut clock, &plan, 0.5);
+    let held = clock.moment(&plan).model_s;
+    run(&mut clock, &plan, 20.0);
+    assert!((clock.moment(&plan).model_s - held).abs() == 0.0 && held < 100.0 * DAY);
+    clock.act(&plan, Action::Hold);
+    run(&mut clock, &plan, 25.0);
+    assert!(clock.moment(&plan).model_s > 140.0 * DAY);
+}
+
+#[test]
+fn the_show_goes_back_to_its_start_and_waits_there() {
+    let plan = plan();
+    let mut clock = at(&plan, 2);
+    run(&mut clock, &plan, 10.0);
+    clock.act(&plan, Action::RestartShow);
+    run(&mut clock, &plan, 10.0);
+    let there = clock.moment(&plan);
+    assert!(there.model_s == 0.0 && there.veil == 0.0 && there.beat == 0 && clock.waiting());
+}
+
+#[test]
 fn the_last_beat_has_no_next_and_wrong_jumps_are_refused() {
     let plan = plan();
     let mut clock = at(&plan, 4);

@@ -64,6 +64,11 @@ impl Glide {
         (gone_s - self.lasts_s).max(0.0)
     }
 
+    /// Whether it changes over under a veil.
+    pub(super) const fn veiled(&self) -> bool {
+        self.veiled || self.first_veil > 0.0
+    }
+
     /// Whether it has arrived.
     pub(super) fn over(&self) -> bool {
         self.gone_s >= self.lasts_s
