@@ -100,6 +100,10 @@ const PLACES: [Px; 8] = [
 ];
 /// The place inside a large disc.
 const INSIDE: usize = PLACES.len();
+/// The places in the order in which they lie round the body.
+const ROUND: [usize; 8] = [0, 1, 7, 4, 3, 5, 6, 2];
+/// A place that costs as much is covered, or nearly.
+const COVERED: f64 = 85.0;
 
 impl Block {
     /// Width and height of its box, px.
@@ -175,6 +179,7 @@ pub fn step(
         let old = before.iter().find(|s| s.key == block.key);
         let mut best: Option<(usize, f64, Px)> = None;
         let mut kept: Option<(usize, f64, Px)> = None;
+        let mut all: [Option<(f64, Px)>; PLACES.len()] = [None; PLACES.len()];
         for place in [INSIDE].into_iter().chain(0..INSIDE) {
             let Some(offset) = block.offset(place, frame) else {
                 continue;
@@ -190,6 +195,9 @@ pub fn step(
             // A short way is better than one across its own body.
             cost += old.map_or(0.0, |o| 0.8 * length(between(o.offset, offset)) / frame.label);
             cost += if place == INSIDE { -20.0 } else { 0.6 * count(place) };
+            if let Some(entry) = all.get_mut(place) {
+                *entry = Some((cost, offset));
+            }
             if old.is_some_and(|o| o.place == place) {
                 kept = Some((place, cost, offset));
             }
@@ -201,6 +209,9 @@ pub fn step(
             continue;
         };
         let (place, _, goal) = kept.filter(|k| k.1 <= best.1 + LOYALTY).unwrap_or(best);
+        let (place, goal) = old
+            .and_then(|o| stopover(o, place, &all, frame))
+            .map_or((place, goal), |place| (place, all[place].map_or(goal, |a| a.1)));
         let lean_goal = lean(place);
         let covered = clearance(
             &ink_box([block.at[0] + goal[0], block.at[1] + goal[1]], block.size(frame), frame),
@@ -233,6 +244,31 @@ pub fn step(
         standings.push(Standing { key: block.key, place, offset, lean, opacity });
     }
     standings
+}
+
+/// Where a label goes first on its way to a place, so that it goes round its body and not across it: the place that it
+/// is bound for already, until it is near there, then the next one round. `None`: straight on.
+fn stopover(
+    old: &Standing,
+    place: usize,
+    all: &[Option<(f64, Px)>; PLACES.len()],
+    frame: &Frame,
+) -> Option<usize> {
+    let at = |place: usize| ROUND.iter().position(|p| *p == place);
+    let (from, to) = (at(old.place)?, at(place)?);
+    let free = |place: usize| all[place].filter(|a| a.0 < COVERED);
+    let ahead = (to + ROUND.len() - from) % ROUND.len();
+    if from == to || ahead == 1 || ahead == ROUND.len() - 1 {
+        return None;
+    }
+    let bound =
+        free(old.place).is_some_and(|(_, offset)| length(between(old.offset, offset)) > 0.5 * frame.label);
+    if bound {
+        return Some(old.place);
+    }
+    let (next, last) = (ROUND[(from + 1) % ROUND.len()], ROUND[(from + ROUND.len() - 1) % ROUND.len()]);
+    let ways = if 2 * ahead <= ROUND.len() { [next, last] } else { [last, next] };
+    ways.into_iter().find(|p| free(*p).is_some())
 }
 
 fn lean(place: usize) -> f64 {

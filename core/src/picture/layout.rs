@@ -165,6 +165,9 @@ impl Layout {
                 };
                 if block.radius < 2.0 * frame.label {
                     empty.mark_rect(&name, 3.0);
+                    // It should find room above or below, too.
+                    let room = Rect { top: name.top - 0.5 * h, bottom: name.bottom + 0.5 * h, ..name };
+                    empty.mark_rect(&room, 0.5);
                 }
             }
         }
