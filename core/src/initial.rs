@@ -1,7 +1,7 @@
 //! Where everything starts: what a scenario comes down to, and all that the integrator needs.
 
 use crate::Vector3;
-use crate::scenario::{BodyId, Surface};
+use crate::scenario::{BodyId, Change, Surface};
 
 /// Everything that the integrator needs. Barycentric: the centre of mass of all massive bodies is at rest at the origin.
 #[derive(Debug, Clone, PartialEq)]
@@ -12,6 +12,8 @@ pub struct InitialState {
     pub listed: usize,
     /// The forces beyond Newton's attraction of points.
     pub forces: Forces,
+    /// What is done to the bodies on the way, in the order of time. They act from time 0 on; going back, nothing changes.
+    pub changes: Vec<Change>,
 }
 
 /// One body at the start.

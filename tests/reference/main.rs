@@ -5,6 +5,7 @@
 
 mod apparitions;
 mod areas;
+mod changes;
 mod de440;
 mod energy;
 mod figure_eight;

@@ -1,7 +1,7 @@
 //! Parts of an ephemeris as one flat array of numbers, to be handed from one thread to another.
 
 use super::track::Track;
-use super::{Contact, Ephemeris, Outcome, PER_BODY};
+use super::{Contact, Ephemeris, Outcome, PER_BODY, Switch};
 use crate::scenario::BodyId;
 
 /// How far an ephemeris had grown: what a chunk starts from.
@@ -10,22 +10,25 @@ pub struct Mark {
     forward: usize,
     backward: usize,
     contacts: usize,
+    switches: usize,
 }
 
 /// What an ephemeris has grown by since a [`Mark`], bit for bit.
 ///
-/// The numbers: how many bodies; forward steps, backward steps and contacts of the mark; how many of each follow; GM of each
+/// The numbers: how many bodies; forward steps, backward steps, contacts and switches of the mark; how many of each follow; GM of each
 /// body at time 0; of the forward and then the backward steps all starts, all lengths, all polynomials; six numbers for each
-/// contact.
+/// contact, three for each switch.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Chunk {
     numbers: Vec<f64>,
 }
 
 /// Numbers before the GMs.
-const HEADER: usize = 7;
+const HEADER: usize = 9;
 /// Numbers of a contact.
 const PER_CONTACT: usize = 6;
+/// Numbers of a switch.
+const PER_SWITCH: usize = 3;
 
 /// Numbers are not a chunk, or not the one that comes next.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, thiserror::Error)]
@@ -60,7 +63,8 @@ impl Chunk {
         for (count, &number) in counts.iter_mut().zip(self.numbers.get(..HEADER)?) {
             *count = count_from(number)?;
         }
-        let [bodies, from_forward, from_backward, from_contacts, forward, backward, contacts] = counts;
+        let [bodies, mark @ .., forward, backward, contacts, switches] = counts;
+        let [from_forward, from_backward, from_contacts, from_switches] = mark;
         let width = bodies.checked_mul(PER_BODY)?.checked_add(2)?;
         let mut rest = &self.numbers[HEADER..];
         let mut take = |count: Option<usize>| {
@@ -69,13 +73,19 @@ impl Chunk {
             Some(part)
         };
         let sections = Sections {
-            mark: Mark { forward: from_forward, backward: from_backward, contacts: from_contacts },
+            mark: Mark {
+                forward: from_forward,
+                backward: from_backward,
+                contacts: from_contacts,
+                switches: from_switches,
+            },
             forward_steps: forward,
             backward_steps: backward,
             gms: take(Some(bodies))?,
             forward: take(forward.checked_mul(width))?,
             backward: take(backward.checked_mul(width))?,
             contacts: take(contacts.checked_mul(PER_CONTACT))?,
+            switches: take(switches.checked_mul(PER_SWITCH))?,
         };
         rest.is_empty().then_some(sections)
     }
@@ -89,26 +99,35 @@ struct Sections<'a> {
     forward: &'a [f64],
     backward: &'a [f64],
     contacts: &'a [f64],
+    switches: &'a [f64],
 }
 
 impl Ephemeris {
     /// How far it has grown.
     pub fn mark(&self) -> Mark {
-        Mark { forward: self.forward.len(), backward: self.backward.len(), contacts: self.contacts.len() }
+        Mark {
+            forward: self.forward.len(),
+            backward: self.backward.len(),
+            contacts: self.contacts.len(),
+            switches: self.switches.len(),
+        }
     }
 
     /// What it has grown by since a mark of its own; [`Mark::default`] for all of it.
     pub fn chunk_since(&self, mark: Mark) -> Chunk {
         let contacts = self.contacts.get(mark.contacts..).unwrap_or_default();
+        let switches = self.switches.get(mark.switches..).unwrap_or_default();
         let steps = |track: &Track, from: usize| track.len().saturating_sub(from);
         let counts = [
             self.bodies(),
             mark.forward,
             mark.backward,
             mark.contacts,
+            mark.switches,
             steps(&self.forward, mark.forward),
             steps(&self.backward, mark.backward),
             contacts.len(),
+            switches.len(),
         ];
         let mut numbers: Vec<f64> = counts.iter().map(|&count| number_from(count)).collect();
         numbers.extend_from_slice(&self.gms);
@@ -128,6 +147,10 @@ impl Ephemeris {
                 contact.onto_gm_m3_s2,
             ]);
         }
+        for switch in switches {
+            let on = if switch.on { 1.0 } else { 0.0 };
+            numbers.extend([switch.t_s, number_from(switch.body.0), on]);
+        }
         Chunk { numbers }
     }
 
@@ -144,15 +167,19 @@ impl Ephemeris {
         if parts.mark != self.mark() || !same(parts.gms, &self.gms) {
             return Err(ChunkError::OutOfOrder);
         }
+        let body = |number: f64| {
+            count_from(number).filter(|&body| body < parts.gms.len()).map(BodyId).ok_or(ChunkError::Malformed)
+        };
+        let mut switches = Vec::new();
+        for row in parts.switches.chunks_exact(PER_SWITCH) {
+            switches.push(Switch { t_s: row[0], body: body(row[1])?, on: row[2] > 0.0 });
+        }
         let mut contacts = Vec::new();
         for row in parts.contacts.chunks_exact(PER_CONTACT) {
-            let body = |number: f64| {
-                count_from(number).filter(|&body| body < parts.gms.len()).ok_or(ChunkError::Malformed)
-            };
             contacts.push(Contact {
                 t_s: row[0],
-                body: BodyId(body(row[1])?),
-                onto: BodyId(body(row[2])?),
+                body: body(row[1])?,
+                onto: body(row[2])?,
                 outcome: match count_from(row[3]) {
                     Some(0) => Outcome::Stopped,
                     Some(1) => Outcome::Bounced,
@@ -166,6 +193,7 @@ impl Ephemeris {
         self.forward.read(parts.forward_steps, parts.forward);
         self.backward.read(parts.backward_steps, parts.backward);
         self.contacts.extend(contacts);
+        self.switches.extend(switches);
         Ok(())
     }
 }
@@ -207,6 +235,7 @@ mod tests {
             speed_m_s: 0.1,
             onto_gm_m3_s2: 1.0,
         });
+        eph.push_switch(Switch { t_s: 2.5, body: BodyId(0), on: false });
         (eph, mark)
     }
 
@@ -225,6 +254,7 @@ mod tests {
         copy.append(&sent).unwrap();
         assert_eq!(bits(&copy), bits(&eph));
         assert_eq!(copy.contacts(), eph.contacts());
+        assert_eq!(copy.switches(), eph.switches());
         assert_eq!(copy.append(&sent), Err(ChunkError::OutOfOrder));
         assert_eq!(bits(&copy), bits(&eph), "a refused chunk leaves no trace");
     }
@@ -236,7 +266,7 @@ mod tests {
         for cut in [0, 3, HEADER, good.len() - 1] {
             assert_eq!(Chunk::from_numbers(good[..cut].to_vec()), Err(ChunkError::Malformed), "cut at {cut}");
         }
-        for (at, wrong) in [(0, -1.0), (4, f64::NAN), (4, 1e9), (6, 0.5)] {
+        for (at, wrong) in [(0, -1.0), (5, f64::NAN), (5, 1e9), (8, 0.5)] {
             let mut numbers = good.clone();
             numbers[at] = wrong;
             assert_eq!(Chunk::from_numbers(numbers), Err(ChunkError::Malformed), "{wrong} at {at}");

@@ -7,6 +7,7 @@
 use crate::Vector3;
 use crate::scenario::BodyId;
 
+mod changes;
 pub mod chunk;
 pub mod events;
 pub mod osculating;
@@ -18,6 +19,7 @@ mod touch;
 pub mod track;
 
 pub use crate::integrate::PER_BODY;
+pub use changes::Switch;
 pub use chunk::{Chunk, ChunkError, Mark};
 pub use propagation::{Propagation, Stopped, Why, states_at};
 pub use track::Track;
@@ -68,6 +70,7 @@ pub struct Ephemeris {
     forward: Track,
     backward: Track,
     contacts: Vec<Contact>,
+    switches: Vec<Switch>,
 }
 
 impl Ephemeris {
@@ -79,6 +82,7 @@ impl Ephemeris {
             forward: Track::new(n, 1.0),
             backward: Track::new(n, -1.0),
             contacts: Vec::new(),
+            switches: Vec::new(),
         }
     }
 
@@ -116,8 +120,13 @@ impl Ephemeris {
         Some(State { pos: a.pos - b.pos, vel: a.vel - b.vel })
     }
 
-    /// GM of a body at an instant, m³/s²: merges add to it, and leave 0 of what became part of another.
+    /// GM with which a body pulls at an instant, m³/s²: merges add to it, and leave 0 of what became part of another; it is 0
+    /// while its gravity is switched off.
     pub fn gm_m3_s2(&self, body: BodyId, t_s: f64) -> f64 {
+        let last = self.switches.iter().rfind(|switch| switch.body == body && switch.t_s <= t_s);
+        if last.is_some_and(|switch| !switch.on) {
+            return 0.0;
+        }
         let mut gm = self.gms.get(body.0).copied().unwrap_or(0.0);
         for contact in &self.contacts {
             let past = if contact.t_s >= 0.0 { contact.t_s <= t_s } else { contact.t_s >= t_s };
@@ -130,6 +139,11 @@ impl Ephemeris {
             }
         }
         gm
+    }
+
+    /// The gravity of bodies switched off and on, in the order of time.
+    pub fn switches(&self) -> &[Switch] {
+        &self.switches
     }
 
     /// The contacts, in the order in which the integration met them.
@@ -168,6 +182,11 @@ impl Ephemeris {
     /// Notes a contact.
     pub fn push_contact(&mut self, contact: Contact) {
         self.contacts.push(contact);
+    }
+
+    /// Notes that the gravity of a body was switched.
+    pub fn push_switch(&mut self, switch: Switch) {
+        self.switches.push(switch);
     }
 
     /// Memory held, bytes.

@@ -135,6 +135,9 @@ impl Propagation {
         if let Some(contact) = step.contact {
             self.ephemeris.push_contact(contact);
         }
+        for switch in step.switches {
+            self.ephemeris.push_switch(switch);
+        }
         Ok(())
     }
 }
@@ -153,7 +156,7 @@ pub fn states_at(initial: &InitialState, t_s: f64) -> Result<Vec<State>, Stopped
     let mut run = Run::without_contacts(initial, if t_s < 0.0 { -1.0 } else { 1.0 });
     loop {
         let step = run.step(initial).map_err(|_too_small| collapse(&run, initial))?;
-        if (step.start_s + step.step_s).abs() >= t_s.abs() {
+        if step.step_s != 0.0 && (step.start_s + step.step_s).abs() >= t_s.abs() {
             let h = (t_s - step.start_s) / step.step_s;
             return Ok(run.numbers().chunks_exact(PER_BODY).map(|n| evaluate(n, step.step_s, h)).collect());
         }

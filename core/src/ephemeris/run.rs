@@ -1,12 +1,13 @@
-//! The integration in one direction of time: steps, contacts, and what they change.
+//! The integration in one direction of time: steps, contacts, changes, and what these do to the bodies.
 
+use super::changes::added;
 use super::track::evaluate;
-use super::{Contact, Outcome, State, touch};
+use super::{Contact, Outcome, State, Switch, touch};
 use crate::Vector3;
 use crate::gravity::Field;
 use crate::initial::InitialState;
 use crate::integrate::{PER_BODY, Radau, StepTooSmall};
-use crate::scenario::{BodyId, Surface};
+use crate::scenario::{BodyId, ChangeKind, Kick, Surface};
 
 /// A rebound that brings a body back within this time is not seen any more, s.
 const SHORTEST_REBOUND_S: f64 = 0.01;
@@ -27,10 +28,11 @@ struct AtRest {
 
 /// What a step ended in.
 pub(super) struct Step {
-    /// Start and length, s; no length where a contact came at once.
+    /// Start and length, s; no length where a contact or a change came at once.
     pub(super) start_s: f64,
     pub(super) step_s: f64,
     pub(super) contact: Option<Contact>,
+    pub(super) switches: Vec<Switch>,
 }
 
 /// The integration in one direction of time.
@@ -41,6 +43,12 @@ pub(super) struct Run {
     at_rest: Vec<AtRest>,
     /// GM of every body, after merges.
     gms: Vec<f64>,
+    /// Whether the gravity of each body acts.
+    acts: Vec<bool>,
+    /// How many of the changes have been made.
+    changed: usize,
+    /// Whether bodies can touch.
+    solid: bool,
     /// Pairs of places in `free` that can touch, with the distance at which they do.
     pairs: Vec<(usize, usize, f64)>,
     field: Field,
@@ -63,6 +71,9 @@ impl Run {
             free: (0..n).collect(),
             at_rest: Vec::new(),
             gms,
+            acts: vec![true; n],
+            changed: if direction < 0.0 { initial.changes.len() } else { 0 },
+            solid: true,
             pairs: Vec::new(),
             field: Field::new(initial),
             radau: Radau::new(0.0, &[], &[], first_s),
@@ -77,6 +88,7 @@ impl Run {
     /// Without contacts: every body goes through every other.
     pub(super) fn without_contacts(initial: &InitialState, direction: f64) -> Self {
         let mut run = Self::new(initial, direction);
+        run.solid = false;
         run.pairs.clear();
         run
     }
@@ -96,17 +108,21 @@ impl Run {
         let pos: Vec<f64> = states.iter().flat_map(|s| <[f64; 3]>::from(s.pos)).collect();
         let vel: Vec<f64> = states.iter().flat_map(|s| <[f64; 3]>::from(s.vel)).collect();
         self.radau = Radau::new(t_s, &pos, &vel, first_step_s);
+        let pull = |body: usize| if self.acts[body] { self.gms[body] } else { 0.0 };
         self.field =
-            Field::of(self.free.iter().map(|&body| self.gms[body]).collect(), &initial.forces, &self.free);
+            Field::of(self.free.iter().map(|&body| pull(body)).collect(), &initial.forces, &self.free);
         for rest in &self.at_rest {
             if let Some(host) = self.free.iter().position(|&body| body == rest.host)
-                && self.gms[rest.body] != 0.0
+                && pull(rest.body) != 0.0
             {
-                self.field.rest(host, rest.offset.into(), self.gms[rest.body]);
+                self.field.rest(host, rest.offset.into(), pull(rest.body));
             }
         }
         self.moving.resize(self.free.len() * PER_BODY, 0.0);
         self.pairs.clear();
+        if !self.solid {
+            return;
+        }
         for i in 0..self.free.len() {
             for j in i + 1..self.free.len() {
                 let radius_m = initial.bodies[self.free[i]].radius_m + initial.bodies[self.free[j]].radius_m;
@@ -117,29 +133,103 @@ impl Run {
         }
     }
 
-    /// One step, cut short by the first contact in it.
+    /// One step, cut short by the first contact or change in it.
     pub(super) fn step(&mut self, initial: &InitialState) -> Result<Step, StepTooSmall> {
+        let start_s = self.radau.t_s();
+        let change_s = initial.changes.get(self.changed).map(|change| change.at.s());
+        if let Some(t_s) = change_s.filter(|&t_s| t_s <= start_s) {
+            let switches = self.change(initial, t_s, self.states(), self.radau.step_s());
+            return Ok(Step { start_s, step_s: 0.0, contact: None, switches });
+        }
         self.radau.solve(&mut self.field)?;
         for (place, numbers) in self.moving.chunks_exact_mut(PER_BODY).enumerate() {
             numbers.copy_from_slice(&self.radau.numbers(place));
         }
-        let (start_s, whole_s) = (self.radau.t_s(), self.radau.step_s());
-        let Some((i, j, h)) = self.first_touch(whole_s) else {
-            self.spread();
-            self.radau.finish();
-            return Ok(Step { start_s, step_s: whole_s, contact: None });
+        let whole_s = self.radau.step_s();
+        let touch = self.first_touch(whole_s).map(|(i, j, h)| (i, j, start_s + h * whole_s));
+        // A contact at the very instant of a change comes first: it belongs to what was before.
+        let touch = touch.filter(|&(_, _, t_s)| change_s.is_none_or(|change_s| t_s <= change_s));
+        let Some((i, j, t_s)) = touch else {
+            let Some(change_s) = change_s.filter(|&change_s| change_s < start_s + whole_s) else {
+                self.spread();
+                self.radau.finish();
+                return Ok(Step { start_s, step_s: whole_s, contact: None, switches: Vec::new() });
+            };
+            let step_s = change_s - start_s;
+            let states = self.cut(whole_s, step_s / whole_s);
+            let switches = self.change(initial, change_s, states, whole_s);
+            return Ok(Step { start_s, step_s, contact: None, switches });
         };
-        let t_s = start_s + h * whole_s;
         let step_s = t_s - start_s;
-        let h = step_s / whole_s;
-        let mut states: Vec<State> =
-            self.moving.chunks_exact(PER_BODY).map(|n| evaluate(n, whole_s, h)).collect();
-        shorten(&mut self.moving, h);
-        self.spread();
+        let mut states = self.cut(whole_s, step_s / whole_s);
         let mut contact = self.collide(initial, i, j, &mut states);
         contact.t_s = if whole_s < 0.0 && t_s >= 0.0 { JUST_BEFORE_START_S } else { t_s };
         self.set_off(initial, t_s, &states, whole_s);
-        Ok(Step { start_s, step_s, contact: Some(contact) })
+        Ok(Step { start_s, step_s, contact: Some(contact), switches: Vec::new() })
+    }
+
+    /// Ends the step at a part of it, and gives the states there.
+    fn cut(&mut self, whole_s: f64, h: f64) -> Vec<State> {
+        let states = self.moving.chunks_exact(PER_BODY).map(|n| evaluate(n, whole_s, h)).collect();
+        shorten(&mut self.moving, h);
+        self.spread();
+        states
+    }
+
+    /// States of the free bodies where the integration stands.
+    fn states(&self) -> Vec<State> {
+        let n = 3 * self.free.len();
+        let (mut pos, mut vel) = (vec![0.0; n], vec![0.0; n]);
+        self.radau.state(&mut pos, &mut vel);
+        let vector = |row: &[f64]| Vector3::new(row[0], row[1], row[2]);
+        let both = pos.chunks_exact(3).zip(vel.chunks_exact(3));
+        both.map(|(x, v)| State { pos: vector(x), vel: vector(v) }).collect()
+    }
+
+    /// Makes all changes up to an instant, from states of the free bodies there, and sets off anew.
+    fn change(
+        &mut self,
+        initial: &InitialState,
+        t_s: f64,
+        mut states: Vec<State>,
+        step_s: f64,
+    ) -> Vec<Switch> {
+        let mut switches = Vec::new();
+        while let Some(change) = initial.changes.get(self.changed).filter(|change| change.at.s() <= t_s) {
+            self.changed += 1;
+            match &change.what {
+                ChangeKind::Gravity { on } => {
+                    self.acts[change.body.0] = *on;
+                    switches.push(Switch { t_s, body: change.body, on: *on });
+                }
+                ChangeKind::Kick(kick) => {
+                    let about = match kick {
+                        Kick::Along { about, .. } => about.or(initial.bodies[change.body.0].primary),
+                        Kick::By(_) => None,
+                    };
+                    let still = State { pos: Vector3::zeros(), vel: Vector3::zeros() };
+                    let from = about.map_or(still, |about| self.state_among(about.0, &states));
+                    if let Some(place) = self.free.iter().position(|&body| body == change.body.0) {
+                        let State { pos, vel } = states[place];
+                        states[place].vel += added(kick, &State { pos: pos - from.pos, vel: vel - from.vel });
+                    }
+                }
+            }
+        }
+        let gms: Vec<f64> = self.free.iter().map(|&body| self.gms[body]).collect();
+        let next_s = if step_s == 0.0 { first_step_s(&gms, &states) } else { step_s };
+        self.set_off(initial, t_s, &states, next_s);
+        switches
+    }
+
+    /// State of a body, given those of the free ones: of one at rest, from what it rests on.
+    fn state_among(&self, body: usize, states: &[State]) -> State {
+        let (mut host, mut offset) = (body, Vector3::zeros());
+        while let Some(rest) = self.at_rest.iter().find(|rest| rest.body == host) {
+            (host, offset) = (rest.host, offset + rest.offset);
+        }
+        let place = self.free.iter().position(|&free| free == host).unwrap_or_default();
+        State { pos: states[place].pos + offset, vel: states[place].vel }
     }
 
     /// The first touch of the step: places of the two bodies, and the part of the step.

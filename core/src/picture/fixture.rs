@@ -194,6 +194,7 @@ pub(crate) fn show(
             })
             .collect(),
         forces: Forces::default(),
+        changes: Vec::new(),
     };
     let (beats, planned): (Vec<_>, Vec<_>) = beats.into_iter().unzip();
     Show {
@@ -205,6 +206,7 @@ pub(crate) fn show(
             date: Epoch::parse_utc("2031-05-04T20:00:00Z").ok(),
             physics: Physics::default(),
             bodies: bodies.into_iter().map(|b| b.0).collect(),
+            changes: Vec::new(),
             beats,
         },
         ephemeris: ephemeris(gms, &paths, covers_s[0], covers_s[1], step_s),

@@ -104,6 +104,7 @@ pub fn system(states: &[State; 11], at: Epoch) -> InitialState {
         bodies: bodies.collect(),
         listed: ALL.len(),
         forces: Forces { relativity: true, oblate: vec![earth_bulge(EARTH, at)] },
+        changes: Vec::new(),
     }
 }
 

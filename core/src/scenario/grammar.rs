@@ -52,6 +52,12 @@ pub const TOP: Section = Section {
         key("date", "date, UTC", r#""2031-03-05T20:00:00Z""#, "the instant at which model time is 0"),
         key("physics", "table", "{ relativity = true }", "physics beyond Newton's attraction of points"),
         key("body", "tables", r#"[{ name = "Orla", mass = "1 Sun mass" }]"#, "the bodies, one [[body]] each"),
+        key(
+            "change",
+            "tables",
+            r#"[{ at = "120 d", gravity = "Orla", on = false }]"#,
+            "what is done to bodies on the way, one [[change]] each",
+        ),
         key("beat", "tables", r#"[{ title = "The long fall" }]"#, "the steps of the talk, one [[beat]] each"),
     ],
 };
@@ -198,6 +204,34 @@ pub const DROP: Section = Section {
         key("longitude", "angle", r#""10 deg""#, "longitude, to the east; 0 unless stated"),
     ],
 };
+
+/// `[[change]]`.
+pub const CHANGE: Section = Section {
+    what: "a change",
+    keys: &[
+        key("at", "time", r#""120 d""#, "when in model time, from the scenario's start"),
+        key("gravity", "body", r#""Orla""#, "the body whose gravity is switched"),
+        key("on", "true or false", "false", "with gravity: whether it acts from then on"),
+        key("kick", "body", r#""Ball""#, "the body whose velocity changes, unless it rests on another"),
+        key("speed", "speed", r#""200 m/s""#, "with kick: by how much; negative: backwards"),
+        key(
+            "along",
+            "velocity or outwards",
+            r#""velocity""#,
+            "with kick: where it is going, or away from the body that it is about; velocity unless stated",
+        ),
+        key("about", "body", r#""Orla""#, "with along: relative to which body; its primary unless stated"),
+        key(
+            "velocity",
+            "three speeds",
+            r#"["0 km/s", "1 km/s", "0 km/s"]"#,
+            "with kick: what is added, ecliptic axes, instead of speed",
+        ),
+    ],
+};
+
+/// The keys of a change that say what changes.
+pub const CHANGES: [&str; 2] = ["gravity", "kick"];
 
 /// `[[beat]]`.
 pub const BEAT: Section = Section {
@@ -350,5 +384,7 @@ pub const BODY_MARKS: [&str; 12] = [
 ];
 
 /// Every section, for the format's reference.
-pub const SECTIONS: [&Section; 13] =
-    [&TOP, &PHYSICS, &BODY, &ORBIT, &PLACE, &THROW, &DROP, &BEAT, &CLOCK, &START, &VIEW, &CENTRE, &MARK];
+pub const SECTIONS: [&Section; 14] = [
+    &TOP, &PHYSICS, &BODY, &ORBIT, &PLACE, &THROW, &DROP, &CHANGE, &BEAT, &CLOCK, &START, &VIEW, &CENTRE,
+    &MARK,
+];

@@ -35,7 +35,7 @@ fn orbiting(gm: f64, gm_own: f64, q: f64, e: f64, nu: f64) -> InitialBody {
 }
 
 fn state(bodies: Vec<InitialBody>) -> InitialState {
-    InitialState { listed: bodies.len(), bodies, forces: Forces::default() }
+    InitialState { listed: bodies.len(), bodies, forces: Forces::default(), changes: Vec::new() }
 }
 
 fn run(initial: &InitialState, from_s: f64, until_s: f64) -> Ephemeris {

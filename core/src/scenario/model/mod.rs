@@ -2,9 +2,11 @@
 //! and every choice is one of those the format knows.
 
 pub mod beat;
+pub mod change;
 pub mod form;
 
 pub use beat::*;
+pub use change::*;
 pub use form::*;
 
 use super::problem::Place;
@@ -32,6 +34,8 @@ pub struct Scenario {
     pub physics: Physics,
     /// The bodies, in the order of the file.
     pub bodies: Vec<Body>,
+    /// What is done to them on the way, in the order of the file.
+    pub changes: Vec<Change>,
     /// The beats, in the order of the talk.
     pub beats: Vec<Beat>,
 }

@@ -5,6 +5,7 @@
 
 mod beats;
 mod bodies;
+mod changes;
 mod clock;
 mod dates;
 mod events;
@@ -24,6 +25,8 @@ use super::reader::{Reading, Report};
 pub const MAX_BYTES: usize = 1_000_000;
 /// Most bodies in a scenario.
 pub const MAX_BODIES: usize = 200;
+/// Most changes in a scenario.
+pub const MAX_CHANGES: usize = 200;
 /// Most beats in a scenario.
 pub const MAX_BEATS: usize = 200;
 /// The version of the format that is read.
@@ -146,6 +149,10 @@ fn read(top: &Reading<'_>) -> Option<Scenario> {
     bodies::give_kinds(&mut read);
     bodies::give_colours(&mut read);
 
+    let mut sections = top.get("change").map(|field| field.tables(&grammar::CHANGE)).unwrap_or_default();
+    cut_at(&mut sections, MAX_CHANGES, "changes");
+    let changes = changes::read(&sections, &read, &names);
+
     let mut sections = top.get("beat").map(|field| field.tables(&grammar::BEAT)).unwrap_or_default();
     if top.get("beat").is_none() {
         top.report().note(&top.at, "the scenario has no beat", "add [[beat]] for each step of the talk");
@@ -162,6 +169,7 @@ fn read(top: &Reading<'_>) -> Option<Scenario> {
         date: date.flatten(),
         physics: physics.unwrap_or_default(),
         bodies: read.into_iter().map(|b| b.map(|b| b.body)).collect::<Option<_>>()?,
+        changes: changes?,
         beats: beats?,
     })
 }

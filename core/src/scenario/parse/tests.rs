@@ -73,6 +73,17 @@ fn every_key_of_the_format_is_read() {
     let scenario = good(FULL);
     assert!(scenario.bodies.iter().any(|b| b.surface == Surface::Bounce { restitution: 0.8 }));
     assert_eq!(scenario.physics.companions, Some(false));
+    let [off, kicked, pushed] = scenario.changes.as_slice() else { panic!("three changes") };
+    assert_eq!((off.body, off.what), (BodyId(0), ChangeKind::Gravity { on: false }));
+    assert!((off.at.s() - 120.0 * 86_400.0).abs() < 1e-6);
+    let kick = Kick::Along {
+        speed: Speed::from_m_s(-200.0),
+        direction: Direction::Outwards,
+        about: Some(BodyId(1)),
+    };
+    assert_eq!(kicked.what, ChangeKind::Kick(kick));
+    let by = [0.0, 1000.0, 0.0].map(Speed::from_m_s);
+    assert_eq!(pushed.what, ChangeKind::Kick(Kick::By(by)));
     let beats = &scenario.beats;
     assert_eq!(beats[0].clock, BeatClock::Hold { lasts: Span::from_s(30.0) });
     assert_eq!(
@@ -93,6 +104,31 @@ fn every_key_of_the_format_is_read() {
         for key in section.keys {
             assert!(FULL.contains(key.name), "{}: {}", section.what, key.name);
         }
+    }
+}
+
+#[test]
+fn changes_that_cannot_be_are_refused() {
+    let orbit =
+        "[[body]]\nname = \"B\"\norbit = { around = \"Orla\", periapsis = \"1 au\", eccentricity = 0 }\n";
+    for (change, says) in [
+        ("gravity = \"Orla\"\non = false", "a change needs its at"),
+        ("at = \"-3 d\"\ngravity = \"Orla\"\non = false", "it must not be negative"),
+        ("at = \"3 d\"", "nothing says what changes"),
+        ("at = \"3 d\"\ngravity = \"Orla\"", "a change needs its on"),
+        ("at = \"3 d\"\ngravity = \"B\"\non = true", "B has no gravity to switch"),
+        (
+            "at = \"3 d\"\ngravity = \"Orla\"\non = true\nspeed = \"1 m/s\"",
+            "speed does not belong to gravity",
+        ),
+        ("at = \"3 d\"\ngravity = \"Orla\"\nkick = \"B\"\non = true", "both gravity and kick"),
+        ("at = \"3 d\"\nkick = \"B\"", "a change needs its speed"),
+        ("at = \"3 d\"\nkick = \"B\"\nspeed = \"1 m/s\"\nabout = \"B\"", "relative to itself"),
+        ("at = \"3 d\"\nkick = \"B\"\nspeed = \"1 m/s\"\nalong = \"velosity\"", "perhaps \"velocity\""),
+        ("at = \"3 d\"\nkick = \"C\"\nspeed = \"1 m/s\"", "there is no body \"C\""),
+    ] {
+        let error = one_error(&with(&format!("{orbit}[[change]]\n{change}")));
+        assert!(error.contains(says), "{change}: {error}");
     }
 }
 

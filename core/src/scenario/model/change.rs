@@ -1,0 +1,56 @@
+//! Changes: what is done to the model on its way.
+
+use super::BodyId;
+use crate::scenario::problem::Place;
+use crate::units::{Span, Speed};
+
+/// Something done to a body at an instant of model time. All instants before it stay as they are, so going back in the show
+/// finds the past unchanged.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Change {
+    /// When, from the scenario's start; not negative.
+    pub at: Span,
+    /// To which body.
+    pub body: BodyId,
+    /// What.
+    pub what: ChangeKind,
+    /// Where its `[[change]]` stands in the text.
+    pub place: Place,
+}
+
+/// What is done to a body.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum ChangeKind {
+    /// Its gravity no longer acts on others, or does again. It keeps its mass, and feels theirs.
+    Gravity {
+        /// Whether it acts from then on.
+        on: bool,
+    },
+    /// Its velocity changes. A body that rests on another keeps its place.
+    Kick(Kick),
+}
+
+/// How a velocity changes.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum Kick {
+    /// By a velocity, ecliptic axes.
+    By([Speed; 3]),
+    /// By a speed in a direction that the body's motion gives.
+    Along {
+        /// How much; negative: the other way.
+        speed: Speed,
+        /// In which direction. A body to whose motion none belongs, such as one at rest along its velocity, is not changed.
+        direction: Direction,
+        /// Relative to which body; `None`: the primary, and the barycentre for a body without one.
+        about: Option<BodyId>,
+    },
+}
+
+/// A direction that a body's motion gives.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Direction {
+    /// Where it is going.
+    Velocity,
+    /// Away from what it is measured from.
+    Outwards,
+}
