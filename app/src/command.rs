@@ -25,6 +25,8 @@ pub enum Command {
     Jump(usize),
     /// Full screen, or out of it.
     FullScreen,
+    /// Captions in the next of the scenario's languages.
+    Language,
     /// The words to say, or no words.
     Words,
     /// The card with all keys.
@@ -57,6 +59,7 @@ pub const KEY_TABLE: &[KeyRow] = &[
     row("Q", "slower", Command::Slower, &["q"]),
     row("W", "faster", Command::Faster, &["w"]),
     row("F", "full screen", Command::FullScreen, &["f"]),
+    row("L", "captions in the next language", Command::Language, &["l"]),
     row("N", "words to say", Command::Words, &["n"]),
     row("tab, ?", "all keys", Command::Keys, &["tab", "?"]),
     row("escape", "leave the show, after asking", Command::Leave, &["escape"]),

@@ -48,6 +48,9 @@ pub struct Place {
     pub model: String,
     /// Whether the house was black.
     pub blackout: bool,
+    /// The language in which the audience read.
+    #[serde(default)]
+    pub language: Option<String>,
     /// Whether the words to say were open.
     pub words: bool,
     /// Whether it was being presented, rather than left.
@@ -180,6 +183,7 @@ mod tests {
             left_s: 320.0,
             model: "6 August 2031".into(),
             blackout: false,
+            language: Some("es".into()),
             words: false,
             presenting: true,
             kept_ms: 1e12,

@@ -372,6 +372,17 @@ impl State {
                 });
                 readout.into_iter().for_each(|readout| self.read_out(readout));
             }
+            Command::Language => {
+                let changed = self.with_house(|house| (house.change_language(), house.readout()));
+                match changed {
+                    Some((true, readout)) => {
+                        self.read_out(readout);
+                        self.keep_place();
+                    }
+                    Some((false, _)) => self.say("The captions have no other language"),
+                    None => self.say(NOT_READY),
+                }
+            }
             Command::FullScreen => dom::toggle_full_screen(),
             Command::Words => self.words.update(|open| *open = !*open),
             Command::Keys => {

@@ -1,21 +1,9 @@
 //! Times and counts as people read them.
 
+use fallaround_core::constants::DAY_S;
+use fallaround_core::picture::wording::{self, Grain};
+use fallaround_core::picture::words::Language;
 use fallaround_core::time::Epoch;
-
-const MONTHS: [&str; 12] = [
-    "January",
-    "February",
-    "March",
-    "April",
-    "May",
-    "June",
-    "July",
-    "August",
-    "September",
-    "October",
-    "November",
-    "December",
-];
 
 /// Show time as "9:40"; below zero as "0:00".
 pub fn minutes(seconds: f64) -> String {
@@ -29,17 +17,32 @@ pub fn length(seconds: f64) -> String {
     if whole_s < 60 { format!("{whole_s} s") } else { format!("{} min", (whole_s + 30) / 60) }
 }
 
-/// The model's date, or its day from the start where the scenario has no date.
+/// The model's date, or its time from the start where the scenario has no date, as the picture's foot line has it in English.
 pub fn model_time(date: Option<Epoch>, model_s: f64) -> String {
+    let english = Language::of("en");
     match date {
-        Some(start) => {
-            let day = start.plus_s(model_s).utc();
-            let month = MONTHS.get(usize::from(day.month).saturating_sub(1)).copied().unwrap_or_default();
-            format!("{} {month} {}", day.day, day.year)
-        }
-        None if model_s.abs() < 2.0 * 86_400.0 => format!("{:.1} hours in", model_s / 3_600.0),
-        None => format!("day {:.0}", (model_s / 86_400.0).floor()),
+        Some(start) => wording::date(english, start.plus_s(model_s), Grain::Day),
+        None if model_s.abs() < 2.0 * DAY_S => wording::since_start(english, model_s, Grain::Minute),
+        None => wording::since_start(english, model_s, Grain::Day),
     }
+}
+
+/// A language by its own name; its tag where that is not known.
+pub fn own_name(tag: &str) -> String {
+    let name = match tag.split('-').next().unwrap_or(tag) {
+        "en" => "English",
+        "es" => "Español",
+        "de" => "Deutsch",
+        "fr" => "Français",
+        "it" => "Italiano",
+        "pt" => "Português",
+        "nl" => "Nederlands",
+        "pl" => "Polski",
+        "cy" => "Cymraeg",
+        "ga" => "Gaeilge",
+        _ => tag,
+    };
+    name.to_owned()
 }
 
 /// Full seconds, none below zero.
@@ -71,7 +74,7 @@ mod tests {
     #[test]
     fn a_model_without_a_date_counts_its_days() {
         assert_eq!(model_time(None, 3.5 * 86_400.0), "day 3");
-        assert_eq!(model_time(None, 5_400.0), "1.5 hours in");
+        assert_eq!(model_time(None, 5_400.0), "1 h 30 min");
     }
 
     #[test]

@@ -34,6 +34,23 @@ pub fn Controls(
             </button>
         }
     };
+    // One button, as on a kiosk: it says the language that it brings, in that language.
+    let language = move || state.readout.with(|r| r.language_after.clone());
+    let language_button = move || {
+        view! {
+            <button
+                type="button"
+                class="press"
+                aria-label=move || format!("Captions in {}", language())
+                on:click=move |event| {
+                    state.ask_for(Command::Language);
+                    let_go(&event);
+                }
+            >
+                {language}
+            </button>
+        }
+    };
     let place = move || state.readout.with(|r| format!("Beat {} of {}", r.beat + 1, r.beats));
     let title = move || state.readout.with(|r| r.title.clone());
     let times = move || {
@@ -57,6 +74,9 @@ pub fn Controls(
                 {press(Command::RestartBeat, "Restart", false)}
                 {press(Command::Slower, "Slower", false)}
                 {press(Command::Faster, "Faster", false)}
+                <Show when=move || !language().is_empty()>
+                    {language_button()}
+                </Show>
                 {press(Command::Words, "Words to say", false)}
                 {press(Command::Keys, "All keys", false)}
             </div>

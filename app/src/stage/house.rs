@@ -32,6 +32,10 @@ pub struct House {
     /// 0 clear, 1 black.
     dark: f64,
     reduced_motion: bool,
+    /// The languages of its captions, the scenario's own first.
+    languages: Vec<String>,
+    /// The one in which the audience reads, by its place among them.
+    language: usize,
     last_ms: Option<f64>,
     composer: Option<(Screen, Composer)>,
     /// The beat whose successor has been prepared.
@@ -49,6 +53,9 @@ impl House {
             None => Clock::new(&show.plan),
         };
         let blackout = at.is_some_and(|place| place.blackout);
+        let languages = show.scenario.languages();
+        let kept = at.and_then(|place| place.language.as_ref());
+        let language = languages.iter().position(|tag| Some(tag) == kept).unwrap_or(0);
         Self {
             show,
             source,
@@ -57,6 +64,8 @@ impl House {
             blackout,
             dark: if blackout { 1.0 } else { 0.0 },
             reduced_motion: false,
+            languages,
+            language,
             last_ms: None,
             composer: None,
             prepared: None,
@@ -92,6 +101,27 @@ impl House {
         self.blackout
     }
 
+    /// The language in which the audience reads, as a BCP 47 tag.
+    fn language(&self) -> &str {
+        self.languages.get(self.language).map_or(self.show.scenario.language.as_str(), String::as_str)
+    }
+
+    /// The language after that one, where the captions have more than one.
+    fn language_after(&self) -> Option<&str> {
+        let after = (self.language + 1) % self.languages.len().max(1);
+        (after != self.language).then(|| self.languages.get(after).map(String::as_str)).flatten()
+    }
+
+    /// On to the next language of the captions; whether there is one.
+    pub fn change_language(&mut self) -> bool {
+        let more = self.language_after().is_some();
+        if more {
+            self.language = (self.language + 1) % self.languages.len();
+            self.composer = None;
+        }
+        more
+    }
+
     /// The clock.
     pub const fn clock(&self) -> &Clock {
         &self.clock
@@ -107,7 +137,7 @@ impl House {
 
     /// What people read of it now.
     pub fn readout(&self) -> Readout {
-        Readout::of(&self.show, &self.clock, self.blackout)
+        Readout::of(&self.show, &self.clock, self.blackout, self.language(), self.language_after())
     }
 
     /// Lets time pass up to a frame's time, and paints that frame.
@@ -145,8 +175,7 @@ impl House {
     }
 
     fn compose(&mut self, screen: Screen, moment: &Moment) -> DisplayList {
-        let options =
-            Options { language: self.show.scenario.language.clone(), reduced_motion: self.reduced_motion };
+        let options = Options { language: self.language().to_owned(), reduced_motion: self.reduced_motion };
         let show = &self.show;
         let stale = self.composer.as_ref().is_none_or(|(made_for, _)| *made_for != screen);
         if stale {
@@ -178,6 +207,7 @@ impl House {
             left_s,
             model: crate::words::model_time(self.show.scenario.date, moment.model_s),
             blackout: self.blackout,
+            language: Some(self.language().to_owned()),
             words,
             presenting,
             kept_ms: dom::wall_ms(),
@@ -187,7 +217,7 @@ impl House {
     /// The picture of this instant for the start page.
     pub fn kept_picture(&self) -> Drawing {
         let screen = Screen { width_px: KEPT_PX[0], height_px: KEPT_PX[1], density: 1.0 };
-        let options = Options { language: self.show.scenario.language.clone(), reduced_motion: true };
+        let options = Options { language: self.language().to_owned(), reduced_motion: true };
         let moment = self.clock.moment(&self.show.plan);
         Drawing::of(&Composer::new(&self.show, screen, options).compose(&self.show, &moment))
     }

@@ -14,6 +14,8 @@ pub struct Readout {
     pub title: String,
     /// The caption that the audience reads, without marks.
     pub caption: String,
+    /// The language of the captions after this one, by its own name; empty: there is none.
+    pub language_after: String,
     /// Planned time left in this beat, "0:35".
     pub beat_left: String,
     /// Planned time left in the show, "5:20".
@@ -32,7 +34,13 @@ pub struct Readout {
 
 impl Readout {
     /// Of a show at an instant of its clock.
-    pub fn of(show: &Show, clock: &Clock, blackout: bool) -> Self {
+    pub fn of(
+        show: &Show,
+        clock: &Clock,
+        blackout: bool,
+        language: &str,
+        language_after: Option<&str>,
+    ) -> Self {
         let plan = &show.plan;
         let index = clock.beat();
         let planned = plan.beats.get(index);
@@ -43,7 +51,8 @@ impl Readout {
             beat: index,
             beats: plan.beats.len(),
             title: beat.map(|b| b.title.clone()).unwrap_or_default(),
-            caption: beat.map(|b| caption(&b.captions, &show.scenario.language)).unwrap_or_default(),
+            caption: beat.map(|b| caption(&b.captions, language)).unwrap_or_default(),
+            language_after: language_after.map(words::own_name).unwrap_or_default(),
             beat_left: words::minutes(beat_left_s),
             show_left: words::minutes(left_s),
             model: words::model_time(show.scenario.date, clock.moment(plan).model_s),

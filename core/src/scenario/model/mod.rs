@@ -40,6 +40,19 @@ pub struct Scenario {
     pub beats: Vec<Beat>,
 }
 
+impl Scenario {
+    /// The languages of its captions, its own first, the others in the order in which they come.
+    pub fn languages(&self) -> Vec<String> {
+        let mut found = vec![self.language.clone()];
+        for caption in self.beats.iter().flat_map(|beat| &beat.captions) {
+            if !found.contains(&caption.language) {
+                found.push(caption.language.clone());
+            }
+        }
+        found
+    }
+}
+
 /// `[physics]`. `None` leaves the choice to what the bodies bring along.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
 pub struct Physics {
