@@ -151,7 +151,7 @@ fn thrown_and_let_go_says_true_numbers() {
     let show = show("thrown-and-let-go.toml");
     let skerry = body(&show, "Skerry");
     let contact = |name: &str| {
-        let query = Query { kind: EventKind::Contact, body: body(&show, name), other: Some(skerry) };
+        let query = Query::new(EventKind::Contact, body(&show, name), Some(skerry));
         let found = events::find(&show.ephemeris, &show.initial, &query, 0.0, show.plan.covers_until_s);
         *found.first().unwrap_or_else(|| panic!("{name} does not land"))
     };

@@ -7,6 +7,7 @@ mod apparitions;
 mod areas;
 mod changes;
 mod de440;
+mod eclipses;
 mod energy;
 mod figure_eight;
 mod handbooks;

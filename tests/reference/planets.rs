@@ -43,7 +43,7 @@ fn third_law_periods_are_those_of_the_planets() {
         )));
         let until_s = 2.1 * days * 86_400.0;
         let eph = paths(&initial, 0.0, until_s);
-        let query = Query { kind: EventKind::Periapsis, body: BodyId(1), other: None };
+        let query = Query::new(EventKind::Periapsis, BodyId(1), None);
         let passages = find(&eph, &initial, &query, 0.0, until_s);
         assert_eq!(passages.len(), 3, "{}", facts.name);
         let got = (passages[2].t_s - passages[0].t_s) / 2.0 / 86_400.0;

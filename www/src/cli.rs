@@ -29,7 +29,7 @@ pub(crate) enum Command {
     Check(Check),
     /// Print where every body is and how it moves, as CSV.
     Trace(Trace),
-    /// Print what happens: apsides, closest approaches, contacts, conjunctions, oppositions, as CSV.
+    /// Print what happens, as CSV: apsides, nodes, contacts, conjunctions, stations, ways through shadows and so on.
     Events(Events),
     /// Print the digest that the app shows for the same file.
     Fingerprint(Fingerprint),

@@ -26,7 +26,7 @@ fn beat(from_s: f64, until_s: f64, lasts_s: f64, way: Way, then: Then, run: Run)
 fn plan() -> Plan {
     let still = beat(0.0, 0.0, 10.0, Way::Still, Then::GoOn, Run::Anew);
     let span = beat(0.0, 100.0 * DAY, 50.0, Way::Span(100.0 * DAY), Then::Hold, Run::GoesOn);
-    let event = EventRef { kind: EventKind::Periapsis, body: BodyId(0), other: None, nth: 1 };
+    let event = EventRef { kind: EventKind::Periapsis, body: BodyId(0), other: None, nth: 1, distance: None };
     let mut cued = beat(100.0 * DAY, 160.0 * DAY, 25.0, Way::Still, Then::GoOn, Run::GoesOn);
     cued.way = Way::Cue;
     cued.cue = Some(Cue { at_s: 20.0, model_s: 150.0 * DAY, event });

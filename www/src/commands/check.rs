@@ -9,7 +9,7 @@ use std::process::ExitCode;
 use anyhow::Result;
 use fallaround_core::ephemeris::Outcome;
 use fallaround_core::integrate::drift;
-use fallaround_core::scenario::{self, BodyId, EventRef, Problem, Severity};
+use fallaround_core::scenario::{BodyId, EventRef, Problem, Severity};
 use fallaround_core::show::{Fingerprint, Show};
 use serde_json::{Value, json};
 
@@ -238,13 +238,10 @@ fn event_text(show: &Show, event: &EventRef) -> String {
         (n, 3, _) => format!("{n}rd "),
         (n, ..) => format!("{n}th "),
     };
-    let joiner = match event.kind {
-        scenario::EventKind::Contact => "with",
-        scenario::EventKind::Conjunction | scenario::EventKind::Opposition => "from",
-        _ => "to",
-    };
+    let joiner = event.kind.joiner();
+    let distance = event.distance.map(|distance| format!(" {distance}")).unwrap_or_default();
     let other = event.other.map(|other| format!(" {joiner} {}", name(show, other))).unwrap_or_default();
-    format!("{ordinal}{} of {}{other}", event.kind.name(), name(show, event.body))
+    format!("{ordinal}{}{distance} of {}{other}", event.kind.name(), name(show, event.body))
 }
 
 fn name(show: &Show, body: BodyId) -> &str {

@@ -4,8 +4,8 @@ use std::io::{self, BufWriter, Write};
 use std::process::ExitCode;
 
 use anyhow::{Context as _, Result, ensure};
-use fallaround_core::ephemeris::events::{self, Event};
-use fallaround_core::scenario::BodyId;
+use fallaround_core::ephemeris::events::{self, Event, Query};
+use fallaround_core::scenario::{Beat, BeatClock, BeatStart, BodyId};
 
 use crate::cli::Events;
 use crate::load::{self, Resolved};
@@ -24,6 +24,9 @@ pub(crate) fn command(options: &Events) -> Result<ExitCode> {
     let bodies = options.body.iter().map(|name| resolved.body(name)).collect::<Result<Vec<_>>>()?;
     let ephemeris = resolved.integrate(&options.scenario, from_s, until_s)?;
     let mut found = events::all(&ephemeris, &resolved.initial, from_s, until_s);
+    for query in distances(&resolved.scenario.beats) {
+        found.extend(events::find(&ephemeris, &resolved.initial, &query, from_s, until_s));
+    }
     found.retain(|event| {
         let of_kind = options.kind.is_empty() || options.kind.iter().any(|kind| kind == event.kind.name());
         let takes_part = |body: &BodyId| *body == event.body || Some(*body) == event.other;
@@ -36,6 +39,28 @@ pub(crate) fn command(options: &Events) -> Result<ExitCode> {
     let result = table.and_then(|table| write(table, &resolved, &found));
     unless_closed(result).context("standard output")?;
     Ok(ExitCode::SUCCESS)
+}
+
+/// The crossings of distances that beats name, each once.
+fn distances(beats: &[Beat]) -> Vec<Query> {
+    let mut queries: Vec<Query> = Vec::new();
+    for beat in beats {
+        let reached = match beat.clock {
+            BeatClock::Reach { event, .. } => Some(event),
+            _ => None,
+        };
+        let started = match beat.start {
+            BeatStart::Event { event, .. } => Some(event),
+            _ => None,
+        };
+        for event in reached.into_iter().chain(started).filter(|event| event.distance.is_some()) {
+            let query = Query::from(&event);
+            if !queries.contains(&query) {
+                queries.push(query);
+            }
+        }
+    }
+    queries
 }
 
 fn write<W: Write>(mut table: Table<'_, W>, resolved: &Resolved, found: &[Event]) -> io::Result<()> {

@@ -6,23 +6,29 @@
 //! - apsides and closest approaches: the distance must have a minimum or maximum as marked as the apsis of an orbit of
 //!   eccentricity [`FAINTEST`]; on rounder orbits, and of bodies at rest on each other, there are none;
 //! - conjunctions and oppositions: the difference in longitude must change at a rate of at least [`FAINTEST`] of what the
-//!   motions give.
+//!   motions give;
+//! - nodes, stations, greatest elongations, crossings of a distance and shadows likewise: what changes its sign must do so at a
+//!   rate of at least [`FAINTEST`] of what the motions give. An orbit in the ecliptic has no nodes.
 //!
 //! A rebound is a contact and no apsis. Directions are geometric (without light time), longitudes those of the
-//! ecliptic of J2000.
+//! ecliptic of J2000. What each event's value says is written at [`Event::value`].
 
 use super::Ephemeris;
-use crate::Vector3;
 use crate::initial::InitialState;
-use crate::math::float::atan2;
 use crate::scenario::{BodyId, EventKind, EventRef};
 
+mod elongation;
+mod look;
 mod roots;
+mod shadow;
+#[cfg(test)]
+mod sky_tests;
 mod steps;
 #[cfg(test)]
 mod tests;
 
-use steps::{MARGIN, Relative, Step, steps};
+use look::{Look, Sight};
+use steps::steps;
 
 /// The smallest eccentricity at which an orbit has apsides.
 pub const FAINTEST: f64 = 1e-9;
@@ -31,7 +37,7 @@ pub const FAINTEST: f64 = 1e-9;
 const NOISE: f64 = 1e-14;
 
 /// What is sought.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+#[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Query {
     /// What kind.
     pub kind: EventKind,
@@ -39,6 +45,22 @@ pub struct Query {
     pub body: BodyId,
     /// To, with or from which other body; `None`: its primary, and for contacts any body.
     pub other: Option<BodyId>,
+    /// With [`EventKind::Distance`], the distance that is crossed, m; without one there is nothing to cross.
+    pub distance_m: Option<f64>,
+}
+
+impl Query {
+    /// Of a kind that states no distance.
+    pub const fn new(kind: EventKind, body: BodyId, other: Option<BodyId>) -> Self {
+        Self { kind, body, other, distance_m: None }
+    }
+}
+
+impl From<&EventRef> for Query {
+    fn from(event: &EventRef) -> Self {
+        let distance_m = event.distance.map(|distance| distance.m());
+        Self { kind: event.kind, body: event.body, other: event.other, distance_m }
+    }
 }
 
 /// Something that happens on the paths.
@@ -52,8 +74,18 @@ pub struct Event {
     pub body: BodyId,
     /// To, with or from which other body; `None` where that is an unseen companion.
     pub other: Option<BodyId>,
-    /// Distance from centre to centre (apsides, closest approach), relative speed (contact), or the angle between the
-    /// body and the star (conjunction, opposition).
+    /// What it says depends on the kind:
+    ///
+    /// | kind | value | unit |
+    /// | --- | --- | --- |
+    /// | periapsis, apoapsis, closest-approach | distance from centre to centre | m |
+    /// | contact | relative speed | m/s |
+    /// | ascending-node, descending-node | longitude of the node, seen from the primary, 0 to 360 | deg |
+    /// | conjunction, opposition | angle between the body and the star | deg |
+    /// | stationary | longitude at which it stands, seen from the other body, 0 to 360 | deg |
+    /// | greatest-elongation | angle between the body and the star; negative: west of it | deg |
+    /// | shadow-entry, shadow-exit, penumbra-entry, penumbra-exit | distance from the body that casts the shadow | m |
+    /// | distance | rate at which the distance grows; negative: it comes nearer | m/s |
     pub value: f64,
     /// Unit of the value: "m", "m/s" or "deg".
     pub unit: &'static str,
@@ -77,7 +109,7 @@ pub fn find(eph: &Ephemeris, initial: &InitialState, query: &Query, from_s: f64,
 /// The event that a scenario names: the n-th after an instant, as far as the ephemeris reaches. One at that very
 /// instant (within a millionth of an integration step) doesn't count.
 pub fn first(eph: &Ephemeris, initial: &InitialState, event: &EventRef, after_s: f64) -> Option<Event> {
-    let query = Query { kind: event.kind, body: event.body, other: event.other };
+    let query = Query::from(event);
     let mut left = event.nth.max(1);
     let mut found = None;
     search(eph, initial, &query, after_s, eph.until_s(), |event, same_s| {
@@ -92,18 +124,30 @@ pub fn first(eph: &Ephemeris, initial: &InitialState, event: &EventRef, after_s:
     found
 }
 
-/// All events between the bodies that the scenario names, in order of time: apsides about the primary, closest approaches of all
-/// other pairs, contacts, and conjunctions and oppositions seen from every body with mass that goes around the same star.
+/// Kinds that are seen from another body, against the star.
+const SEEN: [EventKind; 4] =
+    [EventKind::Conjunction, EventKind::Opposition, EventKind::Stationary, EventKind::GreatestElongation];
+
+/// Kinds that a shadow makes.
+const SHADED: [EventKind; 4] =
+    [EventKind::ShadowEntry, EventKind::ShadowExit, EventKind::PenumbraEntry, EventKind::PenumbraExit];
+
+/// All events between the bodies that the scenario names, in order of time: apsides and nodes about the primary, closest
+/// approaches of all other pairs, contacts; conjunctions, oppositions, stations and greatest elongations seen from every
+/// body with mass that goes around the same star; and ways through the shadows of bodies that do. Crossings of a
+/// distance are not among them, as no distance is stated here: ask [`find`] for those.
 pub fn all(eph: &Ephemeris, initial: &InitialState, from_s: f64, until_s: f64) -> Vec<Event> {
     let mut found = Vec::new();
     let mut add = |kind, body, other| {
-        found.extend(find(eph, initial, &Query { kind, body, other }, from_s, until_s));
+        found.extend(find(eph, initial, &Query::new(kind, body, other), from_s, until_s));
     };
     for i in 0..initial.listed {
         let body = BodyId(i);
         add(EventKind::Periapsis, body, None);
         add(EventKind::Apoapsis, body, None);
         add(EventKind::Contact, body, None);
+        add(EventKind::AscendingNode, body, None);
+        add(EventKind::DescendingNode, body, None);
         for j in (0..initial.listed).filter(|&j| j != i) {
             let other = BodyId(j);
             let related = primary(initial, body) == Some(other) || primary(initial, other) == Some(body);
@@ -111,9 +155,18 @@ pub fn all(eph: &Ephemeris, initial: &InitialState, from_s: f64, until_s: f64) -
                 add(EventKind::ClosestApproach, body, Some(other));
             }
             let star = star(initial, other);
-            if initial.bodies[j].gm_m3_s2 > 0.0 && star != other && self::star(initial, body) == star {
-                add(EventKind::Conjunction, body, Some(other));
-                add(EventKind::Opposition, body, Some(other));
+            if star == other || star == body || self::star(initial, body) != star {
+                continue;
+            }
+            if initial.bodies[j].gm_m3_s2 > 0.0 {
+                for kind in SEEN {
+                    add(kind, body, Some(other));
+                }
+            }
+            if initial.bodies[j].radius_m > 0.0 {
+                for kind in SHADED {
+                    add(kind, body, Some(other));
+                }
             }
         }
     }
@@ -163,16 +216,7 @@ fn search(
         return;
     }
     let Some(other) = other else { return };
-    let look = match query.kind {
-        EventKind::Conjunction | EventKind::Opposition => {
-            let star = star(initial, other);
-            if star == query.body || star == other {
-                return;
-            }
-            Look::Longitude { body: query.body.0, observer: other.0, star: star.0, kind: query.kind }
-        }
-        kind => Look::Distance { body: query.body.0, other: other.0, kind },
-    };
+    let Some(look) = Look::of(initial, query, other) else { return };
     let event = |sight: &Sight| Event {
         t_s: sight.t_s.clamp(eph.from_s(), eph.until_s()),
         kind: query.kind,
@@ -239,123 +283,4 @@ fn contacts(
             return;
         }
     }
-}
-
-/// An event as seen from one step.
-#[derive(Debug, Clone, Copy)]
-struct Sight {
-    t_s: f64,
-    value: f64,
-    same_s: f64,
-    /// Whether it lies within the step, not in the margin beyond.
-    inside: bool,
-}
-
-/// What is looked at.
-#[derive(Debug, Clone, Copy)]
-enum Look {
-    Distance { body: usize, other: usize, kind: EventKind },
-    Longitude { body: usize, observer: usize, star: usize, kind: EventKind },
-}
-
-impl Look {
-    fn unit(&self) -> &'static str {
-        match self {
-            Self::Distance { .. } => "m",
-            Self::Longitude { .. } => "deg",
-        }
-    }
-
-    /// Whether one of the two rests on the other, or both on the same body.
-    fn at_rest(&self, eph: &Ephemeris, t_s: f64) -> bool {
-        let (a, b) = match *self {
-            Self::Distance { body, other, .. } => (body, other),
-            Self::Longitude { body, observer, .. } => (body, observer),
-        };
-        if eph.contacts().is_empty() {
-            return false;
-        }
-        // The body that carries it, through bodies that rest on bodies.
-        let host = |mut body: usize| {
-            for _ in 0..eph.bodies() {
-                match eph.at_rest(BodyId(body), t_s) {
-                    Some(contact) => body = contact.onto.0,
-                    None => break,
-                }
-            }
-            body
-        };
-        host(a) == host(b)
-    }
-
-    /// The events in one step, in order of time.
-    fn sights(&self, step: &Step<'_>) -> Vec<Sight> {
-        let found = match *self {
-            Self::Distance { body, other, kind } => {
-                step.relative(body, other).map(|r| extremes(&r, kind)).unwrap_or_default()
-            }
-            Self::Longitude { body, observer, star, kind } => {
-                match (step.relative(body, observer), step.relative(star, observer)) {
-                    (Some(body), Some(star)) => alignments(&body, &star, kind),
-                    _ => Vec::new(),
-                }
-            }
-        };
-        let sight = |(h, value)| Sight {
-            t_s: step.at(h),
-            value,
-            same_s: step.same_s(),
-            inside: (0.0..=1.0).contains(&h),
-        };
-        let mut sights: Vec<Sight> = found.into_iter().map(sight).collect();
-        if step.step_s < 0.0 {
-            sights.reverse();
-        }
-        sights
-    }
-}
-
-/// Minima or maxima of a distance: fraction of the step, and distance in metres.
-fn extremes(motion: &Relative, kind: EventKind) -> Vec<(f64, f64)> {
-    let (r, d) = motion.size();
-    let rate = |h: f64| {
-        let [pos, vel, _] = motion.at(h);
-        pos.dot(&vel)
-    };
-    let mut found = Vec::new();
-    for h in roots::sign_changes(&motion.range_rate(), MARGIN, NOISE * r * d, rate) {
-        let [pos, vel, acc] = motion.at(h);
-        let (square, pull) = (vel.norm_squared(), pos.dot(&acc));
-        // On an orbit this is e / 2, with the sign of the second derivative of the distance.
-        let marked = (square + pull) / (square + pull.abs());
-        let is_minimum = marked > 0.0;
-        let wanted = match kind {
-            EventKind::Apoapsis => !is_minimum,
-            _ => is_minimum,
-        };
-        if wanted && marked.abs() >= 0.5 * FAINTEST {
-            found.push((h, pos.norm()));
-        }
-    }
-    found
-}
-
-/// Same or opposite longitudes of a body and a star: fraction of the step, and the angle between them in degrees.
-fn alignments(body: &Relative, star: &Relative, kind: EventKind) -> Vec<(f64, f64)> {
-    let cross = |a: Vector3<f64>, b: Vector3<f64>| a.x * b.y - a.y * b.x;
-    let noise = NOISE * body.size().0 * star.size().0;
-    let exact = |h: f64| cross(body.at(h)[0], star.at(h)[0]);
-    let mut found = Vec::new();
-    for h in roots::sign_changes(&body.cross_in_plane(star), MARGIN, noise, exact) {
-        let ([a, da, _], [b, db, _]) = (body.at(h), star.at(h));
-        let rate = cross(da, b) + cross(a, db);
-        let same_side = a.x * b.x + a.y * b.y > 0.0;
-        if same_side == (kind == EventKind::Conjunction)
-            && rate.abs() >= FAINTEST * (a.norm() * db.norm() + da.norm() * b.norm())
-        {
-            let angle = atan2(a.cross(&b).norm(), a.dot(&b));
-            found.push((h, angle.to_degrees()));
-        }
-    }
-    found
 }

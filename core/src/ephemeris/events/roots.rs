@@ -2,41 +2,44 @@
 
 use crate::math::root::bracketed;
 
-/// Coefficients that a polynomial here can have: positions are of degree 9, products of two of degree 18.
-pub(super) const MOST: usize = 19;
-
 /// Halvings at most: closer than this (a part in 10¹² of the interval) two sign changes cancel.
 const DEPTH: u32 = 40;
 
 /// Where an interval is parted; not in the middle, where roots of symmetric things like to be.
 const PART: f64 = 0.487;
 
-/// A polynomial in powers of the fraction of a step.
+/// A polynomial in powers of the fraction of a step, with `N` coefficients.
 #[derive(Debug, Clone, Copy, PartialEq)]
-pub(super) struct Poly {
-    pub(super) c: [f64; MOST],
+pub(super) struct Poly<const N: usize> {
+    pub(super) c: [f64; N],
 }
 
-impl Poly {
-    pub(super) const ZERO: Self = Self { c: [0.0; MOST] };
+impl<const N: usize> Poly<N> {
+    pub(super) const ZERO: Self = Self { c: [0.0; N] };
 
     /// Adds `factor` times the product of two polynomials; the degrees must fit.
     pub(super) fn add_product(&mut self, a: &[f64], b: &[f64], factor: f64) {
+        debug_assert!(a.len() + b.len() <= N + 1, "the product has {} coefficients", a.len() + b.len() - 1);
         for (i, x) in a.iter().enumerate() {
             for (j, y) in b.iter().enumerate() {
-                if i + j < MOST {
+                if i + j < N {
                     self.c[i + j] += factor * x * y;
                 }
             }
         }
     }
 
+    /// A bound of its values on a step: the sum of its coefficients' sizes.
+    pub(super) fn size(&self) -> f64 {
+        self.c.iter().map(|c| c.abs()).sum()
+    }
+
     /// Coefficients of Bernstein's basis on the interval from `-margin` to `1 + margin`.
-    fn bernstein(&self, margin: f64) -> [f64; MOST] {
+    fn bernstein(&self, margin: f64) -> [f64; N] {
         let mut a = self.c;
         // h = u (1 + 2 margin) - margin: a shift by Horner's scheme, then a scale.
-        for i in 0..MOST - 1 {
-            for k in (i..MOST - 1).rev() {
+        for i in 0..N - 1 {
+            for k in (i..N - 1).rev() {
                 a[k] -= margin * a[k + 1];
             }
         }
@@ -46,14 +49,14 @@ impl Poly {
             scale *= 1.0 + 2.0 * margin;
         }
         // b_j = Σ C(j,k) / C(n,k) a_k, by the differences that de Casteljau's scheme runs backwards.
-        let n = (MOST - 1) as f64;
+        let n = (N - 1) as f64;
         let mut binomial = 1.0;
         for (k, x) in a.iter_mut().enumerate() {
             *x /= binomial;
             binomial *= (n - k as f64) / (k as f64 + 1.0);
         }
-        for level in 1..MOST {
-            for j in (level..MOST).rev() {
+        for level in 1..N {
+            for j in (level..N).rev() {
                 a[j] += a[j - 1];
             }
         }
@@ -66,7 +69,7 @@ fn above(x: f64) -> bool {
     x >= 0.0
 }
 
-fn variations(b: &[f64; MOST]) -> usize {
+fn variations(b: &[f64]) -> usize {
     b.windows(2).filter(|w| above(w[0]) != above(w[1])).count()
 }
 
@@ -78,7 +81,12 @@ fn variations(b: &[f64; MOST]) -> usize {
 /// # Source
 /// Descartes' rule of signs in Bernstein's basis: no change of sign among the coefficients proves that there is no root, one that
 /// there is exactly one; else the interval is parted (J. M. Lane and R. F. Riesenfeld, BIT 21 (1981), 112).
-pub(super) fn sign_changes(poly: &Poly, margin: f64, noise: f64, exact: impl Fn(f64) -> f64) -> Vec<f64> {
+pub(super) fn sign_changes<const N: usize>(
+    poly: &Poly<N>,
+    margin: f64,
+    noise: f64,
+    exact: impl Fn(f64) -> f64,
+) -> Vec<f64> {
     let whole = poly.bernstein(margin);
     let mut roots = Vec::new();
     if variations(&whole) == 0 || whole.iter().all(|b| b.abs() <= noise) {
@@ -92,7 +100,7 @@ pub(super) fn sign_changes(poly: &Poly, margin: f64, noise: f64, exact: impl Fn(
             0 => {}
             1 => roots.push(polish(h(from), h(until), &exact)),
             _ if depth >= DEPTH => {
-                if above(b[0]) != above(b[MOST - 1]) {
+                if above(b[0]) != above(b[N - 1]) {
                     roots.push(polish(h(from), h(until), &exact));
                 }
             }
@@ -108,11 +116,11 @@ pub(super) fn sign_changes(poly: &Poly, margin: f64, noise: f64, exact: impl Fn(
 }
 
 /// de Casteljau's scheme: the coefficients on both parts.
-fn part(b: &[f64; MOST]) -> ([f64; MOST], [f64; MOST]) {
-    let (mut left, mut right) = ([0.0; MOST], *b);
+fn part<const N: usize>(b: &[f64; N]) -> ([f64; N], [f64; N]) {
+    let (mut left, mut right) = ([0.0; N], *b);
     left[0] = right[0];
-    for level in 1..MOST {
-        for j in 0..MOST - level {
+    for level in 1..N {
+        for j in 0..N - level {
             right[j] = (1.0 - PART) * right[j] + PART * right[j + 1];
         }
         left[level] = right[0];
@@ -130,7 +138,9 @@ fn polish(from: f64, until: f64, exact: impl Fn(f64) -> f64) -> f64 {
 mod tests {
     use super::*;
 
-    fn of_roots(roots: &[f64]) -> Poly {
+    const MOST: usize = 19;
+
+    fn of_roots(roots: &[f64]) -> Poly<MOST> {
         let mut poly = Poly::ZERO;
         poly.c[0] = 1.0;
         for root in roots {

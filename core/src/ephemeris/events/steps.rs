@@ -1,6 +1,6 @@
 //! The steps of an ephemeris in order of time, and the relative motion of two bodies in one of them.
 
-use super::roots::{MOST, Poly};
+use super::roots::Poly;
 use crate::Vector3;
 use crate::ephemeris::{Ephemeris, PER_BODY, Track};
 
@@ -50,12 +50,15 @@ impl Step<'_> {
 }
 
 /// Degree of positions in a step.
-const DEGREE: usize = PER_BODY / 3 - 1;
+pub(super) const DEGREE: usize = PER_BODY / 3 - 1;
+
+/// Coefficients of products of two positions.
+pub(super) const SQUARE: usize = 2 * DEGREE + 1;
 
 /// Relative motion in one step: coefficients of each axis in powers of the fraction of the step, m.
 #[derive(Debug, Clone, Copy)]
 pub(super) struct Relative {
-    c: [[f64; DEGREE + 1]; 3],
+    pub(super) c: [[f64; DEGREE + 1]; 3],
 }
 
 impl Relative {
@@ -76,17 +79,44 @@ impl Relative {
         out
     }
 
-    /// r · r′, half the derivative of the squared distance.
-    pub(super) fn range_rate(&self) -> Poly {
+    /// Height above the ecliptic.
+    pub(super) fn height(&self) -> Poly<{ DEGREE + 1 }> {
+        Poly { c: self.c[2] }
+    }
+
+    /// a · b of two relative motions.
+    pub(super) fn dot(&self, other: &Self) -> Poly<SQUARE> {
         let mut poly = Poly::ZERO;
-        for c in &self.c {
-            poly.add_product(c, &derivative(c), 1.0);
+        for (a, b) in self.c.iter().zip(&other.c) {
+            poly.add_product(a, b, 1.0);
         }
         poly
     }
 
+    /// a · b′ of two relative motions.
+    pub(super) fn dot_rate(&self, other: &Self) -> Poly<SQUARE> {
+        let mut poly = Poly::ZERO;
+        for (a, b) in self.c.iter().zip(&other.c) {
+            poly.add_product(a, &derivative(b), 1.0);
+        }
+        poly
+    }
+
+    /// r · r′, half the derivative of the squared distance.
+    pub(super) fn range_rate(&self) -> Poly<SQUARE> {
+        self.dot_rate(self)
+    }
+
+    /// x y′ - y x′: 0 where the longitude stands still.
+    pub(super) fn turning(&self) -> Poly<SQUARE> {
+        let mut poly = Poly::ZERO;
+        poly.add_product(&self.c[0], &derivative(&self.c[1]), 1.0);
+        poly.add_product(&self.c[1], &derivative(&self.c[0]), -1.0);
+        poly
+    }
+
     /// x₁ y₂ - y₁ x₂ of two relative motions: 0 where both have the same or the opposite longitude.
-    pub(super) fn cross_in_plane(&self, other: &Self) -> Poly {
+    pub(super) fn cross_in_plane(&self, other: &Self) -> Poly<SQUARE> {
         let mut poly = Poly::ZERO;
         poly.add_product(&self.c[0], &other.c[1], 1.0);
         poly.add_product(&self.c[1], &other.c[0], -1.0);
@@ -109,8 +139,6 @@ impl Relative {
 fn derivative(c: &[f64; DEGREE + 1]) -> [f64; DEGREE] {
     std::array::from_fn(|k| (k + 1) as f64 * c[k + 1])
 }
-
-const _: () = assert!(2 * DEGREE < MOST);
 
 /// The steps that cover an interval, in order of time.
 pub(super) fn steps(eph: &Ephemeris, from_s: f64, until_s: f64) -> impl Iterator<Item = Step<'_>> {

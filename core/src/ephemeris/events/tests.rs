@@ -1,16 +1,17 @@
 //! Events on paths whose events are known.
 
 use super::*;
+use crate::Vector3;
 use crate::conic::{Elements, state_from_elements};
 use crate::ephemeris::Propagation;
 use crate::initial::{Forces, InitialBody};
 use crate::scenario::Surface;
 use std::f64::consts::TAU;
 
-const GM: f64 = 1.327e20;
-const AU: f64 = 1.495_978_707e11;
+pub(super) const GM: f64 = 1.327e20;
+pub(super) const AU: f64 = 1.495_978_707e11;
 
-fn point(
+pub(super) fn point(
     name: &str,
     gm_m3_s2: f64,
     primary: Option<usize>,
@@ -21,7 +22,7 @@ fn point(
     InitialBody { name: name.into(), gm_m3_s2, radius_m: 0.0, surface: Surface::Stop, primary, pos, vel }
 }
 
-fn orbiting(gm: f64, gm_own: f64, q: f64, e: f64, nu: f64) -> InitialBody {
+pub(super) fn orbiting(gm: f64, gm_own: f64, q: f64, e: f64, nu: f64) -> InitialBody {
     let elements = Elements {
         periapsis_m: q,
         eccentricity: e,
@@ -34,11 +35,11 @@ fn orbiting(gm: f64, gm_own: f64, q: f64, e: f64, nu: f64) -> InitialBody {
     point("p", gm_own, Some(0), pos, vel)
 }
 
-fn state(bodies: Vec<InitialBody>) -> InitialState {
+pub(super) fn state(bodies: Vec<InitialBody>) -> InitialState {
     InitialState { listed: bodies.len(), bodies, forces: Forces::default(), changes: Vec::new() }
 }
 
-fn run(initial: &InitialState, from_s: f64, until_s: f64) -> Ephemeris {
+pub(super) fn run(initial: &InitialState, from_s: f64, until_s: f64) -> Ephemeris {
     let mut propagation = Propagation::new(initial);
     assert!(propagation.advance(until_s, 1_000_000).unwrap());
     if from_s < 0.0 {
@@ -47,29 +48,29 @@ fn run(initial: &InitialState, from_s: f64, until_s: f64) -> Ephemeris {
     propagation.into_ephemeris()
 }
 
-fn star() -> InitialBody {
+pub(super) fn star() -> InitialBody {
     point("star", GM, None, Vector3::zeros(), Vector3::zeros())
 }
 
-fn period(q: f64, e: f64) -> f64 {
+pub(super) fn period(q: f64, e: f64) -> f64 {
     let a = q / (1.0 - e);
     TAU * (a * a * a / GM).sqrt()
 }
 
-fn times(found: &[Event]) -> Vec<f64> {
+pub(super) fn times(found: &[Event]) -> Vec<f64> {
     found.iter().map(|e| e.t_s).collect()
 }
 
 /// Times are as good as the integration: some 1e-14 of the time covered, more where speed hardly changes along the way.
-fn same_times(got: &[f64], want: &[f64], tol_s: f64) {
+pub(super) fn same_times(got: &[f64], want: &[f64], tol_s: f64) {
     assert_eq!(got.len(), want.len(), "got {got:?}, want {want:?}");
     for (got, want) in got.iter().zip(want) {
         assert!((got - want).abs() <= tol_s, "got {got}, want {want}, difference {} s", got - want);
     }
 }
 
-const PERI: Query = Query { kind: EventKind::Periapsis, body: BodyId(1), other: None };
-const APO: Query = Query { kind: EventKind::Apoapsis, body: BodyId(1), other: None };
+const PERI: Query = Query::new(EventKind::Periapsis, BodyId(1), None);
+const APO: Query = Query::new(EventKind::Apoapsis, BodyId(1), None);
 
 #[test]
 fn apsides_come_once_a_period_for_every_eccentricity() {
@@ -102,13 +103,15 @@ fn the_one_at_the_start_is_there_and_is_not_the_first() {
         assert!(found[0].t_s.abs() < 1e-3);
         let mut after = 0.0;
         for nth in 1..5_u32 {
-            let event = EventRef { kind: EventKind::Periapsis, body: BodyId(1), other: None, nth: 1 };
+            let event =
+                EventRef { kind: EventKind::Periapsis, body: BodyId(1), other: None, nth: 1, distance: None };
             after = first(eph, &initial, &event, after).unwrap().t_s;
             let numbered = EventRef { nth: nth as usize, ..event };
             let again = first(eph, &initial, &numbered, 0.0).unwrap().t_s;
             same_times(&[after, again], &[f64::from(nth) * p; 2], 1e-10 * p);
         }
-        let fifth = EventRef { kind: EventKind::Periapsis, body: BodyId(1), other: None, nth: 5 };
+        let fifth =
+            EventRef { kind: EventKind::Periapsis, body: BodyId(1), other: None, nth: 5, distance: None };
         assert_eq!(first(eph, &initial, &fifth, 0.0), None);
     }
 }
@@ -120,7 +123,7 @@ fn circles_and_bodies_at_rest_have_no_apsides() {
     let eph = run(&initial, -10.0 * p, 10.0 * p);
     for body in [BodyId(1), BodyId(2)] {
         for kind in [EventKind::Periapsis, EventKind::Apoapsis, EventKind::ClosestApproach] {
-            let found = find(&eph, &initial, &Query { kind, body, other: None }, -10.0 * p, 10.0 * p);
+            let found = find(&eph, &initial, &Query::new(kind, body, None), -10.0 * p, 10.0 * p);
             assert_eq!(found, vec![], "{kind:?}");
         }
     }
@@ -139,7 +142,7 @@ fn a_straight_pass_has_one_closest_approach_and_no_apoapsis() {
         point("b", 0.0, Some(0), Vector3::new(-3e6, 4e6, 0.0), Vector3::new(1e3, 0.0, 0.0)),
     ]);
     let eph = run(&initial, 0.0, 1e5);
-    let query = Query { kind: EventKind::ClosestApproach, body: BodyId(1), other: Some(BodyId(0)) };
+    let query = Query::new(EventKind::ClosestApproach, BodyId(1), Some(BodyId(0)));
     let found = find(&eph, &initial, &query, 0.0, 1e5);
     same_times(&times(&found), &[3000.0], 1e-9);
     assert!((found[0].value - 4e6).abs() < 1e-6);
@@ -159,7 +162,7 @@ fn oppositions_of_circular_orbits_keep_the_synodic_time() {
     let eph = run(&initial, 0.0, 5.0 * TAU / (n1 - n2));
     let until = eph.until_s();
     let look = |kind, body, other| {
-        find(&eph, &initial, &Query { kind, body: BodyId(body), other: Some(BodyId(other)) }, 0.0, until)
+        find(&eph, &initial, &Query::new(kind, BodyId(body), Some(BodyId(other))), 0.0, until)
     };
     let at = |angle: f64| -> Vec<f64> {
         (0..7).map(|k| (angle + TAU * f64::from(k)) / (n1 - n2)).filter(|&t| t <= until).collect()
@@ -180,7 +183,13 @@ fn oppositions_of_circular_orbits_keep_the_synodic_time() {
     same_times(&times(&look(EventKind::ClosestApproach, 2, 1)), &at(1.0), tol);
     let listed = all(&eph, &initial, 0.0, until);
     assert!(listed.windows(2).all(|w| w[0].t_s <= w[1].t_s));
-    assert_eq!(listed.len(), 2 * opposition.len() + conjunctions.len() + both.len());
+    let among = |kinds: &[EventKind]| listed.iter().filter(|e| kinds.contains(&e.kind)).count();
+    assert_eq!(among(&[EventKind::Opposition, EventKind::ClosestApproach]), 2 * opposition.len());
+    assert_eq!(among(&[EventKind::Conjunction]), conjunctions.len() + both.len());
+    // In the plane of the ecliptic, without surfaces, all else that there is are stations and greatest elongations.
+    let others = among(&[EventKind::Stationary, EventKind::GreatestElongation]);
+    assert_eq!(listed.len(), 2 * opposition.len() + conjunctions.len() + both.len() + others);
+    assert!(others > 20, "{others}");
 }
 
 #[test]
@@ -230,14 +239,20 @@ fn rebounds_are_contacts_and_no_apsides_but_the_tops_between_them_are() {
     let eph = run(&initial, 0.0, 60.0);
     let g = 4e14 / (6e6 * 6e6);
     let fall = (200.0_f64 / g).sqrt();
-    let look = |kind| times(&find(&eph, &initial, &Query { kind, body: BodyId(1), other: None }, 0.0, 60.0));
+    let look = |kind| times(&find(&eph, &initial, &Query::new(kind, BodyId(1), None), 0.0, 60.0));
     let contacts = look(EventKind::Contact);
     let want: Vec<f64> = (0..20).map(|k| fall * f64::from(2 * k + 1)).filter(|&t| t < 60.0).collect();
     same_times(&contacts, &want, 1e-2);
     let tops: Vec<f64> = (0..20).map(|k| fall * f64::from(2 * k)).filter(|&t| t < 60.0).collect();
     same_times(&look(EventKind::Apoapsis), &tops, 1e-2);
     assert_eq!(look(EventKind::Periapsis), Vec::<f64>::new());
-    let third = EventRef { kind: EventKind::Contact, body: BodyId(1), other: Some(BodyId(0)), nth: 3 };
+    let third = EventRef {
+        kind: EventKind::Contact,
+        body: BodyId(1),
+        other: Some(BodyId(0)),
+        nth: 3,
+        distance: None,
+    };
     assert_eq!(first(&eph, &initial, &third, 0.0).map(|e| e.t_s), Some(contacts[2]));
 }
 
@@ -249,7 +264,7 @@ fn bodies_that_are_not_there_and_empty_paths_have_no_events() {
     let eph = run(&initial, 0.0, 1e8);
     for (body, other) in [(7, None), (1, Some(7)), (1, Some(1)), (0, None)] {
         for kind in EventKind::ALL {
-            let query = Query { kind, body: BodyId(body), other: other.map(BodyId) };
+            let query = Query::new(kind, BodyId(body), other.map(BodyId));
             assert_eq!(find(&eph, &initial, &query, 0.0, 1e8), vec![], "{query:?}");
         }
     }

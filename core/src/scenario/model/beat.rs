@@ -117,8 +117,8 @@ pub enum Then {
     Next,
 }
 
-/// Which event is meant: "periapsis of Fenn", "2nd contact of Ball with Brae".
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+/// Which event is meant: "periapsis of Fenn", "2nd contact of Ball with Brae", "distance 1 au of Fenn from Orla".
+#[derive(Debug, Clone, Copy, PartialEq)]
 pub struct EventRef {
     /// What kind.
     pub kind: EventKind,
@@ -128,6 +128,8 @@ pub struct EventRef {
     pub other: Option<BodyId>,
     /// The how-manieth after the time from which it is sought, from 1.
     pub nth: usize,
+    /// With [`EventKind::Distance`], and only there: the distance that is crossed.
+    pub distance: Option<Length>,
 }
 
 /// The kinds of event.
@@ -141,21 +143,48 @@ pub enum EventKind {
     ClosestApproach,
     /// Touching another body's surface.
     Contact,
+    /// Up (northwards) through the ecliptic, relative to the primary.
+    AscendingNode,
+    /// Down (southwards) through the ecliptic, relative to the primary.
+    DescendingNode,
     /// In the direction of the primary (same ecliptic longitude), seen from another body.
     Conjunction,
     /// Opposite to the primary in ecliptic longitude, seen from another body.
     Opposition,
+    /// Its ecliptic longitude stands still, seen from another body: it turns back or forth again.
+    Stationary,
+    /// Farthest from the star, in angle, seen from another body that is farther out.
+    GreatestElongation,
+    /// The first of it meets the umbra of another body.
+    ShadowEntry,
+    /// The last of it leaves the umbra of another body.
+    ShadowExit,
+    /// The first of it meets the penumbra of another body.
+    PenumbraEntry,
+    /// The last of it leaves the penumbra of another body.
+    PenumbraExit,
+    /// A stated distance from another body is crossed, inwards or outwards.
+    Distance,
 }
 
 impl EventKind {
     /// Every kind, in the order in which they are listed to people.
-    pub const ALL: [Self; 6] = [
+    pub const ALL: [Self; 15] = [
         Self::Periapsis,
         Self::Apoapsis,
         Self::ClosestApproach,
         Self::Contact,
+        Self::AscendingNode,
+        Self::DescendingNode,
         Self::Conjunction,
         Self::Opposition,
+        Self::Stationary,
+        Self::GreatestElongation,
+        Self::ShadowEntry,
+        Self::ShadowExit,
+        Self::PenumbraEntry,
+        Self::PenumbraExit,
+        Self::Distance,
     ];
 
     /// Its name in files and in what the commands print.
@@ -165,9 +194,32 @@ impl EventKind {
             Self::Apoapsis => "apoapsis",
             Self::ClosestApproach => "closest-approach",
             Self::Contact => "contact",
+            Self::AscendingNode => "ascending-node",
+            Self::DescendingNode => "descending-node",
             Self::Conjunction => "conjunction",
             Self::Opposition => "opposition",
+            Self::Stationary => "stationary",
+            Self::GreatestElongation => "greatest-elongation",
+            Self::ShadowEntry => "shadow-entry",
+            Self::ShadowExit => "shadow-exit",
+            Self::PenumbraEntry => "penumbra-entry",
+            Self::PenumbraExit => "penumbra-exit",
+            Self::Distance => "distance",
         }
+    }
+
+    /// The word that joins the other body to it: "closest-approach of Pell **to** Brae".
+    pub const fn joiner(self) -> &'static str {
+        match self {
+            Self::Periapsis | Self::Apoapsis | Self::ClosestApproach => "to",
+            Self::Contact => "with",
+            _ => "from",
+        }
+    }
+
+    /// Whether it is seen from another body, which has to be named.
+    pub const fn is_seen(self) -> bool {
+        matches!(self, Self::Conjunction | Self::Opposition | Self::Stationary | Self::GreatestElongation)
     }
 }
 

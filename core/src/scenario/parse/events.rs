@@ -1,9 +1,9 @@
-//! Events in text: "2nd periapsis of Fenn", "contact of Ball with Brae".
+//! Events in text: "2nd periapsis of Fenn", "contact of Ball with Brae", "distance 1 au of Fenn from Orla".
 
 use super::super::model::{BodyId, EventKind, EventRef};
 use super::super::names::{Names, nearest};
 use super::super::reader::Field;
-use crate::units::{number, text::clip};
+use crate::units::{Length, number, text::clip};
 
 /// What stands between the body of an event and the other one; each may stand for each.
 const JOINERS: [&str; 4] = ["to", "with", "from", "on"];
@@ -36,21 +36,20 @@ fn event(text: &str, names: &Names) -> Result<EventRef, Fault> {
         ));
     };
     let (nth, word) = numbered(head.trim())?;
-    let kind = kind_of(word)?;
+    let (kind, distance) = kind_of(word)?;
     let (body, rest) = body_in(tail.trim_start(), names)?;
     let other = other_body(rest.trim(), names)?;
     if other == Some(body) {
         let name = names.name(body);
         return Err((format!("\"{shown}\" names {name} twice"), "name another body".to_owned()));
     }
-    let from = matches!(kind, EventKind::Conjunction | EventKind::Opposition);
-    if from && other.is_none() {
+    if kind.is_seen() && other.is_none() {
         return Err((
             format!("\"{shown}\" doesn't say from where it is seen"),
             format!("add from, as in \"{text} from Earth\""),
         ));
     }
-    Ok(EventRef { kind, body, other, nth })
+    Ok(EventRef { kind, body, other, nth, distance })
 }
 
 fn kinds() -> String {
@@ -75,16 +74,34 @@ fn numbered(head: &str) -> Result<(usize, &str), Fault> {
     }
 }
 
-fn kind_of(word: &str) -> Result<EventKind, Fault> {
+/// The kind of event, and the distance that its word states: "distance 1 au".
+fn kind_of(word: &str) -> Result<(EventKind, Option<Length>), Fault> {
     let plain = word.to_lowercase().replace(' ', "-");
+    let (first, rest) = word.split_at(word.find(char::is_whitespace).unwrap_or(word.len()));
+    if first.to_lowercase() == EventKind::Distance.name() {
+        return distance(rest.trim()).map(|distance| (EventKind::Distance, Some(distance)));
+    }
     if let Some(kind) = EventKind::ALL.into_iter().find(|k| k.name() == plain) {
-        return Ok(kind);
+        return Ok((kind, None));
     }
     let remedy = match nearest(&plain, EventKind::ALL.into_iter().map(EventKind::name)) {
         Some(near) => format!("perhaps \"{near}\"; the kinds are: {}", kinds()),
         None => format!("the kinds are: {}", kinds()),
     };
     Err((format!("there is no event \"{}\"", clip(word)), remedy))
+}
+
+/// The distance whose crossing is an event.
+fn distance(text: &str) -> Result<Length, Fault> {
+    const AS_IN: &str = "as in \"distance 1 au of Fenn from Orla\"";
+    if text.is_empty() {
+        return Err(("a distance event doesn't say which distance".to_owned(), format!("write it, {AS_IN}")));
+    }
+    match Length::parse(text) {
+        Ok(distance) if distance.m() > 0.0 => Ok(distance),
+        Ok(_) => Err((format!("the distance is {}", clip(text)), format!("it must be more than 0, {AS_IN}"))),
+        Err(error) => Err((error.wrong, error.remedy)),
+    }
 }
 
 /// The body at the start of a text, and what follows it.
@@ -141,6 +158,11 @@ mod tests {
             ("21st contact of Old Moon of Brae with Fenn", EventKind::Contact, 3, Some(0), 21),
             ("Opposition of Brae from Fenn", EventKind::Opposition, 2, Some(0), 1),
             ("contact of Ball on Brae", EventKind::Contact, 4, Some(2), 1),
+            ("ascending node of Fenn", EventKind::AscendingNode, 0, None, 1),
+            ("3rd stationary of Brae from Ball", EventKind::Stationary, 2, Some(4), 3),
+            ("greatest-elongation of Brae from Ball", EventKind::GreatestElongation, 2, Some(4), 1),
+            ("shadow-entry of Ball", EventKind::ShadowEntry, 4, None, 1),
+            ("penumbra-exit of Ball from Brae", EventKind::PenumbraExit, 4, Some(2), 1),
         ] {
             // The longest name wins: "Fenn to Brae" is a body, so "Fenn to Brae" alone states no other one.
             let got = event(text, &names());
@@ -148,8 +170,22 @@ mod tests {
                 assert_eq!(got.unwrap().body, BodyId(1), "{text}");
                 continue;
             }
-            let want = EventRef { kind, body: BodyId(body), other: other.map(BodyId), nth };
+            let want = EventRef { kind, body: BodyId(body), other: other.map(BodyId), nth, distance: None };
             assert_eq!(got, Ok(want), "{text}");
+        }
+    }
+
+    #[test]
+    fn a_distance_is_stated_before_the_body() {
+        for text in ["2nd distance 1.5 au of Ball from Brae", "2nd Distance  1.5 au of Ball to Brae"] {
+            let want = EventRef {
+                kind: EventKind::Distance,
+                body: BodyId(4),
+                other: Some(BodyId(2)),
+                nth: 2,
+                distance: Some(Length::parse("1.5 au").unwrap()),
+            };
+            assert_eq!(event(text, &names()), Ok(want));
         }
     }
 
@@ -164,6 +200,10 @@ mod tests {
             ("contact of Ball with Bral", "there is no body \"Bral\"", "perhaps \"Brae\""),
             ("contact of Ball with Ball", "names Ball twice", "another"),
             ("opposition of Brae", "from where it is seen", "add from"),
+            ("stationary of Brae", "from where it is seen", "add from"),
+            ("distance of Ball from Brae", "doesn't say which distance", "distance 1 au of Fenn"),
+            ("distance 0 km of Ball from Brae", "the distance is 0 km", "more than 0"),
+            ("distance 3 d of Ball from Brae", "d is a time", "a length is wanted"),
             ("0th periapsis of Fenn", "is no number of an event", "2nd"),
             ("2 periapsis of Fenn", "is no number of an event", "2nd"),
             ("99999999999999999999th periapsis of Fenn", "is no number", "10000"),

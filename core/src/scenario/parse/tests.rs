@@ -55,7 +55,8 @@ fn the_example_of_the_format_parses_as_it_stands() {
     assert_eq!(orbit.eccentricity, Some(0.88));
     assert_eq!(orbit.now, OrbitNow::AfterPeriapsis(Span::from_s(-140.0 * 86_400.0)));
     let [beat] = scenario.beats.as_slice() else { panic!("one beat") };
-    let periapsis = EventRef { kind: EventKind::Periapsis, body: BodyId(2), other: None, nth: 1 };
+    let periapsis =
+        EventRef { kind: EventKind::Periapsis, body: BodyId(2), other: None, nth: 1, distance: None };
     assert_eq!(
         beat.clock,
         BeatClock::Reach { event: periapsis, at: Span::from_s(40.0), lasts: Span::from_s(50.0) }
