@@ -9,11 +9,13 @@
 pub mod convert;
 pub mod elements;
 pub mod kepler;
+pub mod lambert;
 pub mod stumpff;
 pub mod universal;
 
 pub use convert::{elements_from_state, semi_major_from_state, state_from_elements};
 pub use elements::Elements;
+pub use lambert::lambert;
 pub use universal::propagate;
 
 /// Why a conic has no answer.
