@@ -163,10 +163,14 @@ impl Emptiness {
                     bottom: corner[1] + height,
                 };
                 let covered = self.sum(&sums, &rect.grown(clear));
+                let off = length(between([0.5 * frame.width, 0.5 * frame.height], rect.middle()));
+                let before_room = 100.0 * covered + off / (frame.width + frame.height);
+                // The room around a place takes the longest to find: not where none would be enough.
+                if best.is_some_and(|b| before_room - 10.0 >= b.0) {
+                    continue;
+                }
                 let room = if covered > 0.0 { 0.0 } else { self.least(&away, &rect).min(enough) };
-                let middle = rect.middle();
-                let off = length(between([0.5 * frame.width, 0.5 * frame.height], middle));
-                let score = 100.0 * covered - 10.0 * room / enough + off / (frame.width + frame.height);
+                let score = before_room - 10.0 * room / enough;
                 if best.is_none_or(|b| score < b.0) {
                     best = Some((score, Found { corner, covered, room: room / enough }));
                 }

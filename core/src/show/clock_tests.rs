@@ -297,6 +297,10 @@ proptest! {
             run(&mut clock, &plan, wait + 0.1);
         }
         while clock.glide.is_some() {
+            // A hold holds a glide too.
+            if clock.held() {
+                clock.act(&plan, Action::Hold);
+            }
             clock.advance(&plan, 1.0 / 60.0);
         }
         let again = Clock::resume(&plan, clock.bookmark());
