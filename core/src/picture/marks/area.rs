@@ -26,7 +26,7 @@ pub struct AreaLabel {
     pub rect: Rect,
     /// A line from its sector's rim, where it doesn't stand beside it.
     pub leader: Option<[Px; 2]>,
-    /// 0 while its sector still grows, 1 soon after.
+    /// 0 while its sector grows, 1 once it is whole.
     pub opacity: f64,
 }
 
@@ -97,10 +97,10 @@ impl Areas {
         };
         let calm_s = look::CALM_S * scene.pace.abs();
         let label = |(index, rect): (usize, Rect)| {
-            let since = scene.t_s - self.sectors.ends_s(index)[1];
-            let opacity = match since {
-                s if s < 0.0 => 0.0,
-                s if calm_s > 0.0 => look::ease(s / calm_s),
+            // Comes in as its sector closes: a beat may stand still from there on.
+            let opacity = match scene.t_s - self.sectors.ends_s(index)[1] {
+                since if calm_s > 0.0 => look::ease(1.0 + since / calm_s),
+                since if since < 0.0 => 0.0,
                 _ => 1.0,
             };
             let text = self.texts.iter().find(|t| t.0 == index)?.1.clone();
