@@ -201,7 +201,7 @@ fn planets_today_says_true_numbers() {
     }
     const AU_M: f64 = 149_597_870_700.0;
     for (name, au, years) in
-        [("Jupiter", 5.2, 11.9), ("Mars", 1.52, 1.88), ("Saturn", 9.5, 29.5), ("Neptune", 30.0, 165.0)]
+        [("Jupiter", 5.2, 11.86), ("Mars", 1.52, 1.88), ("Saturn", 9.5, 29.5), ("Neptune", 30.0, 165.0)]
     {
         let o = orbit(name, 0.0);
         let digit = if name == "Neptune" {
@@ -217,7 +217,7 @@ fn planets_today_says_true_numbers() {
         said(&format!("years of {name}"), o.period_s().expect("closed") / year_s, years, slack * digit);
     }
     said("the cube, Jupiter", 5.2 * 5.2 * 5.2, 141.0, 1.0);
-    said("the square, Jupiter", 11.9 * 11.9, 141.0, 1.3);
+    said("the square, Jupiter", 11.86 * 11.86, 141.0, 1.0);
     said("the cube, Mars", 1.52 * 1.52 * 1.52, 3.5, 0.1);
     said("the square, Mars", 1.88 * 1.88, 3.5, 0.1);
     let rounds = |name: &str| year_s / orbit(name, 0.0).period_s().expect("closed");

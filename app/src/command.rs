@@ -101,6 +101,9 @@ pub enum Heard {
 /// A second `Next` within this many milliseconds is taken for a slip of the hand.
 pub const NEXT_APART_MS: f64 = 250.0;
 
+/// A number that isn't finished within this many milliseconds is given up: a stray digit must not wait for an Enter.
+pub const TYPING_MS: f64 = 4000.0;
+
 /// Longest beat number that can be typed.
 const DIGITS_MOST: usize = 3;
 
@@ -108,6 +111,7 @@ const DIGITS_MOST: usize = 3;
 #[derive(Debug, Default)]
 pub struct Hands {
     typed: String,
+    typed_ms: f64,
     last_next_ms: Option<f64>,
 }
 
@@ -117,7 +121,11 @@ impl Hands {
         if press.modified {
             return Heard::Nothing;
         }
+        if now_ms - self.typed_ms > TYPING_MS {
+            self.typed.clear();
+        }
         if press.key.len() == 1 && press.key.as_bytes()[0].is_ascii_digit() {
+            self.typed_ms = now_ms;
             return self.digit(press);
         }
         if !self.typed.is_empty() {
@@ -226,6 +234,15 @@ mod tests {
             "escape gives up the number, not the show"
         );
         assert_eq!(hands.press(key("Escape"), 8.0), Heard::Do(Command::Leave));
+    }
+
+    #[test]
+    fn a_stray_digit_does_not_wait_for_an_enter() {
+        let mut hands = Hands::default();
+        hands.press(key("1"), 0.0);
+        assert_eq!(hands.press(key("Enter"), TYPING_MS + 1.0), Heard::Nothing);
+        hands.press(key("2"), 10_000.0);
+        assert_eq!(hands.press(key("Enter"), 10_500.0), Heard::Do(Command::Jump(1)));
     }
 
     #[test]

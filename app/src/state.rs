@@ -43,12 +43,22 @@ struct Pending {
     at: Option<Place>,
 }
 
+/// A rehearsed show that waits for the presenter's word.
+#[derive(Debug)]
+struct Offer {
+    pending: Pending,
+    fingerprint: String,
+    numbers: Vec<f64>,
+}
+
 /// What isn't reactive.
 #[derive(Debug, Default)]
 struct Works {
     house: Rc<RefCell<Option<House>>>,
     link: RefCell<Option<Link>>,
     pending: RefCell<Option<Pending>>,
+    /// A show that is ready while another one runs.
+    offer: RefCell<Option<Offer>>,
     hands: RefCell<Hands>,
     runs: RefCell<u32>,
     wake: RefCell<Option<WakeLock>>,
@@ -82,6 +92,8 @@ pub struct State {
     pub keys: RwSignal<bool>,
     /// Whether the question before leaving is open.
     pub leaving: RwSignal<bool>,
+    /// Whether the question before another show is open.
+    pub offering: RwSignal<bool>,
     works: StoredValue<Rc<Works>, LocalStorage>,
 }
 
@@ -121,6 +133,7 @@ impl State {
             words: RwSignal::new(false),
             keys: RwSignal::new(false),
             leaving: RwSignal::new(false),
+            offering: RwSignal::new(false),
             works: StoredValue::new_local(Rc::clone(&works)),
         };
         let link = Link::new(move |news| state.hear(news));
@@ -263,7 +276,17 @@ impl State {
             }
             FromWorker::Rehearsed { run, fingerprint } => {
                 if let (Some(pending), Some(numbers)) = (self.take_pending(run), numbers) {
-                    self.raise(pending, fingerprint, numbers.to_vec());
+                    let offer = Offer { pending, fingerprint, numbers: numbers.to_vec() };
+                    let running = self.with_house(|_| ()).is_some();
+                    if running && self.place.get_untracked() == Where::Present {
+                        self.rehearsing.set(None);
+                        self.works().offer.replace(Some(offer));
+                        self.keys.set(false);
+                        self.leaving.set(false);
+                        self.offering.set(true);
+                    } else {
+                        self.raise(offer);
+                    }
                 }
             }
             FromWorker::Card { run, facts } => self.shows.facts(run, facts),
@@ -272,8 +295,8 @@ impl State {
     }
 
     /// Puts a rehearsed show on the stage.
-    fn raise(&self, pending: Pending, fingerprint: String, numbers: Vec<f64>) {
-        let Pending { source, at, .. } = pending;
+    fn raise(&self, offer: Offer) {
+        let Offer { pending: Pending { source, at, .. }, fingerprint, numbers } = offer;
         let show = match crate::carry::unpack(&source.text, numbers) {
             Ok(show) => show,
             Err(why) => {
@@ -295,6 +318,26 @@ impl State {
         self.place.set(Where::Present);
         self.keep_lit();
         self.keep_place();
+    }
+
+    /// Name of the file that waits to be put on.
+    pub fn offered_name(&self) -> String {
+        let works = self.works();
+        let offer = works.offer.borrow();
+        offer.as_ref().map(|offer| offer.pending.source.name.clone()).unwrap_or_default()
+    }
+
+    /// Puts on the show that waits.
+    pub fn accept(&self) {
+        let offer = self.works().offer.take();
+        self.offering.set(false);
+        offer.into_iter().for_each(|offer| self.raise(offer));
+    }
+
+    /// Lets the running show stay on.
+    pub fn decline(&self) {
+        self.works().offer.take();
+        self.offering.set(false);
     }
 
     /// Keeps the screen lit while a show is on.
@@ -410,7 +453,9 @@ impl State {
         if self.close_panel() {
             return;
         }
-        if self.keys.get_untracked() {
+        if self.offering.get_untracked() {
+            self.decline();
+        } else if self.keys.get_untracked() {
             self.keys.set(false);
         } else {
             self.leaving.update(|open| *open = !*open);

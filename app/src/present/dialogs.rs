@@ -1,4 +1,4 @@
-//! The two dialogs of a running show: all keys, and the question before leaving. The show goes on under both.
+//! The dialogs of a running show: all keys, and the questions before leaving and before another show. The show goes on under them.
 
 use crate::command::KEY_TABLE;
 use crate::state::State;
@@ -25,6 +25,10 @@ pub fn KeysCard() -> impl IntoView {
     let state = expect_context::<State>();
     let dialog = NodeRef::new();
     follow(dialog, state.keys);
+    let fingerprint = move || {
+        state.keys.track();
+        state.with_house(|house| house.fingerprint().to_owned()).unwrap_or_default()
+    };
     let rows = KEY_TABLE
         .iter()
         .map(|row| view! { <tr><th scope="row">{row.printed}</th><td>{row.does}</td></tr> })
@@ -51,6 +55,10 @@ pub fn KeysCard() -> impl IntoView {
                     "Leave the show"
                 </button>
             </div>
+            <p class="about">
+                "Fingerprint of this show: " <b>{fingerprint}</b>
+                ". Where another computer shows the same one, it holds the same show."
+            </p>
             <table>
                 <tbody>
                     {rows}
@@ -82,6 +90,35 @@ pub fn LeaveQuestion() -> impl IntoView {
             <div class="presses">
                 <button type="button" class="press first" on:click=move |_| state.leaving.set(false)>"Stay"</button>
                 <button type="button" class="press" on:click=move |_| state.leave()>"Leave"</button>
+            </div>
+        </dialog>
+    }
+}
+
+/// The question before another show takes the place of the running one.
+#[component]
+pub fn OfferQuestion() -> impl IntoView {
+    let state = expect_context::<State>();
+    let dialog = NodeRef::new();
+    follow(dialog, state.offering);
+    let cancel = move |event: ev::Event| event.prevent_default();
+    let name = move || {
+        state.offering.track();
+        state.offered_name()
+    };
+    view! {
+        <dialog
+            class="panel"
+            node_ref=dialog
+            aria-labelledby="offer-title"
+            on:cancel=cancel
+            on:close=move |_| state.decline()
+        >
+            <h2 id="offer-title">"Put on " {name} "?"</h2>
+            <p>{move || state.title.get()} " goes on while you decide. Its place is not kept once the other show is on."</p>
+            <div class="presses">
+                <button type="button" class="press first" on:click=move |_| state.decline()>"Keep this show"</button>
+                <button type="button" class="press" on:click=move |_| state.accept()>"Put it on"</button>
             </div>
         </dialog>
     }

@@ -10,7 +10,7 @@ use crate::panels::Progress;
 use crate::stage::StageCanvas;
 use crate::state::State;
 use controls::Controls;
-use dialogs::{KeysCard, LeaveQuestion};
+use dialogs::{KeysCard, LeaveQuestion, OfferQuestion};
 use leptos::ev;
 use leptos::prelude::*;
 use leptos_use::{use_event_listener, use_window};
@@ -26,9 +26,11 @@ const STAY: Duration = Duration::from_secs(3);
 #[component]
 pub fn Present() -> impl IntoView {
     let state = expect_context::<State>();
-    let shown = hands_seen();
+    let shown = hands_seen(state);
     _ = use_event_listener(use_window(), ev::keydown, move |event| hear(state, &event));
-    let covered = move || state.keys.get() || state.leaving.get() || state.trouble.with(Option::is_some);
+    let covered = move || {
+        state.keys.get() || state.leaving.get() || state.offering.get() || state.trouble.with(Option::is_some)
+    };
     let away = Signal::derive(move || !shown.get() || covered());
     view! {
         <main class="present" class:still=move || !shown.get() class:speaking=move || state.words.get()>
@@ -43,11 +45,13 @@ pub fn Present() -> impl IntoView {
         </main>
         <KeysCard/>
         <LeaveQuestion/>
+        <OfferQuestion/>
     }
 }
 
-/// Whether a pointer, a touch or the focus has been at work in the last three seconds.
-fn hands_seen() -> ReadSignal<bool> {
+/// Whether a pointer, a touch or the focus has been at work in the last three seconds. A pointer that only moves leaves a
+/// black house black.
+fn hands_seen(state: State) -> ReadSignal<bool> {
     let (shown, set_shown) = signal(true);
     let timer = StoredValue::new_local(None::<TimeoutHandle>);
     let seen = move || {
@@ -61,7 +65,11 @@ fn hands_seen() -> ReadSignal<bool> {
         };
         timer.set_value(set_timeout_with_handle(hide, STAY).ok());
     };
-    _ = use_event_listener(use_window(), ev::pointermove, move |_| seen());
+    _ = use_event_listener(use_window(), ev::pointermove, move |_| {
+        if !state.readout.with_untracked(|r| r.blackout) {
+            seen();
+        }
+    });
     _ = use_event_listener(use_window(), ev::pointerdown, move |_| seen());
     _ = use_event_listener(use_window(), ev::focusin, move |_| seen());
     on_cleanup(move || timer.update_value(|timer| timer.take().into_iter().for_each(|timer| timer.clear())));
@@ -75,6 +83,17 @@ fn focus_in_controls() -> bool {
     document.and_then(|d| d.query_selector(".controls :focus-visible").ok().flatten()).is_some()
 }
 
+/// What the arrow keys scroll the words to say by, px.
+const SCROLL_PX: f64 = 96.0;
+
+/// Scrolls the words to say, which need no focus for it.
+fn scroll_words(by_px: f64) {
+    let document = web_sys::window().and_then(|w| w.document());
+    if let Some(say) = document.and_then(|d| d.query_selector(".words-to-say .say").ok().flatten()) {
+        say.scroll_by_with_x_and_y(0.0, by_px);
+    }
+}
+
 /// Hears a key, unless it belongs to what has the focus.
 fn hear(state: State, event: &web_sys::KeyboardEvent) {
     let key = event.key();
@@ -83,7 +102,13 @@ fn hear(state: State, event: &web_sys::KeyboardEvent) {
     let for_focus = match key.as_str() {
         // In a dialog and in the list of problems, these are for what has the focus.
         "Enter" | " " | "Tab" => within("dialog, .problems, .progress"),
-        "ArrowUp" | "ArrowDown" => true,
+        "ArrowUp" | "ArrowDown" => {
+            if state.words.get_untracked() && !within("dialog, .problems, .say") {
+                scroll_words(if key == "ArrowUp" { -SCROLL_PX } else { SCROLL_PX });
+                event.prevent_default();
+            }
+            true
+        }
         // A focused button is pressed by Enter; a number being typed is finished by it elsewhere.
         _ => false,
     };

@@ -7,7 +7,7 @@ use crate::drawing::Drawing;
 use crate::keep::{Mark, Place, Source};
 use fallaround_core::picture::frame::Frame;
 use fallaround_core::picture::view::Camera;
-use fallaround_core::picture::{Composer, DisplayList, Options, Screen, Shape, Tag, look};
+use fallaround_core::picture::{Composer, DisplayList, Options, Screen, Shape, Tag};
 use fallaround_core::show::{Action, Clock, Moment, Show};
 use serde::Serialize;
 use web_sys::{CanvasRenderingContext2d, HtmlCanvasElement};
@@ -131,6 +131,7 @@ impl House {
     pub fn set_reduced_motion(&mut self, reduced: bool) {
         if self.reduced_motion != reduced {
             self.reduced_motion = reduced;
+            self.clock.set_calm(reduced);
             self.composer = None;
         }
     }
@@ -255,7 +256,7 @@ impl House {
     fn metres_per_px(&self, moment: &Moment) -> Option<f64> {
         let (screen, _) = self.composer.as_ref()?;
         let view = &self.show.scenario.beats.get(moment.beat)?.view;
-        let moving = moment.before.is_some() && !self.reduced_motion && moment.since_cut_s < look::SCENE_S;
+        let moving = !moment.lately.as_slice().is_empty();
         let camera = Camera::of(&self.show, view, moment.model_s, &Frame::new(*screen));
         (!moving).then(|| 1.0 / camera.px_per_m)
     }

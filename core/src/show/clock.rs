@@ -16,7 +16,7 @@ use crate::scenario::Then;
 pub enum Action {
     /// Starts the show; then on to the next beat. Lets go of a hold.
     Next,
-    /// To the start of the beat before. Right after a [`Action::Next`]: back to where that was pressed.
+    /// To the start of the beat before. Right after a change of beat: back to where that was asked for.
     Back,
     /// The model stands still, or goes on again.
     Hold,
@@ -88,7 +88,7 @@ pub const SPEED_STEP: f64 = 1.25;
 pub const SPEED_MOST: i32 = 8;
 /// Show seconds in which a hold takes hold.
 const HOLD_S: f64 = 0.4;
-/// Show seconds after `Next` in which `Back` undoes it.
+/// Show seconds after a change of beat in which `Back` undoes it.
 const UNDO_S: f64 = 5.0;
 
 /// The show clock.
@@ -114,7 +114,10 @@ pub struct Clock {
     /// Rate from which it is being eased.
     rate_from: f64,
     glide: Option<Glide>,
-    undo: Option<Bookmark>,
+    /// Where a change was asked for that can still be taken back, and the show time there.
+    undo: Option<(Bookmark, f64)>,
+    /// Whether model time changes under a veil only, for people whom motion disturbs.
+    calm: bool,
 }
 
 impl Clock {
@@ -139,6 +142,7 @@ impl Clock {
             rate_from: 0.0,
             glide: None,
             undo: None,
+            calm: false,
         };
         if let Some(beat) = plan.beats.first() {
             clock.pacing = beat.pacing(from_s, 0.0, 0.0);
@@ -237,6 +241,11 @@ impl Clock {
         self.speed
     }
 
+    /// Whether model time is to change under a veil only, for people whom motion disturbs.
+    pub const fn set_calm(&mut self, calm: bool) {
+        self.calm = calm;
+    }
+
     /// Does what the presenter asks. Returns whether it changed anything (on the last beat there is no next).
     pub fn act(&mut self, plan: &Plan, action: Action) -> bool {
         if plan.beats.is_empty() {
@@ -252,19 +261,21 @@ impl Clock {
                 if self.beat + 1 >= plan.beats.len() {
                     return false;
                 }
-                let undo = self.bookmark();
+                let undo = (self.bookmark(), self.show_s);
                 self.enter(plan, self.beat + 1, Some(self.beat));
                 self.undo = Some(undo);
             }
+            Action::Back if self.waiting && self.undo.is_none() => return false,
             Action::Back => self.back(plan),
             Action::Hold if self.waiting => return self.act(plan, Action::Next),
             Action::Hold => {
                 self.held = !self.held;
                 self.ease_rate();
             }
-            Action::RestartBeat => self.go_to(plan, self.beat),
+            Action::RestartBeat | Action::RestartShow if self.waiting => return false,
+            Action::RestartBeat => self.leap(plan, self.beat),
             Action::RestartShow => {
-                self.go_to(plan, 0);
+                self.leap(plan, 0);
                 self.waiting = true;
                 self.show_s = 0.0;
                 self.ease_rate();
@@ -273,7 +284,7 @@ impl Clock {
                 if beat >= plan.beats.len() {
                     return false;
                 }
-                self.go_to(plan, beat);
+                self.leap(plan, beat);
             }
             Action::Faster | Action::Slower => {
                 let step = if action == Action::Faster { 1 } else { -1 };
@@ -371,10 +382,10 @@ impl Clock {
 
     fn back(&mut self, plan: &Plan) {
         match self.undo.take() {
-            Some(mark) => {
+            Some((mark, show_s)) => {
                 let now = self.moment(plan);
-                let show_s = self.show_s;
                 let mut clock = Self::resume(plan, mark);
+                clock.calm = self.calm;
                 let target_s = clock.pacing.model_s(clock.beat_s);
                 let reach = self.reach_pace(plan, mark.beat);
                 clock.glide = Glide::between(now.model_s, target_s, [0.0; 2], reach, now.veil);
@@ -387,6 +398,13 @@ impl Clock {
             }
             None => self.go_to(plan, self.beat.saturating_sub(1)),
         }
+    }
+
+    /// To the planned start of a beat, with a way back.
+    fn leap(&mut self, plan: &Plan, index: usize) {
+        let undo = (self.bookmark(), self.show_s);
+        self.go_to(plan, index);
+        self.undo = Some(undo);
     }
 
     /// To the planned start of a beat.
@@ -456,6 +474,9 @@ impl Clock {
 
     /// The quicker of the planned paces on both sides of a change: what the eye is used to.
     fn reach_pace(&self, plan: &Plan, to: usize) -> f64 {
+        if self.calm {
+            return 0.0;
+        }
         let pace = |index: usize| plan.beats.get(index).map_or(0.0, |beat| beat.pace.abs());
         pace(self.beat).max(pace(to))
     }

@@ -220,6 +220,53 @@ fn the_show_goes_back_to_its_start_and_waits_there() {
 }
 
 #[test]
+fn back_undoes_a_restart_and_a_jump_too() {
+    let plan = plan();
+    for wrong in [Action::RestartShow, Action::RestartBeat, Action::Jump(3)] {
+        let mut clock = at(&plan, 1);
+        run(&mut clock, &plan, 20.0);
+        let (before, show_s) = (clock.moment(&plan), clock.show_s());
+        clock.act(&plan, wrong);
+        run(&mut clock, &plan, 2.0);
+        clock.act(&plan, Action::Back);
+        clock.act(&plan, Action::Hold);
+        run(&mut clock, &plan, 5.0);
+        clock.act(&plan, Action::Hold);
+        run(&mut clock, &plan, 3.2);
+        let now = clock.moment(&plan);
+        assert!(now.beat == 1 && !clock.waiting(), "{wrong:?}");
+        let off_s = now.model_s - before.model_s;
+        assert!((-0.1 * DAY..8.0 * DAY).contains(&off_s), "{wrong:?}: {} d off", off_s / DAY);
+        assert!(clock.show_s() >= show_s, "{wrong:?}");
+    }
+}
+
+#[test]
+fn nothing_starts_a_waiting_show_but_next_and_hold_and_a_jump() {
+    let plan = plan();
+    let mut clock = Clock::new(&plan);
+    for action in [Action::Back, Action::RestartBeat, Action::RestartShow] {
+        assert!(!clock.act(&plan, action) && clock.waiting(), "{action:?}");
+    }
+}
+
+#[test]
+fn a_calm_clock_changes_model_time_under_a_full_veil_only() {
+    let plan = plan();
+    let mut clock = at(&plan, 1);
+    clock.set_calm(true);
+    run(&mut clock, &plan, 20.0);
+    clock.act(&plan, Action::RestartBeat);
+    let mut before = clock.moment(&plan);
+    for _ in 0..120 {
+        clock.advance(&plan, 1.0 / 60.0);
+        let now = clock.moment(&plan);
+        assert!(now.model_s >= before.model_s || now.veil.min(before.veil) > 0.9);
+        before = now;
+    }
+}
+
+#[test]
 fn the_last_beat_has_no_next_and_wrong_jumps_are_refused() {
     let plan = plan();
     let mut clock = at(&plan, 4);

@@ -8,8 +8,8 @@ use crate::math::float;
 
 /// Radius from which a body starts to turn from a bright disc into a dark solid, and at which it is one; parts of the
 /// picture's height. A bright disc of that size would light the room.
-const SOLID_FROM: f64 = 1.0 / 24.0;
-const SOLID_AT: f64 = 1.0 / 9.0;
+const SOLID_FROM: f64 = 1.0 / 45.0;
+const SOLID_AT: f64 = 1.0 / 18.0;
 
 /// Whether a body is large enough to hide lines behind it.
 pub fn is_solid(spot: &Spot, part: f64) -> bool {
