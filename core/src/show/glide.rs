@@ -128,20 +128,6 @@ mod tests {
     use super::*;
     use proptest::prelude::*;
 
-    #[test]
-    fn a_glide_arrives_at_every_frame_rate() {
-        for way in [3.0, 20.0, 55.5, 100.0] {
-            for n in 1..2000 {
-                let frame_s = 1.0 / (7.0 + f64::from(n) / 8.0);
-                let mut glide = Glide::between(0.0, way, [0.0; 2], 1.0, 0.0).unwrap();
-                for _ in 0..2000 {
-                    glide.advance(frame_s);
-                }
-                assert!(glide.over(), "{} s of {} s at {frame_s} s a frame", glide.gone_s(), glide.lasts_s());
-            }
-        }
-    }
-
     proptest! {
         #[test]
         fn a_glide_is_monotone_and_arrives(
