@@ -32,14 +32,18 @@ fn a_show_opens_after_the_server_has_stopped() {
 
 #[test]
 fn a_reload_comes_back_to_the_same_beat_and_instant() {
-    let title = house::rehearse(&house::text(&house::folder(SHOW))).scenario.title;
+    let show = house::rehearse(&house::text(&house::folder(SHOW)));
     let server = Server::start();
     let session = Session::start();
     session.open(&server.address);
-    session.open_show(&title);
+    session.open_show(&show.scenario.title);
     for beat in 0..3 {
         assert_eq!(session.next()["beat"], beat);
     }
+    let from_s = show.plan.beats[2].from_s;
+    session.wait_for("the beat itself, after the way to it", || {
+        (session.frame()?["model_s"].as_f64()? > from_s).then_some(())
+    });
     session.press("x");
     let held = session.wait_for("the model to stand still", || {
         let frame = session.frame()?;

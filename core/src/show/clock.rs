@@ -193,7 +193,10 @@ impl Clock {
     /// The instant, for the picture.
     pub fn moment(&self, plan: &Plan) -> Moment {
         let (model_s, pace, veil) = match &self.glide {
-            Some(glide) => (glide.model_s(), glide.pace(), glide.veil()),
+            Some(glide) => {
+                let rate = if glide.veiled() || self.waiting { 1.0 } else { self.rate };
+                (glide.model_s(), glide.pace() * rate, glide.veil())
+            }
             None => (self.pacing.model_s(self.beat_s), self.pacing.pace_at(self.beat_s) * self.rate, 0.0),
         };
         let within = model_s.clamp(plan.covers_from_s, plan.covers_until_s);

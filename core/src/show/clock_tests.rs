@@ -203,6 +203,8 @@ fn a_hold_holds_a_glide_too() {
     let held = clock.moment(&plan).model_s;
     run(&mut clock, &plan, 20.0);
     assert!((clock.moment(&plan).model_s - held).abs() == 0.0 && held < 100.0 * DAY);
+    // What stands still has no pace to be shown.
+    assert!(clock.moment(&plan).pace.abs() == 0.0, "{}", clock.moment(&plan).pace);
     clock.act(&plan, Action::Hold);
     run(&mut clock, &plan, 25.0);
     assert!(clock.moment(&plan).model_s > 140.0 * DAY);
