@@ -67,3 +67,13 @@ fn bad_files_give_each_of_their_problems_with_its_place() {
         }
     }
 }
+
+#[test]
+fn the_format_page_is_what_the_program_reads() {
+    let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("../scenarios/FORMAT.md");
+    let written = fs::read_to_string(&path).unwrap_or_else(|e| panic!("{}: {e}", path.display()));
+    assert!(
+        written.replace("\r\n", "\n") == fallaround_core::scenario::format_page(),
+        "scenarios/FORMAT.md is out of date: cargo run -p fallaround-core --example format > scenarios/FORMAT.md"
+    );
+}

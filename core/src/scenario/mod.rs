@@ -7,6 +7,7 @@ pub mod edit;
 pub mod grammar;
 pub mod model;
 mod names;
+mod page;
 pub mod parse;
 pub mod problem;
 mod reader;
@@ -14,6 +15,7 @@ mod source;
 pub mod today;
 
 pub use model::*;
+pub use page::format_page;
 pub use parse::{Parsed, parse, parse_bytes};
 pub use problem::{Place, Problem, Severity};
 pub use today::dated;
