@@ -6,11 +6,12 @@ use std::fs;
 use std::path::{Path, PathBuf};
 
 /// The floors of core, from the ground up. A module may use what lies below it, and nothing beside or above.
-const FLOORS: [&str; 14] = [
+const FLOORS: [&str; 15] = [
     "math",
     "constants",
     "units",
     "time",
+    "air",
     "scenario",
     "initial",
     "conic",

@@ -1,6 +1,7 @@
 //! Where everything starts: what a scenario comes down to, and all that the integrator needs.
 
 use crate::Vector3;
+use crate::air::Air;
 use crate::scenario::{BodyId, Change, Surface};
 
 /// Everything that the integrator needs. Barycentric: the centre of mass of all massive bodies is at rest at the origin.
@@ -42,6 +43,30 @@ pub struct Forces {
     pub relativity: bool,
     /// Oblate bodies.
     pub oblate: Vec<Oblate>,
+    /// Bodies with air around them.
+    pub atmospheres: Vec<Atmosphere>,
+    /// Bodies that air slows.
+    pub drags: Vec<Drag>,
+}
+
+/// The air around a body. It does not turn.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Atmosphere {
+    /// Around which one.
+    pub body: BodyId,
+    /// From which radius heights are counted, m.
+    pub radius_m: f64,
+    /// The air.
+    pub air: Air,
+}
+
+/// What a body offers to air.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Drag {
+    /// Which body.
+    pub body: BodyId,
+    /// Coefficient of drag times cross-section over mass, m²/kg.
+    pub area_m2_kg: f64,
 }
 
 /// A body whose equator bulges.

@@ -3,6 +3,7 @@
 //! Values marked "from memory" were written down without the publication at hand; each of them is also checked
 //! against the equation that it illustrates, so that a slip of memory would fail.
 
+mod air;
 mod apparitions;
 mod areas;
 mod changes;

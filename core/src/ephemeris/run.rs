@@ -58,6 +58,9 @@ pub(super) struct Run {
     /// Numbers of all bodies in the step.
     numbers: Vec<f64>,
     reaches_m: Vec<f64>,
+    /// Positions and velocities of the free bodies, where the field looks at them before a step.
+    pos: Vec<f64>,
+    vel: Vec<f64>,
 }
 
 impl Run {
@@ -80,6 +83,8 @@ impl Run {
             moving: Vec::new(),
             numbers: vec![0.0; n * PER_BODY],
             reaches_m: Vec::new(),
+            pos: Vec::new(),
+            vel: Vec::new(),
         };
         run.set_off(initial, 0.0, &states, first_s);
         run
@@ -105,9 +110,11 @@ impl Run {
 
     /// Starts from states of the free bodies.
     fn set_off(&mut self, initial: &InitialState, t_s: f64, states: &[State], first_step_s: f64) {
-        let pos: Vec<f64> = states.iter().flat_map(|s| <[f64; 3]>::from(s.pos)).collect();
-        let vel: Vec<f64> = states.iter().flat_map(|s| <[f64; 3]>::from(s.vel)).collect();
-        self.radau = Radau::new(t_s, &pos, &vel, first_step_s);
+        self.pos.clear();
+        self.pos.extend(states.iter().flat_map(|s| <[f64; 3]>::from(s.pos)));
+        self.vel.clear();
+        self.vel.extend(states.iter().flat_map(|s| <[f64; 3]>::from(s.vel)));
+        self.radau = Radau::new(t_s, &self.pos, &self.vel, first_step_s);
         let pull = |body: usize| if self.acts[body] { self.gms[body] } else { 0.0 };
         self.field =
             Field::of(self.free.iter().map(|&body| pull(body)).collect(), &initial.forces, &self.free);
@@ -140,6 +147,10 @@ impl Run {
         if let Some(t_s) = change_s.filter(|&t_s| t_s <= start_s) {
             let switches = self.change(initial, t_s, self.states(), self.radau.step_s());
             return Ok(Step { start_s, step_s: 0.0, contact: None, switches });
+        }
+        self.radau.state(&mut self.pos, &mut self.vel);
+        if let Some(longest_s) = self.field.longest_step_s(&self.pos, &self.vel) {
+            self.radau.limit_step(longest_s);
         }
         self.radau.solve(&mut self.field)?;
         for (place, numbers) in self.moving.chunks_exact_mut(PER_BODY).enumerate() {
@@ -178,8 +189,7 @@ impl Run {
 
     /// States of the free bodies where the integration stands.
     fn states(&self) -> Vec<State> {
-        let n = 3 * self.free.len();
-        let (mut pos, mut vel) = (vec![0.0; n], vec![0.0; n]);
+        let (mut pos, mut vel) = (self.pos.clone(), self.vel.clone());
         self.radau.state(&mut pos, &mut vel);
         let vector = |row: &[f64]| Vector3::new(row[0], row[1], row[2]);
         let both = pos.chunks_exact(3).zip(vel.chunks_exact(3));

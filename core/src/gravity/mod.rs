@@ -6,11 +6,13 @@
 
 use crate::initial::{Forces, InitialState};
 
+mod drag;
 mod newton;
 mod oblateness;
 mod post_newtonian;
 mod resting;
 
+use drag::Drags;
 use oblateness::Bulge;
 use post_newtonian::PostNewtonian;
 use resting::Resting;
@@ -24,6 +26,7 @@ pub struct Field {
     massive: Vec<usize>,
     relativity: Option<PostNewtonian>,
     bulges: Vec<Bulge>,
+    drags: Vec<Drags>,
     resting: Resting,
 }
 
@@ -42,7 +45,15 @@ impl Field {
         let massive: Vec<usize> = (0..gms.len()).filter(|&i| gms[i] != 0.0).collect();
         let relativity = forces.relativity.then(|| PostNewtonian::new(&gms));
         let bulges = forces.oblate.iter().filter_map(|o| Some(Bulge::new(local(o.body.0)?, o))).collect();
-        Self { gms, massive, relativity, bulges, resting: Resting::default() }
+        let mut drags = Vec::new();
+        for drag in &forces.drags {
+            for air in forces.atmospheres.iter().filter(|air| air.body != drag.body) {
+                if let (Some(body), Some(host)) = (local(drag.body.0), local(air.body.0)) {
+                    drags.push(Drags::new(body, drag, host, air));
+                }
+            }
+        }
+        Self { gms, massive, relativity, bulges, drags, resting: Resting::default() }
     }
 
     /// Adds a mass that rests on a body, at a fixed offset from its centre, m.
@@ -60,9 +71,16 @@ impl Field {
         &self.gms
     }
 
-    /// Whether the accelerations depend on the velocities.
-    pub fn needs_velocities(&self) -> bool {
-        self.relativity.is_some()
+    /// Whether the accelerations depend on the velocities, with the slightest forces worked out `anew` or not.
+    pub fn needs_velocities(&self, anew: bool) -> bool {
+        anew && self.relativity.is_some() || !self.drags.is_empty()
+    }
+
+    /// The longest step that the forces allow from a state, s, where they allow less than gravity does: in air. It is not a
+    /// number, or infinite, where they don't.
+    pub fn longest_step_s(&self, pos: &[f64], vel: &[f64]) -> Option<f64> {
+        let steps = self.drags.iter().map(|drag| drag.longest_step_s(&self.gms, pos, vel));
+        steps.reduce(f64::min)
     }
 
     /// How much of the accelerations the slightest forces are at most. Taken as they were before positions and velocities
@@ -103,6 +121,9 @@ impl Field {
         for bulge in &self.bulges {
             bulge.add(&self.gms, pos, out);
         }
+        for drag in &self.drags {
+            drag.add(&self.gms, pos, vel, out);
+        }
         // Last: it shares out what the others found among the parts of a body.
         self.resting.add(&self.gms, pos, out);
     }
@@ -112,7 +133,8 @@ impl Field {
 mod tests {
     use super::*;
     use crate::Vector3;
-    use crate::initial::{InitialBody, Oblate};
+    use crate::air::Air;
+    use crate::initial::{Atmosphere, Drag, InitialBody, Oblate};
     use crate::scenario::{BodyId, Surface};
     use proptest::prelude::*;
 
@@ -137,9 +159,13 @@ mod tests {
     proptest! {
         #[test]
         fn all_forces_but_relativity_keep_momentum(bodies in bodies()) {
+            let air = Atmosphere { body: BodyId(0), radius_m: 1e10, air: Air::exponential(1e-9, 1e10) };
             let forces = Forces {
                 relativity: false,
                 oblate: vec![Oblate { body: BodyId(1), j2: 0.01, radius_m: 7e6, pole: Vector3::new(0.0, 0.6, 0.8) }],
+                // What has no mass takes up no momentum.
+                atmospheres: if bodies[0].gm_m3_s2 > 0.0 { vec![air] } else { Vec::new() },
+                drags: vec![Drag { body: BodyId(1), area_m2_kg: 1e-2 }],
             };
             let pos: Vec<f64> = bodies.iter().flat_map(|b| b.pos.as_slice().to_vec()).collect();
             let vel: Vec<f64> = bodies.iter().flat_map(|b| b.vel.as_slice().to_vec()).collect();

@@ -116,6 +116,11 @@ impl Radau {
         self.t_s
     }
 
+    /// Keeps the next step from being longer than this, s. What is not a number is no limit.
+    pub fn limit_step(&mut self, longest_s: f64) {
+        self.next_step_s = self.next_step_s.signum() * self.next_step_s.abs().min(longest_s);
+    }
+
     /// Length of the step that [`Radau::solve`] found, s; negative where time goes back.
     pub const fn step_s(&self) -> f64 {
         self.step_s
@@ -260,7 +265,7 @@ impl Radau {
         for round in 0..MOST_ROUNDS {
             let (mut changed, mut largest) = (0.0_f64, 0.0_f64);
             for node in 1..8 {
-                self.place(node, anew && field.needs_velocities());
+                self.place(node, field.needs_velocities(anew));
                 field.accelerations_at(node, anew, &self.pos, &self.vel, &mut self.acc);
                 let (change, acc) = match node {
                     1 => self.correct::<1>(),

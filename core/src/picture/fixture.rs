@@ -109,6 +109,8 @@ pub(crate) fn body(name: &str, kind: Kind, colour: Colour) -> Body {
         radius: None,
         colour,
         surface: Surface::Stop,
+        atmosphere: None,
+        drag: None,
         form: Form::Origin,
         place: Place::default(),
     }

@@ -4,11 +4,12 @@
 //! as unseen companions where one of its own is `real`; last, all is moved so that the centre of mass of the massive
 //! bodies rests at the origin.
 
-pub use crate::initial::{Forces, InitialBody, InitialState, Oblate};
+pub use crate::initial::{Atmosphere, Drag, Forces, InitialBody, InitialState, Oblate};
 
 use crate::Vector3;
+use crate::air::Air;
 use crate::ephemeris::State;
-use crate::scenario::{Body, BodyId, Form, Place, Problem, RealBody, Scenario, Severity};
+use crate::scenario::{self, Body, BodyId, Form, Place, Problem, RealBody, Scenario, Severity};
 
 mod forms;
 mod order;
@@ -72,7 +73,7 @@ pub fn resolve(scenario: &Scenario) -> Result<InitialState, Vec<Problem>> {
         problems.sort_by_key(|problem| problem.place);
         return Err(problems);
     }
-    let forces = forces(scenario, &reals);
+    let forces = forces(scenario, &initial, &reals);
     to_barycentre(&mut initial);
     let mut changes = scenario.changes.clone();
     // Those of the same instant keep the order of the file.
@@ -235,7 +236,7 @@ fn companion(body: RealBody, state: &State) -> InitialBody {
         name: facts.name.to_owned(),
         gm_m3_s2: facts.gm_m3_s2,
         radius_m: facts.radius_m,
-        surface: crate::scenario::Surface::Stop,
+        surface: scenario::Surface::Stop,
         primary: None,
         pos: state.pos,
         vel: state.vel,
@@ -263,7 +264,7 @@ fn find_shared_places(initial: &[InitialBody], bodies: &[Body], problems: &mut V
 
 /// The forces beyond Newton's: those that real bodies bring along, unless `[physics]` says otherwise. Oblateness is the
 /// Earth's alone.
-fn forces(scenario: &Scenario, reals: &[Option<RealBody>]) -> Forces {
+fn forces(scenario: &Scenario, initial: &[InitialBody], reals: &[Option<RealBody>]) -> Forces {
     let find = |real: RealBody| reals.iter().position(|r| *r == Some(real)).map(BodyId);
     let any_real = reals.iter().any(Option::is_some);
     let relativity = scenario.physics.relativity.unwrap_or(any_real);
@@ -271,7 +272,37 @@ fn forces(scenario: &Scenario, reals: &[Option<RealBody>]) -> Forces {
         (Some(false), ..) | (_, None, _) | (_, _, None) => Vec::new(),
         (_, Some(earth), Some(date)) => vec![real::earth_bulge(earth, date)],
     };
-    Forces { relativity, oblate }
+    let (mut atmospheres, mut drags) = (Vec::new(), Vec::new());
+    if scenario.physics.drag != Some(false) {
+        for (index, (body, start)) in scenario.bodies.iter().zip(initial).enumerate() {
+            let air = body.atmosphere.as_ref().and_then(air);
+            atmospheres.extend(air.map(|air| Atmosphere {
+                body: BodyId(index),
+                radius_m: start.radius_m,
+                air,
+            }));
+            drags.extend(body.drag.map(|drag| Drag {
+                body: BodyId(index),
+                area_m2_kg: drag.coefficient * drag.area_per_mass.m2_kg(),
+            }));
+        }
+    }
+    Forces { relativity, oblate, atmospheres, drags }
+}
+
+/// The air that a body states; `None` for a table that is none, which parsing has told.
+fn air(stated: &scenario::Atmosphere) -> Option<Air> {
+    match stated {
+        scenario::Atmosphere::Earth => Some(Air::standard()),
+        scenario::Atmosphere::Exponential { surface_density, scale_height } => {
+            Some(Air::exponential(surface_density.kg_m3(), scale_height.m()))
+        }
+        scenario::Atmosphere::Table(rows) => {
+            let (heights, densities): (Vec<f64>, Vec<f64>) =
+                rows.iter().map(|(height, density)| (height.m(), density.kg_m3())).unzip();
+            Air::table(&heights, &densities)
+        }
+    }
 }
 
 /// Moves everything so that the centre of mass of the massive bodies is at rest at the origin.

@@ -103,7 +103,7 @@ pub fn system(states: &[State; 11], at: Epoch) -> InitialState {
     InitialState {
         bodies: bodies.collect(),
         listed: ALL.len(),
-        forces: Forces { relativity: true, oblate: vec![earth_bulge(EARTH, at)] },
+        forces: Forces { relativity: true, oblate: vec![earth_bulge(EARTH, at)], ..Forces::default() },
         changes: Vec::new(),
     }
 }

@@ -72,6 +72,7 @@ pub const PHYSICS: Section = Section {
             "true",
             "first post-Newtonian relativity between all bodies; on with real bodies",
         ),
+        key("drag", "true or false", "false", "drag in the air of bodies that have some; on unless stated"),
         key("oblateness", "true or false", "true", "the Earth's J2; on with real bodies"),
         key(
             "companions",
@@ -104,6 +105,18 @@ pub const BODY: Section = Section {
             "0.8",
             "with bounce: the share of the speed that is kept; 1 unless stated",
         ),
+        key(
+            "atmosphere",
+            "Earth or table",
+            r#"{ surface-density = "1.2 kg/m^3", scale-height = "8 km" }"#,
+            "the air around it; Earth: the U.S. Standard Atmosphere 1976",
+        ),
+        key(
+            "drag",
+            "table",
+            r#"{ area-per-mass = "0.01 m^2/kg", coefficient = 0.5 }"#,
+            "what it offers to the air of others; nothing unless stated",
+        ),
         key("real", "solar-system body", r#""Mars""#, "form: where the real one is at the scenario's date"),
         key(
             "orbit",
@@ -124,6 +137,36 @@ pub const BODY: Section = Section {
             "form: thrown from a surface",
         ),
         key("drop", "table", r#"{ onto = "Brae", height = "100 m" }"#, "form: let go above a surface"),
+    ],
+};
+
+/// `atmosphere` as a table.
+pub const ATMOSPHERE: Section = Section {
+    what: "an atmosphere",
+    keys: &[
+        key("surface-density", "density", r#""1.2 kg/m^3""#, "density at the surface"),
+        key("scale-height", "length", r#""8 km""#, "height in which density falls by e"),
+        key(
+            "heights",
+            "list of lengths",
+            r#"["0 km", "10 km", "30 km"]"#,
+            "instead of a scale height: heights above the surface, upwards",
+        ),
+        key(
+            "densities",
+            "list of densities",
+            r#"["1.2 kg/m^3", "0.4 kg/m^3", "0.02 kg/m^3"]"#,
+            "with heights: the density at each; exponential between them, nothing above",
+        ),
+    ],
+};
+
+/// `drag` of a body.
+pub const DRAG: Section = Section {
+    what: "a drag",
+    keys: &[
+        key("area-per-mass", "area per mass", r#""0.01 m^2/kg""#, "its cross-section over its mass"),
+        key("coefficient", "number, 0 or more", "0.5", "coefficient of drag; 1 unless stated"),
     ],
 };
 
@@ -384,7 +427,21 @@ pub const BODY_MARKS: [&str; 12] = [
 ];
 
 /// Every section, for the format's reference.
-pub const SECTIONS: [&Section; 14] = [
-    &TOP, &PHYSICS, &BODY, &ORBIT, &PLACE, &THROW, &DROP, &CHANGE, &BEAT, &CLOCK, &START, &VIEW, &CENTRE,
+pub const SECTIONS: [&Section; 16] = [
+    &TOP,
+    &PHYSICS,
+    &BODY,
+    &ATMOSPHERE,
+    &DRAG,
+    &ORBIT,
+    &PLACE,
+    &THROW,
+    &DROP,
+    &CHANGE,
+    &BEAT,
+    &CLOCK,
+    &START,
+    &VIEW,
+    &CENTRE,
     &MARK,
 ];

@@ -290,6 +290,21 @@ impl<'a> Field<'a> {
         Some([x?, y?, z?])
     }
 
+    /// A list of quantities; `None` when one is wrong.
+    pub(super) fn list<Q: Quantity>(&self) -> Option<Vec<Q>> {
+        let Some(list) = self.item.as_array() else {
+            self.wrong_type("a list");
+            return None;
+        };
+        let read = list.iter().map(|value| {
+            let at = value.span().unwrap_or_else(|| self.at.clone());
+            quantity_of(value, &at, self.name(), self.report, Q::parse)
+        });
+        // All are read before one is given up, so that each one's fault is told.
+        let read: Vec<Option<Q>> = read.collect();
+        read.into_iter().collect()
+    }
+
     /// The body of this name.
     pub(super) fn body(&self, names: &Names) -> Option<BodyId> {
         self.body_at(self.text()?, &self.at, names)

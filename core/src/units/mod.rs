@@ -114,6 +114,15 @@ quantity!(
     Pace, from_s_per_s, s_per_s, &[Dimension::Pace], "12 d/s"
 );
 
+quantity!(
+    /// A density, in kg/m³.
+    Density, from_kg_m3, kg_m3, &[Dimension::Density], "1.2 kg/m^3"
+);
+quantity!(
+    /// An area for each unit of mass, in m²/kg.
+    AreaPerMass, from_m2_kg, m2_kg, &[Dimension::AreaPerMass], "0.01 m^2/kg"
+);
+
 impl Gm {
     /// From a mass in text alone ("1.3 Earth masses", "5e24 kg").
     ///

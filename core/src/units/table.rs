@@ -23,6 +23,10 @@ pub enum Dimension {
     Gm,
     /// Model time per show time; s/s inside.
     Pace,
+    /// Density; kg/m³ inside.
+    Density,
+    /// Area per mass; m²/kg inside.
+    AreaPerMass,
 }
 
 /// A unit: `value × times ÷ over` is the SI value. Two factors, because 1/3600 has no exact double, but 3600 has.
@@ -139,10 +143,28 @@ const PACES: &[Unit] = &[
     unit("yr/s", &[], YEAR_S),
 ];
 
+const DENSITIES: &[Unit] = &[
+    unit("kg/m^3", &["kg/m3", "kg/m³"], 1.0),
+    unit("g/cm^3", &["g/cm3", "g/cm³"], 1000.0),
+    ratio("g/m^3", &["g/m3", "g/m³"], 1.0, 1000.0),
+];
+
+const AREAS_PER_MASS: &[Unit] =
+    &[unit("m^2/kg", &["m2/kg", "m²/kg"], 1.0), ratio("cm^2/g", &["cm2/g", "cm²/g"], 1.0, 10.0)];
+
 impl Dimension {
     /// Every dimension.
-    pub const ALL: [Self; 7] =
-        [Self::Length, Self::Span, Self::Speed, Self::Angle, Self::Mass, Self::Gm, Self::Pace];
+    pub const ALL: [Self; 9] = [
+        Self::Length,
+        Self::Span,
+        Self::Speed,
+        Self::Angle,
+        Self::Mass,
+        Self::Gm,
+        Self::Pace,
+        Self::Density,
+        Self::AreaPerMass,
+    ];
 
     /// Its units, the one that is SI inside or the most usual one first.
     pub const fn units(self) -> &'static [Unit] {
@@ -154,6 +176,8 @@ impl Dimension {
             Self::Mass => MASSES,
             Self::Gm => GMS,
             Self::Pace => PACES,
+            Self::Density => DENSITIES,
+            Self::AreaPerMass => AREAS_PER_MASS,
         }
     }
 
@@ -167,6 +191,8 @@ impl Dimension {
             Self::Mass => "a mass",
             Self::Gm => "a GM",
             Self::Pace => "a pace",
+            Self::Density => "a density",
+            Self::AreaPerMass => "an area per mass",
         }
     }
 
@@ -180,6 +206,8 @@ impl Dimension {
             Self::Mass => &["kg", "Sun masses", "Earth masses", "Jupiter masses", "Moon masses"],
             Self::Gm => &["m^3/s^2", "km^3/s^2"],
             Self::Pace => &["s/s", "min/s", "h/s", "d/s", "months/s", "yr/s"],
+            Self::Density => &["kg/m^3", "g/m^3", "g/cm^3"],
+            Self::AreaPerMass => &["m^2/kg", "cm^2/g"],
         }
     }
 
@@ -193,6 +221,8 @@ impl Dimension {
             Self::Mass => &["Sun masses", "Earth masses", "Moon masses", "kg"],
             Self::Gm => &["km^3/s^2", "m^3/s^2"],
             Self::Pace => &["d/s", "yr/s", "h/s", "min/s", "s/s"],
+            Self::Density => &["kg/m^3"],
+            Self::AreaPerMass => &["m^2/kg"],
         }
     }
 

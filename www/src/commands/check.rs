@@ -78,7 +78,7 @@ fn energy_error(show: &Show) -> Option<f64> {
     let forces = &show.initial.forces;
     let eph = &show.ephemeris;
     let changed = !eph.contacts().is_empty() || !show.initial.changes.is_empty();
-    if forces.relativity || !forces.oblate.is_empty() || changed {
+    if forces.relativity || !forces.oblate.is_empty() || !forces.drags.is_empty() || changed {
         return None;
     }
     let gms: Vec<f64> = show.initial.bodies.iter().map(|body| body.gm_m3_s2).collect();
@@ -124,7 +124,7 @@ impl Report {
         ));
         match energy_error {
             Some(error) => line(format!("  energy       kept to {error:.1e} of it")),
-            None => line("  energy       not a measure here (contact, change, relativity, oblateness, or nothing massive moves)".to_owned()),
+            None => line("  energy       not a measure here (contact, change, relativity, oblateness, drag, or nothing massive moves)".to_owned()),
         }
         for (index, (planned, beat)) in plan.beats.iter().zip(&show.scenario.beats).enumerate() {
             line(format!(

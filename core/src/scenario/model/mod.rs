@@ -11,7 +11,7 @@ pub use form::*;
 
 use super::problem::Place;
 use crate::time::Epoch;
-use crate::units::{Gm, Length};
+use crate::units::{AreaPerMass, Density, Gm, Length};
 
 /// A body of a scenario: its index in [`Scenario::bodies`].
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -60,6 +60,8 @@ pub struct Physics {
     pub relativity: Option<bool>,
     /// Oblateness (J2) of the Earth; on by itself where a body is `real`.
     pub oblateness: Option<bool>,
+    /// Drag in the air of bodies that have some; on unless stated.
+    pub drag: Option<bool>,
     /// Whether the solar-system bodies that the file doesn't name pull on its `real` ones, unseen; on unless stated.
     pub companions: Option<bool>,
 }
@@ -114,6 +116,31 @@ pub enum Surface {
     Merge,
 }
 
+/// The air around a body; it does not turn.
+#[derive(Debug, Clone, PartialEq)]
+pub enum Atmosphere {
+    /// As the Earth's: the U.S. Standard Atmosphere 1976.
+    Earth,
+    /// Density falls by e with every scale height.
+    Exponential {
+        /// At the surface.
+        surface_density: Density,
+        /// Scale height.
+        scale_height: Length,
+    },
+    /// Densities at heights, the lowest first: two at least.
+    Table(Vec<(Length, Density)>),
+}
+
+/// What a body offers to air.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Drag {
+    /// Cross-section over mass.
+    pub area_per_mass: AreaPerMass,
+    /// Coefficient of drag; 1 unless stated.
+    pub coefficient: f64,
+}
+
 /// A body.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Body {
@@ -129,6 +156,10 @@ pub struct Body {
     pub colour: Colour,
     /// What contact with it does; matters only with a radius. [`Surface::Stop`] unless stated.
     pub surface: Surface,
+    /// The air around it; only with a radius.
+    pub atmosphere: Option<Atmosphere>,
+    /// What it offers to the air of others; `None`: nothing.
+    pub drag: Option<Drag>,
     /// How it comes to be there.
     pub form: Form,
     /// Where its `[[body]]` stands in the text.

@@ -5,7 +5,7 @@ use super::super::model::{Body, BodyId, Colour, Form, Kind, RealBody, Surface};
 use super::super::names::Names;
 use super::super::reader::{Field, Reading};
 use super::super::source::At;
-use super::forms;
+use super::{air, forms};
 use crate::time::Epoch;
 use crate::units::{Gm, UnitError};
 
@@ -103,6 +103,8 @@ pub(super) fn read(section: &Reading<'_>, names: &Names) -> Option<ReadBody> {
     let gm = gravity(section);
     let radius = section.positive("radius");
     let surface = surface(section);
+    let atmosphere = air::atmosphere(section);
+    let drag = air::drag(section);
 
     let stated = section.stated(&FORMS);
     if let [first, second, ..] = stated.as_slice() {
@@ -132,6 +134,8 @@ pub(super) fn read(section: &Reading<'_>, names: &Names) -> Option<ReadBody> {
         radius,
         colour: Colour::Bone,
         surface,
+        atmosphere,
+        drag,
         form,
         place: section.report().source().place(section.at.start),
     };

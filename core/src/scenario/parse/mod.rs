@@ -3,6 +3,7 @@
 //! A text that is not TOML has one problem, where the reading of TOML ends. In one that is, each section is read to
 //! its end whatever is wrong with it, and a fault that follows from another one isn't told.
 
+mod air;
 mod beats;
 mod bodies;
 mod changes;
@@ -132,6 +133,7 @@ fn read(top: &Reading<'_>) -> Option<Scenario> {
     let date = top.get("date").map(|field| dates::read(&field));
     let physics = top.get("physics").and_then(|field| field.table(&grammar::PHYSICS)).map(|table| Physics {
         relativity: table.flag("relativity"),
+        drag: table.flag("drag"),
         oblateness: table.flag("oblateness"),
         companions: table.flag("companions"),
     });
