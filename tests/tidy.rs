@@ -6,7 +6,7 @@ use std::fs;
 use std::path::{Path, PathBuf};
 
 /// The floors of core, from the ground up. A module may use what lies below it, and nothing beside or above.
-const FLOORS: [&str; 15] = [
+const FLOORS: [&str; 16] = [
     "math",
     "constants",
     "units",
@@ -22,6 +22,7 @@ const FLOORS: [&str; 15] = [
     "sweep",
     "show",
     "picture",
+    "aim",
 ];
 
 /// Lines beyond which a file no longer fits in a head.

@@ -43,6 +43,7 @@
 #[cfg(test)]
 extern crate self as fallaround_core;
 
+pub mod aim;
 pub mod air;
 pub mod conic;
 pub mod constants;

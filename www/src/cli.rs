@@ -31,6 +31,8 @@ pub(crate) enum Command {
     Trace(Trace),
     /// Print what happens, as CSV: apsides, nodes, contacts, conjunctions, stations, ways through shadows and so on.
     Events(Events),
+    /// Solve the outcomes that a scenario states for its free numbers; exit code 1 when there are none that lead there.
+    Aim(Aim),
     /// Print the digest that the app shows for the same file.
     Fingerprint(Fingerprint),
 }
@@ -129,6 +131,19 @@ pub(crate) struct Events {
     /// Print JSON.
     #[arg(long)]
     pub(crate) json: bool,
+    #[command(flatten)]
+    pub(crate) today: Today,
+}
+
+/// What to aim.
+#[derive(Debug, Args)]
+pub(crate) struct Aim {
+    /// Scenario file.
+    #[arg(value_name = "SCENARIO")]
+    pub(crate) scenario: PathBuf,
+    /// Write the scenario with the numbers filled in to this file [default: standard output].
+    #[arg(short, long, value_name = "FILE")]
+    pub(crate) output: Option<PathBuf>,
     #[command(flatten)]
     pub(crate) today: Today,
 }

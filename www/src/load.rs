@@ -46,6 +46,11 @@ impl fmt::Display for Wrong {
 
 impl std::error::Error for Wrong {}
 
+/// The error that a file's problems are.
+pub(crate) fn wrong(path: &Path, problems: Vec<Problem>) -> anyhow::Error {
+    Wrong::new(path, problems).into()
+}
+
 /// A problem as editors read it: `file:line:column: what is wrong; what would be right`.
 pub(crate) fn line(file: &str, problem: &Problem) -> String {
     let Problem { place, severity, wrong, remedy } = problem;
@@ -170,7 +175,7 @@ pub(crate) fn rehearsed(path: &Path, today: &Today) -> Result<Rehearsed> {
 }
 
 /// A bar on standard error, where that is a terminal and the work takes long enough to be seen.
-fn bar(what: &'static str) -> Result<ProgressBar> {
+pub(crate) fn bar(what: &'static str) -> Result<ProgressBar> {
     let bar = ProgressBar::new(SCALE);
     bar.set_style(ProgressStyle::with_template("{msg} {bar:40} {percent} %  {elapsed}").context("bar")?);
     bar.set_message(what);
@@ -180,7 +185,7 @@ fn bar(what: &'static str) -> Result<ProgressBar> {
 
 /// A share of 0 to 1 on the bar's scale.
 #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "clamped to the scale")]
-fn share(share: f64) -> u64 {
+pub(crate) fn share(share: f64) -> u64 {
     (share.clamp(0.0, 1.0) * SCALE as f64) as u64
 }
 

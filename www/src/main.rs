@@ -47,6 +47,7 @@ fn run(cli: Cli) -> Result<ExitCode> {
         Command::Check(options) => commands::check::command(&options),
         Command::Trace(options) => commands::trace::command(&options),
         Command::Events(options) => commands::events::command(&options),
+        Command::Aim(options) => commands::aim::command(&options),
         Command::Fingerprint(options) => commands::fingerprint::command(&options),
     }
 }

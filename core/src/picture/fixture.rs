@@ -210,6 +210,7 @@ pub(crate) fn show(
             bodies: bodies.into_iter().map(|b| b.0).collect(),
             changes: Vec::new(),
             beats,
+            aims: Vec::new(),
         },
         ephemeris: ephemeris(gms, &paths, covers_s[0], covers_s[1], step_s),
         initial,

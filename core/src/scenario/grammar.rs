@@ -2,6 +2,10 @@
 //!
 //! Parsing reads unknown keys and its remedies off these tables; the format's reference can be made from them.
 
+mod aiming;
+
+pub use aiming::{AIM, FREE, WANT};
+
 /// A key of a section.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub struct Key {
@@ -59,6 +63,12 @@ pub const TOP: Section = Section {
             "what is done to bodies on the way, one [[change]] each",
         ),
         key("beat", "tables", r#"[{ title = "The long fall" }]"#, "the steps of the talk, one [[beat]] each"),
+        key(
+            "aim",
+            "tables",
+            r#"[{ want = [{ event = "periapsis of Fenn", at = "140 d" }], free = [{ body = "Fenn", quantity = "orbit.periapsis", from = "0.3 au", to = "0.5 au" }] }]"#,
+            "outcomes to solve numbers for, one [[aim]] each",
+        ),
     ],
 };
 
@@ -427,7 +437,7 @@ pub const BODY_MARKS: [&str; 12] = [
 ];
 
 /// Every section, for the format's reference.
-pub const SECTIONS: [&Section; 16] = [
+pub const SECTIONS: [&Section; 19] = [
     &TOP,
     &PHYSICS,
     &BODY,
@@ -444,4 +454,7 @@ pub const SECTIONS: [&Section; 16] = [
     &VIEW,
     &CENTRE,
     &MARK,
+    &AIM,
+    &WANT,
+    &FREE,
 ];

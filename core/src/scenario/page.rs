@@ -38,7 +38,8 @@ pub fn format_page() -> String {
         &mut page,
         format_args!(
             "\n## Events\n\n`KIND of BODY`, with `to`, `with`, `from` or `on` another body where one is meant, and a number \
-             before it for a later one: \"periapsis of Fenn\", \"2nd contact of Ball with Brae\". The kinds: {}.\n",
+             before it for a later one: \"periapsis of Fenn\", \"2nd contact of Ball with Brae\". A distance that is crossed \
+             stands before the body: \"distance 1 au of Fenn from Orla\". The kinds: {}.\n",
             events.join(", ")
         ),
     );

@@ -1,5 +1,6 @@
 //! What the program answers about scenarios, and what it can be told to do. Each command has a file.
 
+pub(crate) mod aim;
 pub(crate) mod check;
 pub(crate) mod events;
 pub(crate) mod fingerprint;

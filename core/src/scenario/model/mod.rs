@@ -1,10 +1,12 @@
 //! The scenario as data, valid by construction: names are resolved to [`BodyId`]s, quantities have units,
 //! and every choice is one of those the format knows.
 
+pub mod aim;
 pub mod beat;
 pub mod change;
 pub mod form;
 
+pub use aim::*;
 pub use beat::*;
 pub use change::*;
 pub use form::*;
@@ -38,6 +40,8 @@ pub struct Scenario {
     pub changes: Vec<Change>,
     /// The beats, in the order of the talk.
     pub beats: Vec<Beat>,
+    /// The aims, in the order of the file. Only aiming minds them.
+    pub aims: Vec<Aim>,
 }
 
 impl Scenario {

@@ -3,6 +3,7 @@
 //! A text that is not TOML has one problem, where the reading of TOML ends. In one that is, each section is read to
 //! its end whatever is wrong with it, and a fault that follows from another one isn't told.
 
+mod aims;
 mod air;
 mod beats;
 mod bodies;
@@ -17,7 +18,7 @@ mod syntax;
 mod view;
 
 use super::grammar;
-use super::model::{Physics, Scenario};
+use super::model::{Form, Physics, Scenario};
 use super::names::Names;
 use super::problem::{Place, Problem, Severity};
 use super::reader::{Reading, Report};
@@ -30,6 +31,8 @@ pub const MAX_BODIES: usize = 200;
 pub const MAX_CHANGES: usize = 200;
 /// Most beats in a scenario.
 pub const MAX_BEATS: usize = 200;
+/// Most aims in a scenario.
+pub const MAX_AIMS: usize = 20;
 /// The version of the format that is read.
 pub const FORMAT: i64 = 1;
 
@@ -163,6 +166,11 @@ fn read(top: &Reading<'_>) -> Option<Scenario> {
     let language = language?;
     let beats = beats::read(&sections, &beats::Around { names: &names, language: &language, date });
 
+    let mut sections = top.get("aim").map(|field| field.tables(&grammar::AIM)).unwrap_or_default();
+    cut_at(&mut sections, MAX_AIMS, "aims");
+    let forms: Vec<Option<&Form>> = read.iter().map(|b| b.as_ref().map(|b| &b.body.form)).collect();
+    let aims: Option<Vec<_>> = sections.iter().map(|section| aims::read(section, &names, &forms)).collect();
+
     Some(Scenario {
         title,
         summary: top.text_or_empty("summary"),
@@ -173,6 +181,7 @@ fn read(top: &Reading<'_>) -> Option<Scenario> {
         bodies: read.into_iter().map(|b| b.map(|b| b.body)).collect::<Option<_>>()?,
         changes: changes?,
         beats: beats?,
+        aims: aims?,
     })
 }
 

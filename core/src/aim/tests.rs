@@ -1,0 +1,172 @@
+//! Aims whose answers can be checked by another way than the one that found them.
+
+use super::*;
+use crate::ephemeris::{Ephemeris, Propagation, events};
+use crate::initial::InitialState;
+use crate::resolve::resolve;
+use crate::scenario::{BodyId, EventKind, EventRef, parse};
+use crate::units::Length;
+
+const AIRLESS: &str = r#"format = 1
+title = "A throw"
+
+[[body]]
+name = "Skerry"
+mass = "1 Moon masses"
+radius = "1737 km"   # without air
+
+[[body]]
+name = "Ball"
+# Found by aiming:
+throw = { from = "Skerry", height = "2 km", speed = "0.9 km/s", elevation = "45 deg", heading = "80 deg" }
+"#;
+
+fn paths(text: &str, until_s: f64) -> (InitialState, Ephemeris) {
+    let initial = resolve(&parse(text).scenario.unwrap()).unwrap();
+    let mut propagation = Propagation::new(&initial);
+    assert!(propagation.advance(until_s, 1_000_000).unwrap());
+    (initial, propagation.into_ephemeris())
+}
+
+fn first(
+    text: &str,
+    until_s: f64,
+    kind: EventKind,
+    body: usize,
+    other: usize,
+) -> (f64, f64, crate::Vector3<f64>) {
+    let (initial, eph) = paths(text, until_s);
+    let event = EventRef { kind, body: BodyId(body), other: Some(BodyId(other)), nth: 1, distance: None };
+    let found = events::first(&eph, &initial, &event, 0.0).unwrap();
+    let state = eph.relative(BodyId(body), BodyId(other), found.t_s).unwrap();
+    (found.t_s, found.value, state.pos)
+}
+
+#[test]
+fn a_throw_hits_a_stated_place() {
+    let text = format!(
+        "{AIRLESS}\n[[aim]]\nwant = [{{ event = \"contact of Ball with Skerry\", until = \"3 h\", longitude = \"40 deg\", latitude = \"-10 deg\" }}]\n\
+         free = [\n  {{ body = \"Ball\", quantity = \"throw.speed\", from = \"0.3 km/s\", to = \"1.6 km/s\" }},\n  \
+         {{ body = \"Ball\", quantity = \"throw.heading\", from = \"0 deg\", to = \"180 deg\" }},\n]\n"
+    );
+    let solved = solve(&text).unwrap();
+    let (_, _, pos) = first(&solved.text, 10_800.0, EventKind::Contact, 1, 0);
+    let longitude = crate::math::float::atan2(pos.y, pos.x).to_degrees();
+    let latitude = crate::math::float::asin(pos.z / pos.norm()).to_degrees();
+    // What is allowed of an angle is 2e-7 rad.
+    assert!((longitude - 40.0).abs() < 1.2e-5 && (latitude + 10.0).abs() < 1.2e-5, "{longitude} {latitude}");
+    assert_eq!(solved.misses.len(), 2);
+    assert!(solved.misses.iter().all(|m| m.share.abs() <= 1.0), "{:?}", solved.misses);
+    // Only the two numbers have changed, all else stands to the byte.
+    let plain = |text: &str| {
+        text.lines().filter(|line| !line.starts_with("throw")).map(str::to_owned).collect::<Vec<_>>()
+    };
+    assert_eq!(plain(&solved.text), plain(&text));
+    assert!(
+        solved.text.contains("throw = { from = \"Skerry\", height = \"2 km\", speed = \""),
+        "{}",
+        solved.text
+    );
+    // What meets its aim stays as it is.
+    assert_eq!(solve(&solved.text).unwrap().text, solved.text);
+}
+
+const SYSTEM: &str = r#"format = 1
+title = "A passage"
+[[body]]
+name = "Orla"
+mass = "0.9 Sun masses"
+[[body]]
+name = "Brae"
+mass = "1.3 Earth masses"
+radius = "6900 km"
+orbit = { around = "Orla", semi-major = "1.1 au", eccentricity = 0.02, anomaly = "40 deg" }
+[[body]]
+name = "Pell"
+kind = "comet"
+orbit = { around = "Orla", periapsis = "0.6 au", eccentricity = 0.95, inclination = "3 deg", before-periapsis = "140 d" }
+"#;
+
+#[test]
+fn a_comet_passes_a_planet_at_a_stated_distance_and_time() {
+    let text = format!(
+        "{SYSTEM}[[aim]]\nwant = [{{ event = \"closest-approach of Pell to Brae\", at = \"210 d\", distance = \"300000 km\" }}]\n\
+         free = [\n  {{ body = \"Pell\", quantity = \"orbit.before-periapsis\", from = \"100 d\", to = \"200 d\" }},\n  \
+         {{ body = \"Pell\", quantity = \"orbit.argument\", from = \"-180 deg\", to = \"180 deg\" }},\n  \
+         {{ body = \"Pell\", quantity = \"orbit.node\", from = \"-90 deg\", to = \"90 deg\" }},\n]\n"
+    );
+    let solved = solve(&text).unwrap();
+    let (initial, eph) = paths(&solved.text, 300.0 * 86_400.0);
+    let query = events::Query::new(EventKind::ClosestApproach, BodyId(2), Some(BodyId(1)));
+    let found = events::find(&eph, &initial, &query, 0.0, 300.0 * 86_400.0);
+    let meant = found.iter().find(|e| (e.t_s - 210.0 * 86_400.0).abs() <= 1.0);
+    let meant = meant.unwrap_or_else(|| panic!("{found:?} {:?}", solved.misses));
+    assert!((meant.value - 3e8).abs() <= 300.0, "{meant:?}");
+}
+
+#[test]
+fn what_cannot_be_reached_is_told_with_the_nearest_miss() {
+    let text = format!(
+        "{AIRLESS}[[aim]]\nwant = [{{ event = \"apoapsis of Ball\", until = \"1 h\", distance = \"4000 km\" }}]\n\
+         free = [{{ body = \"Ball\", quantity = \"throw.speed\", from = \"0.2 km/s\", to = \"0.4 km/s\" }}]\n"
+    );
+    let failure = solve(&text).unwrap_err();
+    let AimFailure::Missed { nearest, place, .. } = &failure else { panic!("{failure:?}") };
+    assert_eq!(place.line, 13);
+    // At 45 degrees, 0.4 km/s rises to 26.9 km above the 2 km it starts from (conserved energy and angular momentum).
+    let (gm, r, v) = (4.902_800_118e12, 1.739e6, 400.0_f64);
+    let (energy, h) = (0.5 * v * v - gm / r, r * v * 0.5_f64.sqrt());
+    let a = -0.5 * gm / energy;
+    let highest = a * (1.0 + (1.0 - h * h / (gm * a)).sqrt());
+    let off = Length::parse(&nearest[0].off).unwrap().m();
+    assert!((off - (4e6 - highest)).abs() < 1e-4 * off, "{off} {}", 4e6 - highest);
+    assert!(failure.to_string().starts_with("no such throw: nearest miss 2235"), "{failure}");
+    // Nothing to compare: it never comes down in time.
+    let text = text.replace("apoapsis of Ball", "3rd apoapsis of Ball");
+    let failure = solve(&text).unwrap_err();
+    assert!(failure.to_string().starts_with("no such throw: no 3. apoapsis of Ball within 1 h"), "{failure}");
+}
+
+#[test]
+fn periods_speeds_and_counts_can_be_wanted() {
+    let text = format!(
+        "{SYSTEM}[[aim]]\nwant = [{{ body = \"Pell\", about = \"Brae\", at = \"0 d\", period-ratio = 8 }}]\n\
+         free = [{{ body = \"Pell\", quantity = \"orbit.eccentricity\", from = 0.5, to = 0.99 }}]\n\
+         [[aim]]\nwant = [{{ event = \"periapsis of Pell\", until = \"3 yr\", speed = \"52 km/s\" }}]\n\
+         free = [{{ body = \"Orla\", quantity = \"mass\", from = \"0.5 Sun masses\", to = \"1.5 Sun masses\" }}]\n\
+         [[aim]]\nwant = [{{ event = \"periapsis of Brae\", until = \"3 yr\", count = 6 }}]\n\
+         free = [{{ body = \"Brae\", quantity = \"orbit.semi-major\", from = \"0.4 au\", to = \"1.1 au\" }}]\n"
+    );
+    let mut aiming = Aiming::start(&text).unwrap();
+    let mut last = aiming.progress();
+    while !last.done {
+        let progress = aiming.work().unwrap();
+        assert!(progress.trials >= last.trials && (0.0..=1.0).contains(&progress.fraction));
+        last = progress;
+    }
+    let solved = aiming.finish();
+    assert_eq!(solved.misses.len(), 3);
+    let scenario = parse(&solved.text).scenario.unwrap();
+    let crate::scenario::Form::Orbit(pell) = &scenario.bodies[2].form else { panic!("an orbit") };
+    // T² ∝ a³ / (M + m): the ratio of 8 makes a four times Brae's 1.1 au, and that e = 1 - 0.6 / 4.4; Brae's mass adds 2e-6.
+    let e = pell.eccentricity.unwrap();
+    assert!((e - (1.0 - 0.6 / 4.4)).abs() < 1e-5, "{e}");
+    let (initial, eph) = paths(&solved.text, 3.0 * 365.25 * 86_400.0);
+    let query = |body| events::Query::new(EventKind::Periapsis, BodyId(body), None);
+    let brae = events::find(&eph, &initial, &query(1), 1.0, 3.0 * 365.25 * 86_400.0);
+    assert_eq!(brae.len(), 6);
+}
+
+#[test]
+fn a_file_without_aims_or_with_problems_is_told() {
+    let failure = solve(AIRLESS).unwrap_err();
+    assert!(failure.to_string().starts_with("1:1: the scenario states no aim; add [[aim]]"), "{failure}");
+    assert!(matches!(solve("format = 1\n[[body]]"), Err(AimFailure::Problems(_))));
+    // A number that can't be written where the file states none.
+    let text = format!(
+        "{SYSTEM}[[aim]]\nwant = [{{ event = \"periapsis of Pell\", at = \"90 d\" }}]\n\
+         free = [{{ body = \"Pell\", quantity = \"orbit.apoapsis\", from = \"2 au\", to = \"9 au\" }}]\n"
+    );
+    let failure = solve(&text).unwrap_err();
+    assert!(failure.to_string().contains("apoapsis beside periapsis and eccentricity"), "{failure}");
+}
