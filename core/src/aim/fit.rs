@@ -49,7 +49,7 @@ impl Fit {
     /// One iteration: derivatives, and the best step that they lead to.
     ///
     /// # Source
-    /// Levenberg and Marquardt's damping with Marquardt's scaling (J. J. Moré, Lecture Notes in Mathematics 630 (1978), 105), steps
+    /// Levenberg and Marquardt's damping with Marquardt's scaling (J. J. Moré, in Numerical Analysis, ed. G. A. Watson (1978), 105), steps
     /// projected onto the bounds, and variables that lean against a bound left out (C. T. Kelley, Iterative Methods for Optimization
     /// (1999), 5.5).
     pub(super) fn step(&mut self, mut residuals_at: impl FnMut(&[f64]) -> Residuals) {
