@@ -124,6 +124,9 @@ pub fn first(eph: &Ephemeris, initial: &InitialState, event: &EventRef, after_s:
     found
 }
 
+/// Bodies nearer than this are in the same place, m: what is left of a difference of equal positions is rounding.
+const SAME_PLACE_M: f64 = 1e-6;
+
 /// Kinds that are seen from another body, against the star.
 const SEEN: [EventKind; 4] =
     [EventKind::Conjunction, EventKind::Opposition, EventKind::Stationary, EventKind::GreatestElongation];
@@ -139,7 +142,10 @@ const SHADED: [EventKind; 4] =
 pub fn all(eph: &Ephemeris, initial: &InitialState, from_s: f64, until_s: f64) -> Vec<Event> {
     let mut found = Vec::new();
     let mut add = |kind, body, other| {
-        found.extend(find(eph, initial, &Query::new(kind, body, other), from_s, until_s));
+        let events = find(eph, initial, &Query::new(kind, body, other), from_s, until_s);
+        // Balls that leave the same hand don't approach one another there.
+        let together = |event: &Event| kind == EventKind::ClosestApproach && event.value < SAME_PLACE_M;
+        found.extend(events.into_iter().filter(|event| !together(event)));
     };
     for i in 0..initial.listed {
         let body = BodyId(i);

@@ -271,3 +271,16 @@ fn bodies_that_are_not_there_and_empty_paths_have_no_events() {
     assert_eq!(find(&eph, &initial, &PERI, 1e8, 0.0), vec![]);
     assert_eq!(find(&eph, &initial, &PERI, f64::NAN, 1e8), vec![]);
 }
+
+#[test]
+fn two_that_leave_the_same_place_do_not_approach_each_other_there() {
+    let star = point("s", GM, None, Vector3::zeros(), Vector3::zeros());
+    let ball =
+        |speed: f64| point("b", 0.0, Some(0), Vector3::new(AU, 0.0, 0.0), Vector3::new(0.0, speed, 0.0));
+    let initial = state(vec![star, ball(25_000.0), ball(31_000.0)]);
+    let year_s = 3.2e7;
+    let eph = run(&initial, 0.0, year_s);
+    let approaches = all(&eph, &initial, 0.0, year_s);
+    let approaches = approaches.iter().filter(|event| event.kind == EventKind::ClosestApproach);
+    assert!(approaches.clone().all(|event| event.t_s > 1e5), "{:?}", approaches.collect::<Vec<_>>());
+}
