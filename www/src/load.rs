@@ -15,6 +15,8 @@ use indicatif::{ProgressBar, ProgressStyle};
 
 use crate::cli::Today;
 
+/// Most memory for paths that are only written down, bytes: some two thousand years of the solar system.
+const MOST_BYTES: usize = 2 << 30;
 /// Steps between two looks at the progress bar: a few milliseconds of work.
 const STEPS: usize = 500;
 /// Length of the progress bar's scale.
@@ -100,7 +102,7 @@ impl Resolved {
     /// # Errors
     /// [`Wrong`] when the paths end before.
     pub(crate) fn integrate(&self, path: &Path, from_s: f64, until_s: f64) -> Result<Ephemeris> {
-        let mut propagation = Propagation::new(&self.initial);
+        let mut propagation = Propagation::with_most_bytes(&self.initial, MOST_BYTES);
         let bar = bar("Integrating")?;
         // Time 0 is always covered, so that times on both sides of it have an end to lean on.
         let ends = [until_s.max(0.0), from_s.min(0.0)];

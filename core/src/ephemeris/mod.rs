@@ -21,7 +21,7 @@ pub mod track;
 pub use crate::integrate::PER_BODY;
 pub use changes::Switch;
 pub use chunk::{Chunk, ChunkError, Mark};
-pub use propagation::{Propagation, Stopped, Why, states_at};
+pub use propagation::{Propagation, SHOW_BYTES, Stopped, Why, states_at};
 pub use track::Track;
 
 /// Where a body is and how it moves: m and m/s, barycentric.

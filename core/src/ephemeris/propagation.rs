@@ -8,8 +8,8 @@ use crate::integrate::PER_BODY;
 use crate::scenario::BodyId;
 use std::fmt;
 
-/// Most memory that an ephemeris may take, bytes.
-const MOST_BYTES: usize = 64 << 20;
+/// Most memory that the ephemeris of a show may take, bytes: it is held by the page and by the worker beside it.
+pub const SHOW_BYTES: usize = 64 << 20;
 
 /// Why the integration can't go on.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -17,7 +17,10 @@ pub enum Why {
     /// Two points fall into each other.
     Collapse,
     /// The paths would take more memory than is allowed.
-    TooLong,
+    TooLong {
+        /// That bound, bytes.
+        most_bytes: usize,
+    },
 }
 
 /// The integration can't go on.
@@ -44,8 +47,8 @@ impl fmt::Display for Stopped {
                     "{names} fall into each other {t_s:.3} s from the start; give one of them a radius, or a little speed aside"
                 )
             }
-            Why::TooLong => {
-                let megabytes = MOST_BYTES >> 20;
+            Why::TooLong { most_bytes } => {
+                let megabytes = most_bytes >> 20;
                 write!(
                     f,
                     "the paths take more than {megabytes} MB after {t_s:.0} s; show less time, fewer bodies, or wider orbits"
@@ -66,12 +69,19 @@ pub struct Propagation {
     backward: Run,
     forward_stopped: Option<Stopped>,
     backward_stopped: Option<Stopped>,
+    most_bytes: usize,
 }
 
 impl Propagation {
-    /// Nothing integrated yet; time starts at 0.
+    /// Nothing integrated yet; time starts at 0. It may grow to [`SHOW_BYTES`].
     pub fn new(initial: &InitialState) -> Self {
+        Self::with_most_bytes(initial, SHOW_BYTES)
+    }
+
+    /// The same, with another bound on its memory, bytes.
+    pub fn with_most_bytes(initial: &InitialState, most_bytes: usize) -> Self {
         Self {
+            most_bytes,
             ephemeris: Ephemeris::new(initial.bodies.iter().map(|body| body.gm_m3_s2).collect()),
             forward: Run::new(initial, 1.0),
             backward: Run::new(initial, -1.0),
@@ -120,8 +130,9 @@ impl Propagation {
         if let Some(stopped) = stopped {
             return Err(stopped.clone());
         }
-        if self.ephemeris.bytes() > MOST_BYTES {
-            return Err(Stopped { bodies: Vec::new(), names: Vec::new(), t_s: run.t_s(), why: Why::TooLong });
+        if self.ephemeris.bytes() > self.most_bytes {
+            let why = Why::TooLong { most_bytes: self.most_bytes };
+            return Err(Stopped { bodies: Vec::new(), names: Vec::new(), t_s: run.t_s(), why });
         }
         let step = run.step(&self.initial).map_err(|_too_small| {
             let why = collapse(run, &self.initial);
