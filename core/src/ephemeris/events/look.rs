@@ -117,8 +117,9 @@ impl Look {
     /// The events in one step, in order of time.
     pub(super) fn sights(&self, step: &Step<'_>) -> Vec<Sight> {
         let found = self.found(step).unwrap_or_default();
-        let sight = |(h, value)| Sight {
-            t_s: step.at(h),
+        let sight = |(h, value): (f64, f64)| Sight {
+            // A root nearer to the step's start than the fraction is known is on it.
+            t_s: step.at(if h.abs() < f64::EPSILON { 0.0 } else { h }),
             value,
             same_s: step.same_s(),
             inside: (0.0..=1.0).contains(&h),
