@@ -302,6 +302,10 @@ mod tests {
         assert_eq!(lambert(a, b, f64::NAN, GM, UP, 0), Err(ConicError::OutOfRange));
     }
 
+    /// Relative error of a velocity: roundings of 1e-16, of which a flight in a hundredth of the free time past the far side
+    /// of the centre loses up to four digits to differences of nearly equal numbers.
+    const ROUNDINGS: f64 = 1e-12;
+
     proptest! {
         #![proptest_config(ProptestConfig::with_cases(3000))]
 
@@ -320,15 +324,25 @@ mod tests {
                 let way = from.cross(&arc.from_vel).z;
                 prop_assert!((way > 0.0) != back, "the wrong way round: {way}");
                 let (pos, vel) = propagate(from, arc.from_vel, GM, dt).unwrap();
-                // An error of the speed grows with the distance that it covers in the time, and again by a near passage.
-                let energy = 0.5 * arc.from_vel.norm_squared() - GM / from.norm();
-                let nearest = from.cross(&arc.from_vel).norm_squared() / (2.0 * GM);
-                let turned = 1.0 + f64::from(arc.turns);
-                let shake = 1.0 + GM / (energy.abs() * 7e6);
-                let growth = turned * shake * (from.norm() + to.norm()) / nearest.min(7e6) * (1.0 + arc.from_vel.norm() * dt / 7e6);
-                let tol = 1e-13 * growth;
-                prop_assert!((pos - to).norm() < tol * to.norm(), "{arc:?}: {} of {tol}", (pos - to).norm() / to.norm());
-                prop_assert!((vel - arc.to_vel).norm() < tol * growth * (vel.norm() + arc.from_vel.norm()), "{arc:?}");
+                // What such an error of the first velocity as roundings make comes to where the path arrives, near passages
+                // and all: the propagation itself is asked.
+                // A path that all but hits the centre is left out: there the judge loses as many digits as the accused.
+                let nearest = crate::conic::elements_from_state(from, arc.from_vel, GM).map_or(0.0, |e| e.periapsis_m);
+                if nearest < 0.01 * from.norm().min(to.norm()) {
+                    continue;
+                }
+                let (mut off, mut turned) = (0.0, 0.0);
+                for axis in [Vector3::x(), Vector3::y(), Vector3::z()] {
+                    let nudged = arc.from_vel + axis * (ROUNDINGS * arc.from_vel.norm());
+                    let (there, then) = propagate(from, nudged, GM, dt).unwrap();
+                    off += (there - pos).norm();
+                    turned += (then - vel).norm();
+                }
+                let near = ROUNDINGS * (from.norm() + to.norm());
+                prop_assert!((pos - to).norm() < off + near, "{arc:?}: {} m of {off} m", (pos - to).norm());
+                let slow = ROUNDINGS * (vel.norm() + arc.from_vel.norm());
+                let miss = (vel - arc.to_vel).norm();
+                prop_assert!(miss < turned + slow, "{arc:?}: {miss} m/s of {turned} m/s");
             }
         }
 
