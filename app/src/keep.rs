@@ -37,7 +37,8 @@ pub struct Place {
     /// Title of the show.
     pub title: String,
     /// Where the clock is.
-    pub mark: Mark,
+    #[serde(with = "KeptBookmark")]
+    pub mark: Bookmark,
     /// How many beats there are.
     pub beats: usize,
     /// Planned show time up to here, seconds.
@@ -59,46 +60,20 @@ pub struct Place {
     pub kept_ms: f64,
 }
 
-/// A [`Bookmark`] as it is kept.
-#[derive(Debug, Clone, Copy, PartialEq, Serialize, Deserialize)]
-#[expect(missing_docs, reason = "the names are those of the bookmark")]
-pub struct Mark {
-    pub beat: usize,
-    pub beat_s: f64,
-    pub from_s: f64,
-    pub first_pace: f64,
-    pub beat_from_s: f64,
-    pub run_from_s: f64,
-    pub held: bool,
-    pub waiting: bool,
-    pub speed: i32,
-    pub lead_s: f64,
-}
-
-impl From<Bookmark> for Mark {
-    fn from(b: Bookmark) -> Self {
-        let Bookmark {
-            beat,
-            beat_s,
-            from_s,
-            first_pace,
-            beat_from_s,
-            run_from_s,
-            held,
-            waiting,
-            speed,
-            lead_s,
-        } = b;
-        Self { beat, beat_s, from_s, first_pace, beat_from_s, run_from_s, held, waiting, speed, lead_s }
-    }
-}
-
-impl From<Mark> for Bookmark {
-    fn from(m: Mark) -> Self {
-        let Mark { beat, beat_s, from_s, first_pace, beat_from_s, run_from_s, held, waiting, speed, lead_s } =
-            m;
-        Self { beat, beat_s, from_s, first_pace, beat_from_s, run_from_s, held, waiting, speed, lead_s }
-    }
+/// How a [`Bookmark`] is kept; core has no serde.
+#[derive(Serialize, Deserialize)]
+#[serde(remote = "Bookmark")]
+struct KeptBookmark {
+    beat: usize,
+    beat_s: f64,
+    from_s: f64,
+    first_pace: f64,
+    beat_from_s: f64,
+    run_from_s: f64,
+    held: bool,
+    waiting: bool,
+    speed: i32,
+    lead_s: f64,
 }
 
 /// The last show: its text, its place and, where it was kept, its picture.
@@ -163,7 +138,7 @@ mod tests {
     use super::*;
 
     fn place() -> Place {
-        let mark = Mark {
+        let mark = Bookmark {
             beat: 4,
             beat_s: 0.1 + 0.2,
             from_s: -1.0e9 / 3.0,

@@ -4,7 +4,7 @@ use super::paint;
 use super::readout::{self, Readout};
 use crate::dom;
 use crate::drawing::Drawing;
-use crate::keep::{Mark, Place, Source};
+use crate::keep::{Place, Source};
 use fallaround_core::picture::frame::Frame;
 use fallaround_core::picture::view::Camera;
 use fallaround_core::picture::{Composer, DisplayList, Options, Screen, Shape, Tag};
@@ -49,7 +49,7 @@ impl House {
     /// A show that waits for its first beat, or goes on from a kept place.
     pub fn new(show: Show, source: Source, fingerprint: String, at: Option<&Place>) -> Self {
         let clock = match at {
-            Some(place) => Clock::resume(&show.plan, place.mark.into()),
+            Some(place) => Clock::resume(&show.plan, place.mark),
             None => Clock::new(&show.plan),
         };
         let blackout = at.is_some_and(|place| place.blackout);
@@ -202,7 +202,7 @@ impl House {
         let moment = self.clock.moment(&self.show.plan);
         Place {
             title: self.show.scenario.title.clone(),
-            mark: Mark::from(self.clock.bookmark()),
+            mark: self.clock.bookmark(),
             beats: self.show.plan.beats.len(),
             into_s,
             left_s,

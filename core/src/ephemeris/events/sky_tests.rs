@@ -1,9 +1,8 @@
 //! Nodes, stations, elongations, distances and shadows on paths whose events are known in closed form.
 
-use super::tests::{AU, GM, orbiting, period, point, run, same_times, star, state, times};
+use super::tests::{AU, GM, elements, orbiting, period, point, run, same_times, star, state, times};
 use super::{Event, Query, all, find, first};
 use crate::Vector3;
-use crate::conic::Elements;
 use crate::initial::InitialState;
 use crate::math::float::{acos, sin_cos};
 use crate::scenario::{BodyId, EventKind, EventRef};
@@ -12,15 +11,7 @@ use std::f64::consts::{PI, TAU};
 
 /// Time after periapsis at which an orbit of [`orbiting`] comes to a true anomaly, 0 to one period.
 fn at_anomaly(q: f64, e: f64, nu: f64) -> f64 {
-    let elements = Elements {
-        periapsis_m: q,
-        eccentricity: e,
-        inclination_rad: 0.1,
-        node_rad: 1.0,
-        argument_rad: 2.0,
-        true_anomaly_rad: nu,
-    };
-    elements.after_periapsis_s(GM).unwrap().rem_euclid(period(q, e))
+    elements(q, e, nu).after_periapsis_s(GM).unwrap().rem_euclid(period(q, e))
 }
 
 #[test]

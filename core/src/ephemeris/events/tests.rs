@@ -22,16 +22,20 @@ pub(super) fn point(
     InitialBody { name: name.into(), gm_m3_s2, radius_m: 0.0, surface: Surface::Stop, primary, pos, vel }
 }
 
-pub(super) fn orbiting(gm: f64, gm_own: f64, q: f64, e: f64, nu: f64) -> InitialBody {
-    let elements = Elements {
+/// The orbit of [`orbiting`], at a true anomaly.
+pub(super) fn elements(q: f64, e: f64, nu: f64) -> Elements {
+    Elements {
         periapsis_m: q,
         eccentricity: e,
         inclination_rad: 0.1,
         node_rad: 1.0,
         argument_rad: 2.0,
         true_anomaly_rad: nu,
-    };
-    let (pos, vel) = state_from_elements(&elements, gm).unwrap();
+    }
+}
+
+pub(super) fn orbiting(gm: f64, gm_own: f64, q: f64, e: f64, nu: f64) -> InitialBody {
+    let (pos, vel) = state_from_elements(&elements(q, e, nu), gm).unwrap();
     point("p", gm_own, Some(0), pos, vel)
 }
 
