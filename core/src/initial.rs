@@ -15,6 +15,23 @@ pub struct InitialState {
     pub forces: Forces,
     /// What is done to the bodies on the way, in the order of time. They act from time 0 on; going back, nothing changes.
     pub changes: Vec<Change>,
+    /// Swarms of tracers, in the order of the file. They feel the bodies and pull on nothing.
+    pub swarms: Vec<InitialSwarm>,
+}
+
+/// Many tracers at the start, with one origin.
+#[derive(Debug, Clone, PartialEq)]
+pub struct InitialSwarm {
+    /// Its name.
+    pub name: String,
+    /// The body relative to whose centre its tracers are placed.
+    pub about: BodyId,
+    /// Positions relative to that body, m.
+    pub pos: Vec<Vector3<f64>>,
+    /// Velocities relative to that body, m/s; as many as positions.
+    pub vel: Vec<Vector3<f64>>,
+    /// Coefficient of drag times cross-section over mass of each tracer, m²/kg; 0: air does not slow them.
+    pub area_m2_kg: f64,
 }
 
 /// One body at the start.

@@ -103,7 +103,13 @@ mod tests {
             point("star", GM, -pos * share, -vel * share),
             point("planet", gm_own, pos * (1.0 - share), vel * (1.0 - share)),
         ];
-        let initial = InitialState { bodies, listed: 2, forces: Forces::default(), changes: Vec::new() };
+        let initial = InitialState {
+            bodies,
+            listed: 2,
+            forces: Forces::default(),
+            changes: Vec::new(),
+            swarms: Vec::new(),
+        };
         let period = elements.period_s(GM + gm_own).unwrap();
         let mut propagation = Propagation::new(&initial);
         assert!(propagation.advance(1.1 * period, 100_000).unwrap());

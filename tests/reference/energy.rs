@@ -46,8 +46,13 @@ fn energy_wanders_by_rounding_alone_over_a_thousand_years() {
     };
     let (mut pos, mut vel) = (flat(|b| b.pos), flat(|b| b.vel));
     let listed = bodies.len();
-    let mut field =
-        Field::new(&InitialState { bodies, listed, forces: Forces::default(), changes: Vec::new() });
+    let mut field = Field::new(&InitialState {
+        bodies,
+        listed,
+        forces: Forces::default(),
+        changes: Vec::new(),
+        swarms: Vec::new(),
+    });
     let start = drift::energy(field.gms_m3_s2(), &pos, &vel);
     let mut radau = Radau::new(0.0, &pos, &vel, 86_400.0);
     let (mut steps, mut worst, mut next) = (0, 0.0_f64, 0.0);

@@ -29,7 +29,7 @@ fn eight() -> InitialState {
     };
     let half = [-0.5 * V[0], -0.5 * V[1]];
     let bodies = vec![body("A", X, half), body("B", [-X[0], -X[1]], half), body("C", [0.0, 0.0], V)];
-    InitialState { bodies, listed: 3, forces: Forces::default(), changes: Vec::new() }
+    InitialState { bodies, listed: 3, forces: Forces::default(), changes: Vec::new(), swarms: Vec::new() }
 }
 
 #[test]

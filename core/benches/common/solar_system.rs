@@ -105,7 +105,13 @@ pub(crate) fn solar_system(names: &[&str]) -> InitialState {
         body.pos -= pos;
         body.vel -= vel;
     }
-    InitialState { listed: bodies.len(), bodies, forces: Forces::default(), changes: Vec::new() }
+    InitialState {
+        listed: bodies.len(),
+        bodies,
+        forces: Forces::default(),
+        changes: Vec::new(),
+        swarms: Vec::new(),
+    }
 }
 
 /// The Sun and the eight planets, without the Moon.

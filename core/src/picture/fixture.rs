@@ -197,6 +197,7 @@ pub(crate) fn show(
             .collect(),
         forces: Forces::default(),
         changes: Vec::new(),
+        swarms: Vec::new(),
     };
     let (beats, planned): (Vec<_>, Vec<_>) = beats.into_iter().unzip();
     Show {

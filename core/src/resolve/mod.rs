@@ -78,7 +78,7 @@ pub fn resolve(scenario: &Scenario) -> Result<InitialState, Vec<Problem>> {
     let mut changes = scenario.changes.clone();
     // Those of the same instant keep the order of the file.
     changes.sort_by(|a, b| a.at.s().total_cmp(&b.at.s()));
-    Ok(InitialState { bodies: initial, listed: bodies.len(), forces, changes })
+    Ok(InitialState { bodies: initial, listed: bodies.len(), forces, changes, swarms: Vec::new() })
 }
 
 /// GM of a body: as stated, else the real one's own, else none.

@@ -105,6 +105,7 @@ pub fn system(states: &[State; 11], at: Epoch) -> InitialState {
         listed: ALL.len(),
         forces: Forces { relativity: true, oblate: vec![earth_bulge(EARTH, at)], ..Forces::default() },
         changes: Vec::new(),
+        swarms: Vec::new(),
     }
 }
 

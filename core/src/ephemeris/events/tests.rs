@@ -40,7 +40,13 @@ pub(super) fn orbiting(gm: f64, gm_own: f64, q: f64, e: f64, nu: f64) -> Initial
 }
 
 pub(super) fn state(bodies: Vec<InitialBody>) -> InitialState {
-    InitialState { listed: bodies.len(), bodies, forces: Forces::default(), changes: Vec::new() }
+    InitialState {
+        listed: bodies.len(),
+        bodies,
+        forces: Forces::default(),
+        changes: Vec::new(),
+        swarms: Vec::new(),
+    }
 }
 
 pub(super) fn run(initial: &InitialState, from_s: f64, until_s: f64) -> Ephemeris {
