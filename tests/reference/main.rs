@@ -13,3 +13,4 @@ mod energy;
 mod figure_eight;
 mod handbooks;
 mod planets;
+mod transits;

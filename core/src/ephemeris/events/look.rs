@@ -36,6 +36,8 @@ pub(super) enum Look {
     Crossing { body: usize, other: usize, distance_m: f64 },
     /// The edge of a shadow is crossed.
     Shadow { body: usize, caster: usize, star: usize, edge: shadow::Edge },
+    /// The disc of the body and that of the star touch: the observer crosses the edge of the body's penumbra.
+    Transit { body: usize, observer: usize, star: usize, edge: shadow::Edge },
 }
 
 impl Look {
@@ -73,6 +75,12 @@ impl Look {
                 let edge = shadow::Edge::new(initial, query.body, other, BodyId(star), kind)?;
                 Self::Shadow { body, caster: seen_from, star, edge }
             }
+            EventKind::TransitEntry | EventKind::TransitExit => {
+                let star = lit()?;
+                let entry = kind == EventKind::TransitEntry;
+                let edge = shadow::Edge::before(initial, query.body, BodyId(star), entry)?;
+                Self::Transit { body, observer: seen_from, star, edge }
+            }
         })
     }
 
@@ -81,9 +89,11 @@ impl Look {
         match self {
             Self::Extreme { .. } | Self::Shadow { .. } => "m",
             Self::Crossing { .. } => "m/s",
-            Self::Alignment { .. } | Self::Node { .. } | Self::Station { .. } | Self::Elongation { .. } => {
-                "deg"
-            }
+            Self::Alignment { .. }
+            | Self::Node { .. }
+            | Self::Station { .. }
+            | Self::Elongation { .. }
+            | Self::Transit { .. } => "deg",
         }
     }
 
@@ -96,6 +106,7 @@ impl Look {
             | Self::Alignment { body, observer: other, .. }
             | Self::Station { body, observer: other }
             | Self::Elongation { body, observer: other, .. }
+            | Self::Transit { body, observer: other, .. }
             | Self::Shadow { body, caster: other, .. } => (body, other),
         };
         if eph.contacts().is_empty() {
@@ -153,6 +164,17 @@ impl Look {
             }
             Self::Shadow { body, caster, star, edge } => {
                 edge.crossings(&motion(body, caster)?, &motion(caster, star)?, step.step_s > 0.0)
+            }
+            Self::Transit { body, observer, star, edge } => {
+                let (seen, light) = (motion(observer, body)?, motion(body, star)?);
+                let mut found = edge.crossings(&seen, &light, step.step_s > 0.0);
+                for (h, value) in &mut found {
+                    let from_body = seen.at(*h)[0];
+                    let from_star = from_body + light.at(*h)[0];
+                    let across = from_body.cross(&from_star).norm();
+                    *value = atan2(across, from_body.dot(&from_star)).to_degrees();
+                }
+                found
             }
         })
     }

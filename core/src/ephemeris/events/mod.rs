@@ -85,6 +85,7 @@ pub struct Event {
     /// | stationary | longitude at which it stands, seen from the other body, 0 to 360 | deg |
     /// | greatest-elongation | angle between the body and the star; negative: west of it | deg |
     /// | shadow-entry, shadow-exit, penumbra-entry, penumbra-exit | distance from the body that casts the shadow | m |
+    /// | transit-entry, transit-exit | angle between the body and the star | deg |
     /// | distance | rate at which the distance grows; negative: it comes nearer | m/s |
     pub value: f64,
     /// Unit of the value: "m", "m/s" or "deg".
@@ -128,16 +129,22 @@ pub fn first(eph: &Ephemeris, initial: &InitialState, event: &EventRef, after_s:
 const SAME_PLACE_M: f64 = 1e-6;
 
 /// Kinds that are seen from another body, against the star.
-const SEEN: [EventKind; 4] =
-    [EventKind::Conjunction, EventKind::Opposition, EventKind::Stationary, EventKind::GreatestElongation];
+const SEEN: [EventKind; 6] = [
+    EventKind::Conjunction,
+    EventKind::Opposition,
+    EventKind::Stationary,
+    EventKind::GreatestElongation,
+    EventKind::TransitEntry,
+    EventKind::TransitExit,
+];
 
 /// Kinds that a shadow makes.
 const SHADED: [EventKind; 4] =
     [EventKind::ShadowEntry, EventKind::ShadowExit, EventKind::PenumbraEntry, EventKind::PenumbraExit];
 
 /// All events between the bodies that the scenario names, in order of time: apsides and nodes about the primary, closest
-/// approaches of all other pairs, contacts; conjunctions, oppositions, stations and greatest elongations seen from every
-/// body with mass that goes around the same star; and ways through the shadows of bodies that do. Crossings of a
+/// approaches of all other pairs, contacts; conjunctions, oppositions, stations, greatest elongations and transits seen from
+/// every body with mass that goes around the same star; and ways through the shadows of bodies that do. Crossings of a
 /// distance are not among them, as no distance is stated here: ask [`find`] for those.
 pub fn all(eph: &Ephemeris, initial: &InitialState, from_s: f64, until_s: f64) -> Vec<Event> {
     let mut found = Vec::new();

@@ -45,6 +45,13 @@ impl Edge {
         (caster_m > 0.0).then_some(Self { caster_m, body_m, narrows_m, entry })
     }
 
+    /// The edge of the penumbra of a body, for an observer without extent: within it, the body covers a part of the star.
+    pub(super) fn before(initial: &InitialState, body: BodyId, star: BodyId, entry: bool) -> Option<Self> {
+        let radius = |body: BodyId| initial.bodies.get(body.0).map(|b| b.radius_m);
+        let (caster_m, star_m) = (radius(body)?, radius(star)?);
+        (caster_m > 0.0).then_some(Self { caster_m, body_m: 0.0, narrows_m: -star_m - caster_m, entry })
+    }
+
     /// Crossings in a step: fraction of the step, and distance from the caster in metres.
     ///
     /// `d` is the body relative to the caster, `a` the caster relative to the star. With D = |a|, δ what the cone narrows by, R and r

@@ -163,13 +163,17 @@ pub enum EventKind {
     PenumbraEntry,
     /// The last of it leaves the penumbra of another body.
     PenumbraExit,
+    /// Its disc meets that of the star and lies before it, seen from the centre of another body.
+    TransitEntry,
+    /// Its disc leaves that of the star.
+    TransitExit,
     /// A stated distance from another body is crossed, inwards or outwards.
     Distance,
 }
 
 impl EventKind {
     /// Every kind, in the order in which they are listed to people.
-    pub const ALL: [Self; 15] = [
+    pub const ALL: [Self; 17] = [
         Self::Periapsis,
         Self::Apoapsis,
         Self::ClosestApproach,
@@ -184,6 +188,8 @@ impl EventKind {
         Self::ShadowExit,
         Self::PenumbraEntry,
         Self::PenumbraExit,
+        Self::TransitEntry,
+        Self::TransitExit,
         Self::Distance,
     ];
 
@@ -204,6 +210,8 @@ impl EventKind {
             Self::ShadowExit => "shadow-exit",
             Self::PenumbraEntry => "penumbra-entry",
             Self::PenumbraExit => "penumbra-exit",
+            Self::TransitEntry => "transit-entry",
+            Self::TransitExit => "transit-exit",
             Self::Distance => "distance",
         }
     }
@@ -219,7 +227,15 @@ impl EventKind {
 
     /// Whether it is seen from another body, which has to be named.
     pub const fn is_seen(self) -> bool {
-        matches!(self, Self::Conjunction | Self::Opposition | Self::Stationary | Self::GreatestElongation)
+        matches!(
+            self,
+            Self::Conjunction
+                | Self::Opposition
+                | Self::Stationary
+                | Self::GreatestElongation
+                | Self::TransitEntry
+                | Self::TransitExit
+        )
     }
 }
 

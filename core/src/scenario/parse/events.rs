@@ -163,6 +163,7 @@ mod tests {
             ("greatest-elongation of Brae from Ball", EventKind::GreatestElongation, 2, Some(4), 1),
             ("shadow-entry of Ball", EventKind::ShadowEntry, 4, None, 1),
             ("penumbra-exit of Ball from Brae", EventKind::PenumbraExit, 4, Some(2), 1),
+            ("transit-entry of Brae from Ball", EventKind::TransitEntry, 2, Some(4), 1),
         ] {
             // The longest name wins: "Fenn to Brae" is a body, so "Fenn to Brae" alone states no other one.
             let got = event(text, &names());
