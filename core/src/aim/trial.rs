@@ -69,7 +69,7 @@ impl Trial<'_> {
         let mut document = self.document.clone();
         for (free, share) in self.aim.free.iter().zip(point) {
             let si = free.from + share * (free.to - free.from);
-            let path = Path { root: Root::BodyAt(free.body.0), keys: &free.keys };
+            let path = Path { root: Root::BodyAt(free.section), keys: &free.keys };
             document.set(path, value(free, si, digits).map_err(|e| EditError::WouldBreak(e.to_string()))?)?;
         }
         Ok(document)
@@ -78,7 +78,7 @@ impl Trial<'_> {
     /// The point at which the numbers stand in the text, where all are stated and within their ranges.
     pub(super) fn stated(&self) -> Option<Vec<f64>> {
         let share = |free: &Free| {
-            let path = Path { root: Root::BodyAt(free.body.0), keys: &free.keys };
+            let path = Path { root: Root::BodyAt(free.section), keys: &free.keys };
             let si = match free.measure {
                 Measure::Number => self.document.get(path)?.trim().parse().ok()?,
                 _ => read(free.measure, &self.document.get_text(path)?).ok()?,

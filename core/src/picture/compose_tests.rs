@@ -4,7 +4,7 @@ use super::super::type_metrics;
 use super::super::view::Camera;
 use super::*;
 use crate::ephemeris::Ephemeris;
-use crate::scenario::BodyId;
+use crate::scenario::{BodyId, Cast};
 
 const HOUSE: Screen = Screen { width_px: 1920.0, height_px: 1080.0, density: 1.0 };
 
@@ -270,7 +270,8 @@ fn merged_bodies_are_gone_and_the_cast_is_kept() {
         speed_m_s: 0.0,
         onto_gm_m3_s2: 1.2e20,
     });
-    show.scenario.beats[0].cast = Some(vec![BodyId(0), BodyId(2), BodyId(3)]);
+    show.scenario.beats[0].cast =
+        Some(Cast { bodies: vec![BodyId(0), BodyId(2), BodyId(3)], swarms: Vec::new() });
     let mut composer = composer(&show, HOUSE);
     let mut bodies = |day: f64| -> Vec<usize> {
         let list = composer.compose(&show, &fixture::moment(0, day * DAY, 0.0, DAY));

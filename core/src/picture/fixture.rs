@@ -209,6 +209,7 @@ pub(crate) fn show(
             date: Epoch::parse_utc("2031-05-04T20:00:00Z").ok(),
             physics: Physics::default(),
             bodies: bodies.into_iter().map(|b| b.0).collect(),
+            swarms: Vec::new(),
             changes: Vec::new(),
             beats,
             aims: Vec::new(),

@@ -166,7 +166,7 @@ pub const fn stroke(width: f64, colour: Colour) -> Stroke {
 
 /// Whether a body is to be seen in a beat at an instant.
 pub fn on_stage(show: &Show, beat: &Beat, body: BodyId, t_s: f64) -> bool {
-    let cast = beat.cast.as_ref().is_none_or(|cast| cast.contains(&body));
+    let cast = beat.cast.as_ref().is_none_or(|cast| cast.bodies.contains(&body));
     let merged = show
         .ephemeris
         .at_rest(body, t_s)

@@ -83,7 +83,7 @@ fn above(height: Length, radius_m: f64) -> Result<f64, Fault> {
 }
 
 /// Directions up, north and east at a place on a sphere: north is the ecliptic pole, longitude 0 is +x.
-fn horizon(latitude: Angle, longitude: Angle) -> Result<[Vector3<f64>; 3], Fault> {
+pub(super) fn horizon(latitude: Angle, longitude: Angle) -> Result<[Vector3<f64>; 3], Fault> {
     // A little slack for 90 degrees written in radians.
     if latitude.rad().abs() > FRAC_PI_2 + 1e-9 {
         return Err(Fault {

@@ -4,17 +4,21 @@
 //! as unseen companions where one of its own is `real`; last, all is moved so that the centre of mass of the massive
 //! bodies rests at the origin.
 
-pub use crate::initial::{Atmosphere, Drag, Forces, InitialBody, InitialState, Oblate};
+pub use crate::initial::{Atmosphere, Drag, Forces, InitialBody, InitialState, InitialSwarm, Oblate};
 
 use crate::Vector3;
 use crate::air::Air;
 use crate::ephemeris::State;
 use crate::scenario::{self, Body, BodyId, Form, Place, Problem, RealBody, Scenario, Severity};
 
+mod draws;
 mod forms;
 mod order;
 pub mod real;
 mod shape;
+mod sow;
+#[cfg(test)]
+mod sow_tests;
 #[cfg(test)]
 mod tests;
 
@@ -69,6 +73,18 @@ pub fn resolve(scenario: &Scenario) -> Result<InitialState, Vec<Problem>> {
     if problems.is_empty() {
         find_shared_places(&initial, bodies, &mut problems);
     }
+    let mut swarms = Vec::new();
+    // Of bodies that are nowhere, what goes around them is no further problem.
+    if problems.is_empty() {
+        for swarm in &scenario.swarms {
+            match sow::sow(swarm, &initial, scenario.physics.drag != Some(false)) {
+                Ok(sown) => swarms.push(sown),
+                Err(Fault { wrong, remedy }) => {
+                    problems.push(Problem::error(swarm.place, format!("{}: {wrong}", swarm.name), remedy));
+                }
+            }
+        }
+    }
     if problems.iter().any(|p| p.severity == Severity::Error) {
         problems.sort_by_key(|problem| problem.place);
         return Err(problems);
@@ -78,7 +94,7 @@ pub fn resolve(scenario: &Scenario) -> Result<InitialState, Vec<Problem>> {
     let mut changes = scenario.changes.clone();
     // Those of the same instant keep the order of the file.
     changes.sort_by(|a, b| a.at.s().total_cmp(&b.at.s()));
-    Ok(InitialState { bodies: initial, listed: bodies.len(), forces, changes, swarms: Vec::new() })
+    Ok(InitialState { bodies: initial, listed: bodies.len(), forces, changes, swarms })
 }
 
 /// GM of a body: as stated, else the real one's own, else none.

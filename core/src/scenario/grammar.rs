@@ -3,8 +3,10 @@
 //! Parsing reads unknown keys and its remedies off these tables; the format's reference can be made from them.
 
 mod aiming;
+mod sowing;
 
 pub use aiming::{AIM, FREE, WANT};
+pub use sowing::{SWARM, SWARM_SHAPES};
 
 /// A key of a section.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -147,6 +149,12 @@ pub const BODY: Section = Section {
             "form: thrown from a surface",
         ),
         key("drop", "table", r#"{ onto = "Brae", height = "100 m" }"#, "form: let go above a surface"),
+        key(
+            "swarm",
+            "table",
+            r#"{ ring = "Brae", from = "9000 km", to = "14000 km", count = 5000 }"#,
+            "form: many tracers instead of one body; beside it stand name, colour and drag alone",
+        ),
     ],
 };
 
@@ -181,7 +189,7 @@ pub const DRAG: Section = Section {
 };
 
 /// The keys of a body that say how it comes to be there.
-pub const FORMS: [&str; 5] = ["real", "orbit", "place", "throw", "drop"];
+pub const FORMS: [&str; 6] = ["real", "orbit", "place", "throw", "drop", "swarm"];
 
 /// `orbit`.
 pub const ORBIT: Section = Section {
@@ -330,9 +338,9 @@ pub const BEAT: Section = Section {
         ),
         key(
             "cast",
-            "list of bodies",
+            "list of bodies and swarms",
             r#"["Orla", "Fenn"]"#,
-            "the bodies on stage; as in the beat before unless stated, all with []",
+            "who is on stage; as in the beat before unless stated, all with []",
         ),
     ],
 };
@@ -437,7 +445,7 @@ pub const BODY_MARKS: [&str; 12] = [
 ];
 
 /// Every section, for the format's reference.
-pub const SECTIONS: [&Section; 19] = [
+pub const SECTIONS: [&Section; 20] = [
     &TOP,
     &PHYSICS,
     &BODY,
@@ -447,6 +455,7 @@ pub const SECTIONS: [&Section; 19] = [
     &PLACE,
     &THROW,
     &DROP,
+    &SWARM,
     &CHANGE,
     &BEAT,
     &CLOCK,

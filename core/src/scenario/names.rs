@@ -1,24 +1,36 @@
-//! Names of bodies, and the word that somebody probably meant.
+//! Names of bodies and swarms, and the word that somebody probably meant.
 
-use super::model::BodyId;
+use super::model::{BodyId, SwarmId};
+use crate::units::text::clip;
 
-/// The names of the bodies, by their order in the file; "" where a body has no usable one.
+/// The names in a file, each kind by its order there; "" where one has no usable name.
 #[derive(Debug, Default)]
-pub(super) struct Names(pub(super) Vec<String>);
+pub(super) struct Names {
+    /// Of the bodies.
+    pub(super) bodies: Vec<String>,
+    /// Which `[[body]]` of the file, from 0, is that of each body: swarms have theirs among them.
+    pub(super) sections: Vec<usize>,
+    /// Of the swarms.
+    pub(super) swarms: Vec<String>,
+}
 
 impl Names {
     pub(super) fn find(&self, name: &str) -> Option<BodyId> {
-        self.0.iter().position(|n| n == name && !n.is_empty()).map(BodyId)
+        self.bodies.iter().position(|n| n == name && !n.is_empty()).map(BodyId)
+    }
+
+    pub(super) fn find_swarm(&self, name: &str) -> Option<SwarmId> {
+        self.swarms.iter().position(|n| n == name && !n.is_empty()).map(SwarmId)
     }
 
     pub(super) fn name(&self, id: BodyId) -> &str {
-        self.0.get(id.0).map_or("", String::as_str)
+        self.bodies.get(id.0).map_or("", String::as_str)
     }
 
     /// The body whose name a text starts with, and what follows. The longest name wins.
     pub(super) fn leading<'t>(&self, text: &'t str) -> Option<(BodyId, &'t str)> {
         let mut best: Option<(BodyId, &'t str)> = None;
-        for (index, name) in self.0.iter().enumerate().filter(|(_, n)| !n.is_empty()) {
+        for (index, name) in self.bodies.iter().enumerate().filter(|(_, n)| !n.is_empty()) {
             let Some(rest) = text.strip_prefix(name.as_str()) else { continue };
             let ends = rest.is_empty() || rest.starts_with(char::is_whitespace);
             if ends && best.is_none_or(|(_, shortest)| rest.len() < shortest.len()) {
@@ -28,18 +40,38 @@ impl Names {
         best
     }
 
-    /// What to say to somebody who named a body that there isn't.
-    pub(super) fn remedy(&self, wrong: &str) -> String {
-        let known: Vec<&str> = self.0.iter().map(String::as_str).filter(|n| !n.is_empty()).collect();
-        if let Some(near) = nearest(wrong, known.iter().copied()) {
-            return format!("perhaps \"{near}\"");
+    /// What is wrong, and what would be right, where somebody named a body that there isn't.
+    pub(super) fn no_body(&self, wrong: &str) -> (String, String) {
+        if self.find_swarm(wrong).is_some() {
+            let remedy = "name a body; a swarm can only stand in a beat's cast".to_owned();
+            return (format!("\"{}\" is a swarm, which is in no one place", clip(wrong)), remedy);
         }
-        const SHOWN: usize = 12;
-        match known.len() {
-            0 => "the file names no body yet".to_owned(),
-            1..=SHOWN => format!("the bodies are: {}", known.join(", ")),
-            more => format!("the bodies are: {} and {} more", known[..SHOWN].join(", "), more - SHOWN),
-        }
+        (format!("there is no body \"{}\"", clip(wrong)), remedy(wrong, "the bodies are", &[&self.bodies]))
+    }
+
+    /// The same, where a swarm would do as well.
+    pub(super) fn no_one(&self, wrong: &str) -> (String, String) {
+        let known = [self.bodies.as_slice(), &self.swarms];
+        let (what, all) = match self.swarms.is_empty() {
+            true => ("body", "the bodies are"),
+            false => ("body or swarm", "the bodies and swarms are"),
+        };
+        (format!("there is no {what} \"{}\"", clip(wrong)), remedy(wrong, all, &known))
+    }
+}
+
+/// The name that was probably meant, or all that there are.
+fn remedy(wrong: &str, all: &str, names: &[&[String]]) -> String {
+    let known: Vec<&str> =
+        names.iter().flat_map(|n| n.iter()).map(String::as_str).filter(|n| !n.is_empty()).collect();
+    if let Some(near) = nearest(wrong, known.iter().copied()) {
+        return format!("perhaps \"{near}\"");
+    }
+    const SHOWN: usize = 12;
+    match known.len() {
+        0 => "the file names no body yet".to_owned(),
+        1..=SHOWN => format!("{all}: {}", known.join(", ")),
+        more => format!("{all}: {} and {} more", known[..SHOWN].join(", "), more - SHOWN),
     }
 }
 

@@ -1,7 +1,7 @@
 //! Reading tables: every fault becomes a problem with its place, and reading goes on.
 
 use super::grammar::{Key, Section};
-use super::model::BodyId;
+use super::model::{BodyId, Cast};
 use super::names::{Names, nearest};
 use super::problem::Problem;
 use super::source::{At, Source};
@@ -307,25 +307,22 @@ impl<'a> Field<'a> {
 
     /// The body of this name.
     pub(super) fn body(&self, names: &Names) -> Option<BodyId> {
-        self.body_at(self.text()?, &self.at, names)
-    }
-
-    fn body_at(&self, name: &str, at: &At, names: &Names) -> Option<BodyId> {
-        let found = names.find(name.trim());
+        let name = self.text()?.trim();
+        let found = names.find(name);
         if found.is_none() {
-            let shown = units::text::clip(name);
-            self.report.error(at, format!("there is no body \"{shown}\""), names.remedy(name));
+            let (wrong, remedy) = names.no_body(name);
+            self.error(wrong, remedy);
         }
         found
     }
 
-    /// The bodies of a list of names, each once.
-    pub(super) fn bodies(&self, names: &Names) -> Vec<BodyId> {
+    /// The bodies and swarms of a list of names, each once.
+    pub(super) fn cast(&self, names: &Names) -> Cast {
+        let mut found = Cast::default();
         let Some(list) = self.item.as_array() else {
             self.wrong_type("a list of names");
-            return Vec::new();
+            return found;
         };
-        let mut found = Vec::new();
         for value in list {
             let at = value.span().unwrap_or_else(|| self.at.clone());
             let Some(name) = value.as_str() else {
@@ -333,10 +330,15 @@ impl<'a> Field<'a> {
                 self.report.error(&at, wrong, "a body's name in quotes is wanted");
                 continue;
             };
-            if let Some(body) = self.body_at(name, &at, names)
-                && !found.contains(&body)
-            {
-                found.push(body);
+            let name = name.trim();
+            match (names.find(name), names.find_swarm(name)) {
+                (Some(body), _) if !found.bodies.contains(&body) => found.bodies.push(body),
+                (None, Some(swarm)) if !found.swarms.contains(&swarm) => found.swarms.push(swarm),
+                (None, None) => {
+                    let (wrong, remedy) = names.no_one(name);
+                    self.report.error(&at, wrong, remedy);
+                }
+                _ => {}
             }
         }
         found

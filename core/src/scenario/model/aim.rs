@@ -70,6 +70,8 @@ pub enum Outcome {
 pub struct Free {
     /// Of which body.
     pub body: BodyId,
+    /// Which `[[body]]` of the file, from 0, is that body's.
+    pub section: usize,
     /// The keys that lead to it in the body's section: `["throw", "speed"]`, `["place", "velocity", "1"]`.
     pub keys: Vec<&'static str>,
     /// What it measures.

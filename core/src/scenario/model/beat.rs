@@ -1,6 +1,6 @@
 //! Beats: what is said, shown and timed.
 
-use super::BodyId;
+use super::{BodyId, SwarmId};
 use crate::scenario::problem::Place;
 use crate::units::{Angle, Length, Pace, Span};
 
@@ -23,13 +23,22 @@ pub struct Beat {
     pub view: View,
     /// What is drawn to explain.
     pub marks: Vec<Mark>,
-    /// The bodies that are on stage, `cast = ["Orla", "Fenn"]`; the others pull unseen, and marks of theirs are
-    /// not drawn. `None`: all. A beat that states none keeps those of the one before; `cast = []` brings all back.
-    pub cast: Option<Vec<BodyId>>,
+    /// Who is on stage, `cast = ["Orla", "Fenn"]`; the others pull unseen, and marks of theirs are not drawn.
+    /// `None`: all. A beat that states none keeps those of the one before; `cast = []` brings all back.
+    pub cast: Option<Cast>,
     /// Where its `[[beat]]` stands in the text.
     pub place: Place,
     /// Where its clock stands in the text.
     pub clock_place: Place,
+}
+
+/// The bodies and swarms that a beat shows.
+#[derive(Debug, Clone, PartialEq, Eq, Default)]
+pub struct Cast {
+    /// The bodies.
+    pub bodies: Vec<BodyId>,
+    /// The swarms.
+    pub swarms: Vec<SwarmId>,
 }
 
 /// A caption in one language.

@@ -5,11 +5,13 @@ pub mod aim;
 pub mod beat;
 pub mod change;
 pub mod form;
+pub mod swarm;
 
 pub use aim::*;
 pub use beat::*;
 pub use change::*;
 pub use form::*;
+pub use swarm::*;
 
 use super::problem::Place;
 use crate::time::Epoch;
@@ -36,6 +38,8 @@ pub struct Scenario {
     pub physics: Physics,
     /// The bodies, in the order of the file.
     pub bodies: Vec<Body>,
+    /// The swarms, in the order of the file.
+    pub swarms: Vec<Swarm>,
     /// What is done to them on the way, in the order of the file.
     pub changes: Vec<Change>,
     /// The beats, in the order of the talk.

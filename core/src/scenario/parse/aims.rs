@@ -230,7 +230,10 @@ fn free_of(table: &Reading<'_>, names: &Names, forms: &[Option<&Form>]) -> Optio
         to_field.error("the range is empty", "to must be more than from");
         return None;
     }
-    Some(Free { body: body?, keys: keys.to_vec(), measure: *measure, from: from.0, to: to.0, unit: from.1 })
+    let body = body?;
+    let section = names.sections.get(body.0).copied()?;
+    let (keys, measure) = (keys.to_vec(), *measure);
+    Some(Free { body, section, keys, measure, from: from.0, to: to.0, unit: from.1 })
 }
 
 /// An end of a range, SI, and the unit in which it stands.

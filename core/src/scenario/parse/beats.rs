@@ -1,6 +1,6 @@
 //! `[[beat]]`: the steps of the talk.
 
-use super::super::model::{Beat, BodyId, Caption, Mark};
+use super::super::model::{Beat, Caption, Cast, Mark};
 use super::super::names::Names;
 use super::super::reader::{Field, Reading, kind_of, tidy_text};
 use super::{clock, marks, view};
@@ -21,7 +21,7 @@ pub(super) struct Around<'a> {
 pub(super) fn read(sections: &[Reading<'_>], around: &Around<'_>) -> Option<Vec<Beat>> {
     let mut view_before: Option<view::Known> = None;
     let mut marks_before: Vec<Mark> = Vec::new();
-    let mut cast_before: Option<Vec<BodyId>> = None;
+    let mut cast_before: Option<Cast> = None;
     let mut beats = Vec::new();
     for (index, section) in sections.iter().enumerate() {
         let known = view::read(section, view_before, around.names);
@@ -61,10 +61,10 @@ pub(super) fn read(sections: &[Reading<'_>], around: &Around<'_>) -> Option<Vec<
     beats.into_iter().collect()
 }
 
-/// The bodies on stage: `None` for those of the beat before, `Some(None)` for all.
-fn cast(beat: &Reading<'_>, names: &Names) -> Option<Option<Vec<BodyId>>> {
-    let cast = beat.get("cast")?.bodies(names);
-    Some(if cast.is_empty() { None } else { Some(cast) })
+/// Who is on stage: `None` for those of the beat before, `Some(None)` for all.
+fn cast(beat: &Reading<'_>, names: &Names) -> Option<Option<Cast>> {
+    let cast = beat.get("cast")?.cast(names);
+    Some(if cast == Cast::default() { None } else { Some(cast) })
 }
 
 fn captions(beat: &Reading<'_>, language: &str) -> Vec<Caption> {

@@ -55,10 +55,10 @@ pub(super) fn name(section: &Reading<'_>) -> String {
     if usable { name.to_owned() } else { String::new() }
 }
 
-/// Reports names that are missing, unusable or stated twice.
-pub(super) fn check_names(sections: &[Reading<'_>], names: &Names) {
-    for (index, section) in sections.iter().enumerate() {
-        let name = names.name(BodyId(index));
+/// Reports names that are missing, unusable or stated twice, of bodies and swarms alike. `names`: of all sections.
+pub(super) fn check_names(sections: &[Reading<'_>], names: &[String]) {
+    for (index, (section, name)) in sections.iter().zip(names).enumerate() {
+        let before = names.get(..index).unwrap_or_default();
         let Some(field) = section.get("name") else {
             if name.is_empty() {
                 // A real body would be called by what it is; that it isn't one has its own problem.
@@ -67,7 +67,7 @@ pub(super) fn check_names(sections: &[Reading<'_>], names: &Names) {
                 }
                 continue;
             }
-            report_twin(section, &section.at, names, index);
+            report_twin(section, &section.at, name, before);
             continue;
         };
         let Some(text) = field.text() else { continue };
@@ -78,15 +78,14 @@ pub(super) fn check_names(sections: &[Reading<'_>], names: &Names) {
         } else if name.eq_ignore_ascii_case("barycentre") {
             field.error("\"barycentre\" is no name for a body", "it means the common centre of mass");
         } else {
-            report_twin(section, &field.at, names, index);
+            report_twin(section, &field.at, name, before);
         }
     }
 }
 
-fn report_twin(section: &Reading<'_>, at: &At, names: &Names, index: usize) {
-    let name = names.name(BodyId(index));
+fn report_twin(section: &Reading<'_>, at: &At, name: &str, before: &[String]) {
     let folded = name.to_lowercase();
-    if let Some(twin) = names.0.iter().take(index).find(|other| other.to_lowercase() == folded) {
+    if let Some(twin) = before.iter().find(|other| other.to_lowercase() == folded) {
         let wrong = if twin == name {
             format!("there are two bodies called \"{name}\"")
         } else {
@@ -99,7 +98,7 @@ fn report_twin(section: &Reading<'_>, at: &At, names: &Names, index: usize) {
 /// Reads one body. Problems are reported; `None` when there were some that leave it without a form.
 pub(super) fn read(section: &Reading<'_>, names: &Names) -> Option<ReadBody> {
     let kind = section.get("kind").and_then(|f| f.choice(KINDS));
-    let colour = section.get("colour").and_then(|f| f.choice(COLOURS));
+    let colour = colour(section);
     let gm = gravity(section);
     let radius = section.positive("radius");
     let surface = surface(section);
@@ -140,6 +139,11 @@ pub(super) fn read(section: &Reading<'_>, names: &Names) -> Option<ReadBody> {
         place: section.report().source().place(section.at.start),
     };
     Some(ReadBody { body, by, real_at, kind, colour })
+}
+
+/// The colour that is stated.
+pub(super) fn colour(section: &Reading<'_>) -> Option<Colour> {
+    section.get("colour").and_then(|f| f.choice(COLOURS))
 }
 
 fn gravity(section: &Reading<'_>) -> Option<Gm> {

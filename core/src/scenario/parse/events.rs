@@ -110,7 +110,7 @@ pub(super) fn body_in<'t>(text: &'t str, names: &Names) -> Result<(BodyId, &'t s
         // What looks like the name: up to a joiner.
         let words: Vec<&str> = text.split_whitespace().take_while(|w| !JOINERS.contains(w)).collect();
         let name = words.join(" ");
-        (format!("there is no body \"{}\"", clip(&name)), names.remedy(&name))
+        names.no_body(&name)
     })
 }
 
@@ -130,7 +130,7 @@ fn other_body(rest: &str, names: &Names) -> Result<Option<BodyId>, Fault> {
 
 /// The body whose name a text is.
 pub(super) fn whole_name(name: &str, names: &Names) -> Result<BodyId, Fault> {
-    names.find(name).ok_or_else(|| (format!("there is no body \"{}\"", clip(name)), names.remedy(name)))
+    names.find(name).ok_or_else(|| names.no_body(name))
 }
 
 /// "1.5 periods of Fenn", or `None` when the text is not of that kind.
@@ -145,7 +145,8 @@ mod tests {
     use super::*;
 
     fn names() -> Names {
-        Names(["Fenn", "Fenn to Brae", "Brae", "Old Moon of Brae", "Ball"].map(str::to_owned).to_vec())
+        let bodies = ["Fenn", "Fenn to Brae", "Brae", "Old Moon of Brae", "Ball"].map(str::to_owned).to_vec();
+        Names { bodies, ..Names::default() }
     }
 
     #[test]

@@ -118,7 +118,7 @@ fn drop(table: &Reading<'_>, names: &Names) -> Option<(Drop, Relation)> {
     Some((drop, relation))
 }
 
-fn latitude(table: &Reading<'_>) -> Option<Angle> {
+pub(super) fn latitude(table: &Reading<'_>) -> Option<Angle> {
     let field = table.get("latitude");
     let latitude: Angle = table.quantity_or("latitude", Angle::default())?;
     // A pole in degrees may come out a rounding beyond π/2.

@@ -14,6 +14,7 @@ mod events;
 mod forms;
 mod marks;
 mod relations;
+mod swarms;
 mod syntax;
 mod view;
 
@@ -27,6 +28,8 @@ use super::reader::{Reading, Report};
 pub const MAX_BYTES: usize = 1_000_000;
 /// Most bodies in a scenario.
 pub const MAX_BODIES: usize = 200;
+/// Most tracers in all swarms of a scenario together.
+pub const MAX_TRACERS: usize = 50_000;
 /// Most changes in a scenario.
 pub const MAX_CHANGES: usize = 200;
 /// Most beats in a scenario.
@@ -146,13 +149,28 @@ fn read(top: &Reading<'_>) -> Option<Scenario> {
         top.error("the scenario has no body", "add [[body]] with its name, for one thing that moves");
     }
     cut_at(&mut sections, MAX_BODIES, "bodies");
-    let names = Names(sections.iter().map(bodies::name).collect());
-    bodies::check_names(&sections, &names);
+    let all_names: Vec<String> = sections.iter().map(bodies::name).collect();
+    bodies::check_names(&sections, &all_names);
+    let mut names = Names::default();
+    let mut of_swarms = Vec::new();
+    let mut of_bodies = Vec::new();
+    for (index, (section, name)) in sections.into_iter().zip(all_names).enumerate() {
+        if section.get("swarm").is_some() {
+            names.swarms.push(name);
+            of_swarms.push(section);
+        } else {
+            names.bodies.push(name);
+            names.sections.push(index);
+            of_bodies.push(section);
+        }
+    }
+    let sections = of_bodies;
     let mut read: Vec<Option<bodies::ReadBody>> = sections.iter().map(|s| bodies::read(s, &names)).collect();
     relations::check(&sections, &read, &names);
     bodies::check_real(&read, date, top);
     bodies::give_kinds(&mut read);
     bodies::give_colours(&mut read);
+    let swarms = swarms::read(&of_swarms, &sections, &names);
 
     let mut sections = top.get("change").map(|field| field.tables(&grammar::CHANGE)).unwrap_or_default();
     cut_at(&mut sections, MAX_CHANGES, "changes");
@@ -179,6 +197,7 @@ fn read(top: &Reading<'_>) -> Option<Scenario> {
         date: date.flatten(),
         physics: physics.unwrap_or_default(),
         bodies: read.into_iter().map(|b| b.map(|b| b.body)).collect::<Option<_>>()?,
+        swarms: swarms?,
         changes: changes?,
         beats: beats?,
         aims: aims?,

@@ -85,6 +85,25 @@ fn every_key_of_the_format_is_read() {
     assert_eq!(kicked.what, ChangeKind::Kick(kick));
     let by = [0.0, 1000.0, 0.0].map(Speed::from_m_s);
     assert_eq!(pushed.what, ChangeKind::Kick(Kick::By(by)));
+    let cast = scenario.beats[0].cast.as_ref().unwrap();
+    assert_eq!(
+        (cast.bodies.as_slice(), cast.swarms.as_slice()),
+        (&[BodyId(0), BodyId(2)][..], &[SwarmId(1)][..])
+    );
+    let [ring, belt, cloud, plume] = scenario.swarms.as_slice() else { panic!("four swarms") };
+    assert_eq!(
+        (ring.name.as_str(), ring.colour, ring.count, ring.seed),
+        ("Ring of Brae", Colour::Yellow, 5000, 7)
+    );
+    assert!(
+        matches!(ring.shape, SwarmShape::Ring { around: BodyId(1), thickness, .. } if thickness == Length::from_m(2e3))
+    );
+    assert_eq!((belt.colour, belt.seed, belt.drag), (Colour::Bone, 1, None));
+    assert!(matches!(belt.shape, SwarmShape::Belt { around: BodyId(0), .. }));
+    assert!(matches!(cloud.shape, SwarmShape::Cloud { around: BodyId(0), .. }));
+    assert!(matches!(plume.shape, SwarmShape::Burst { of: BodyId(1), spot: Some(_), .. }));
+    let last = scenario.bodies.last().unwrap();
+    assert_eq!(last.name, "Late one", "swarms are not counted among the bodies");
     let beats = &scenario.beats;
     assert_eq!(beats[0].clock, BeatClock::Hold { lasts: Span::from_s(30.0) });
     assert_eq!(
