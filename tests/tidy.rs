@@ -6,7 +6,7 @@ use std::fs;
 use std::path::{Path, PathBuf};
 
 /// The floors of core, from the ground up. A module may use what lies below it, and nothing beside or above.
-const FLOORS: [&str; 16] = [
+const FLOORS: [&str; 17] = [
     "math",
     "constants",
     "units",
@@ -18,6 +18,7 @@ const FLOORS: [&str; 16] = [
     "gravity",
     "integrate",
     "ephemeris",
+    "swarm",
     "resolve",
     "sweep",
     "show",

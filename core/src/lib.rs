@@ -56,6 +56,7 @@ pub mod picture;
 pub mod resolve;
 pub mod scenario;
 pub mod show;
+pub mod swarm;
 pub mod sweep;
 pub mod time;
 pub mod units;

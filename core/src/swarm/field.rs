@@ -1,0 +1,202 @@
+//! What pulls on tracers: the bodies, at instants that all tracers share.
+//!
+//! Places are relative to the swarm's origin. That is the centre of mass of all, which nothing moves, where tracers are farther from
+//! their body than it is from there; else the body itself, near which places are then exact, and whose own acceleration is taken off those
+//! of the tracers. That acceleration is the sum of the same pulls that act on the tracers, and not read off the ephemeris: what is left out
+//! for them (relativity) is left out for it, and tracers near it fall with it.
+
+use crate::Vector3;
+use crate::ephemeris::Ephemeris;
+use crate::initial::InitialState;
+use crate::scenario::BodyId;
+
+/// A body that pulls on tracers, or stops them.
+#[derive(Debug, Clone)]
+pub(super) struct Source {
+    pub(super) body: BodyId,
+    pub(super) gm: f64,
+    pub(super) radius_m: f64,
+    /// Its part in the mass of what moves as one with the body that the swarm is about; 0 if it doesn't.
+    share: f64,
+}
+
+/// A bulge of one of the sources.
+#[derive(Debug, Clone)]
+struct Bulge {
+    source: usize,
+    /// 3/2 J2 R², m².
+    strength_m2: f64,
+    pole: [f64; 3],
+}
+
+/// What pulls on tracers, from one break of the forces to the next.
+#[derive(Debug, Clone)]
+pub(super) struct Field {
+    about: BodyId,
+    inertial: bool,
+    /// Those with mass first.
+    pub(super) sources: Vec<Source>,
+    pub(super) massive: usize,
+    bulges: Vec<Bulge>,
+}
+
+/// The bodies at one instant.
+#[derive(Debug, Clone, Default)]
+pub(super) struct Node {
+    pub(super) t_s: f64,
+    /// Places of the sources relative to the origin.
+    pub(super) at: Vec<[f64; 3]>,
+    /// Acceleration of the origin.
+    pub(super) shift: [f64; 3],
+}
+
+impl Field {
+    /// As it is at an instant, and until the next break.
+    pub(super) fn new(
+        initial: &InitialState,
+        about: BodyId,
+        inertial: bool,
+        eph: &Ephemeris,
+        t_s: f64,
+    ) -> Self {
+        let root = |body: BodyId| {
+            let mut root = body;
+            while let Some(contact) = eph.at_rest(root, t_s) {
+                root = contact.onto;
+            }
+            root
+        };
+        let mut sources: Vec<Source> = initial
+            .bodies
+            .iter()
+            .enumerate()
+            .map(|(i, body)| Source {
+                body: BodyId(i),
+                gm: eph.gm_m3_s2(BodyId(i), t_s),
+                radius_m: body.radius_m,
+                share: 0.0,
+            })
+            .filter(|source| source.gm > 0.0 || source.radius_m > 0.0 || source.body == about)
+            .collect();
+        sources.sort_by_key(|source| source.gm <= 0.0);
+        let massive = sources.iter().filter(|source| source.gm > 0.0).count();
+        let host = root(about);
+        let together = |source: &Source| root(source.body) == host;
+        let all: f64 = sources.iter().filter(|source| together(source)).map(|source| source.gm).sum();
+        for source in &mut sources {
+            if together(source) {
+                source.share = if all > 0.0 { source.gm / all } else { 0.0 };
+            }
+            if all <= 0.0 && source.body == about {
+                source.share = 1.0;
+            }
+        }
+        let bulges = initial
+            .forces
+            .oblate
+            .iter()
+            .filter_map(|oblate| {
+                Some(Bulge {
+                    source: sources.iter().position(|s| s.body == oblate.body && s.gm > 0.0)?,
+                    strength_m2: 1.5 * oblate.j2 * oblate.radius_m * oblate.radius_m,
+                    pole: oblate.pole.into(),
+                })
+            })
+            .collect();
+        Self { about, inertial, sources, massive, bulges }
+    }
+
+    /// Where the origin is, barycentric, and how it moves.
+    pub(super) fn origin(&self, eph: &Ephemeris, t_s: f64) -> (Vector3<f64>, Vector3<f64>) {
+        let still = (Vector3::zeros(), Vector3::zeros());
+        if self.inertial { still } else { eph.state(self.about, t_s).map_or(still, |s| (s.pos, s.vel)) }
+    }
+
+    /// The bodies at an instant, into a node.
+    pub(super) fn fill(&self, eph: &Ephemeris, t_s: f64, node: &mut Node) {
+        let (origin, _) = self.origin(eph, t_s);
+        node.t_s = t_s;
+        node.at.clear();
+        for source in &self.sources {
+            let pos = eph.state(source.body, t_s).map_or(Vector3::zeros(), |state| state.pos);
+            node.at.push((pos - origin).into());
+        }
+        node.shift = if self.inertial { [0.0; 3] } else { self.shift(&node.at) };
+    }
+
+    /// How the sources move relative to the origin.
+    pub(super) fn speeds(&self, eph: &Ephemeris, t_s: f64) -> Vec<[f64; 3]> {
+        let (_, origin) = self.origin(eph, t_s);
+        let speed = |source: &Source| eph.state(source.body, t_s).map_or(Vector3::zeros(), |state| state.vel);
+        self.sources.iter().map(|source| (speed(source) - origin).into()).collect()
+    }
+
+    /// Acceleration of the body that the swarm is about, and all that moves as one with it.
+    fn shift(&self, at: &[[f64; 3]]) -> [f64; 3] {
+        let mut shift = [0.0; 3];
+        for (member, place) in self.sources.iter().zip(at).filter(|(member, _)| member.share > 0.0) {
+            for (source, from) in self.sources.iter().zip(at).filter(|(source, _)| source.share <= 0.0) {
+                let r = [place[0] - from[0], place[1] - from[1], place[2] - from[2]];
+                let r2 = r[0] * r[0] + r[1] * r[1] + r[2] * r[2];
+                let w = member.share * source.gm / (r2 * r2.sqrt());
+                for axis in 0..3 {
+                    shift[axis] -= w * r[axis];
+                }
+            }
+        }
+        for bulge in &self.bulges {
+            let own = self.sources[bulge.source].share;
+            for (source, place) in self.sources.iter().zip(at) {
+                // On a member by a bulge elsewhere, or the reaction on a member by what its bulge acts on.
+                let weight = if own > 0.0 && source.share <= 0.0 {
+                    -own * source.gm
+                } else if own <= 0.0 && source.share > 0.0 {
+                    source.share * self.sources[bulge.source].gm
+                } else {
+                    continue;
+                };
+                let a = bulge.pull(at[bulge.source], *place);
+                for axis in 0..3 {
+                    shift[axis] += weight * a[axis];
+                }
+            }
+        }
+        shift
+    }
+
+    /// Whether any body bulges.
+    pub(super) fn bulging(&self) -> bool {
+        !self.bulges.is_empty()
+    }
+
+    /// What all bulges add to the acceleration of a tracer.
+    pub(super) fn bulge_pull(&self, node: &Node, place: [f64; 3]) -> [f64; 3] {
+        let mut sum = [0.0; 3];
+        for bulge in &self.bulges {
+            let gm = self.sources[bulge.source].gm;
+            let a = bulge.pull(node.at[bulge.source], place);
+            for axis in 0..3 {
+                sum[axis] += gm * a[axis];
+            }
+        }
+        sum
+    }
+}
+
+impl Bulge {
+    /// What it adds to the acceleration at a place, for GM 1. As for bodies (`gravity`).
+    ///
+    /// # Source
+    /// W. M. Kaula, Theory of Satellite Geodesy (1966), ch. 1, eq. 1.31 for l = 2, m = 0.
+    #[inline]
+    fn pull(&self, from: [f64; 3], place: [f64; 3]) -> [f64; 3] {
+        let p = self.pole;
+        let r = [place[0] - from[0], place[1] - from[1], place[2] - from[2]];
+        let r2 = r[0] * r[0] + r[1] * r[1] + r[2] * r[2];
+        let rp = r[0] * p[0] + r[1] * p[1] + r[2] * p[2];
+        let w = -self.strength_m2 / (r2 * r2 * r2.sqrt());
+        let along_r = w * (1.0 - 5.0 * rp * rp / r2);
+        let along_p = w * 2.0 * rp;
+        [along_r * r[0] + along_p * p[0], along_r * r[1] + along_p * p[1], along_r * r[2] + along_p * p[2]]
+    }
+}
