@@ -45,6 +45,7 @@ extern crate self as fallaround_core;
 
 pub mod aim;
 pub mod air;
+pub mod check;
 pub mod conic;
 pub mod constants;
 pub mod ephemeris;

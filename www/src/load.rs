@@ -142,15 +142,13 @@ impl Resolved {
     }
 }
 
-/// A rehearsed show, the text that it was made from, and what an author should look at.
+/// A rehearsed show, and the text that it was made from.
 #[derive(Debug)]
 pub(crate) struct Rehearsed {
     /// The text, its day written in.
     pub(crate) text: String,
     /// The show.
     pub(crate) show: Show,
-    /// Problems that don't keep it from being shown.
-    pub(crate) notes: Vec<Problem>,
 }
 
 /// Rehearses a scenario.
@@ -170,10 +168,9 @@ pub(crate) fn rehearsed(path: &Path, today: &Today) -> Result<Rehearsed> {
         }
     }
     bar.finish_and_clear();
-    let notes = rehearsal.notes().to_vec();
     let show =
         rehearsal.finish().with_context(|| format!("{}: the rehearsal came to no end", path.display()))?;
-    Ok(Rehearsed { text, show, notes })
+    Ok(Rehearsed { text, show })
 }
 
 /// A bar on standard error, where that is a terminal and the work takes long enough to be seen.

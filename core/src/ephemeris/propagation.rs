@@ -91,6 +91,14 @@ impl Propagation {
         }
     }
 
+    /// Makes all steps a share of their usual length, more than 0: a second opinion about the same motion. For one that has not
+    /// been advanced yet.
+    pub fn with_step_share(mut self, share: f64) -> Self {
+        self.forward.set_step_share(share);
+        self.backward.set_step_share(share);
+        self
+    }
+
     /// What has been integrated so far.
     pub fn ephemeris(&self) -> &Ephemeris {
         &self.ephemeris

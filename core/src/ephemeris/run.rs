@@ -53,6 +53,8 @@ pub(super) struct Run {
     pairs: Vec<(usize, usize, f64)>,
     field: Field,
     radau: Radau,
+    /// Share of the usual length that steps have.
+    step_share: f64,
     /// Numbers of the free bodies in the step.
     moving: Vec<f64>,
     /// Numbers of all bodies in the step.
@@ -80,6 +82,7 @@ impl Run {
             pairs: Vec::new(),
             field: Field::new(initial),
             radau: Radau::new(0.0, &[], &[], first_s),
+            step_share: 1.0,
             moving: Vec::new(),
             numbers: vec![0.0; n * PER_BODY],
             reaches_m: Vec::new(),
@@ -96,6 +99,12 @@ impl Run {
         run.solid = false;
         run.pairs.clear();
         run
+    }
+
+    /// Makes all steps a share of their usual length.
+    pub(super) fn set_step_share(&mut self, share: f64) {
+        self.step_share = share;
+        self.radau.set_step_share(share);
     }
 
     /// Time reached, s.
@@ -115,6 +124,7 @@ impl Run {
         self.vel.clear();
         self.vel.extend(states.iter().flat_map(|s| <[f64; 3]>::from(s.vel)));
         self.radau = Radau::new(t_s, &self.pos, &self.vel, first_step_s);
+        self.radau.set_step_share(self.step_share);
         let pull = |body: usize| if self.acts[body] { self.gms[body] } else { 0.0 };
         self.field =
             Field::of(self.free.iter().map(|&body| pull(body)).collect(), &initial.forces, &self.free);

@@ -78,6 +78,8 @@ pub struct Radau {
     t_s: f64,
     step_s: f64,
     next_step_s: f64,
+    /// Length of a step in time scales.
+    in_time_scales: f64,
     /// Length of the step that `last_b` belongs to; 0 where there is none.
     last_step_s: f64,
     acc_known: bool,
@@ -103,6 +105,7 @@ impl Radau {
             t_s,
             step_s: 0.0,
             next_step_s: first_step_s,
+            in_time_scales: STEP_IN_TIME_SCALES,
             last_step_s: 0.0,
             acc_known: false,
             pos: vec![0.0; padded],
@@ -119,6 +122,11 @@ impl Radau {
     /// Keeps the next step from being longer than this, s. What is not a number is no limit.
     pub fn limit_step(&mut self, longest_s: f64) {
         self.next_step_s = self.next_step_s.signum() * self.next_step_s.abs().min(longest_s);
+    }
+
+    /// Makes all steps a share of their usual length, more than 0: the same motion by other steps, to compare with.
+    pub fn set_step_share(&mut self, share: f64) {
+        self.in_time_scales = STEP_IN_TIME_SCALES * share;
     }
 
     /// Length of the step that [`Radau::solve`] found, s; negative where time goes back.
@@ -145,7 +153,7 @@ impl Radau {
             self.step_s = step_s;
             self.predict();
             let finite = self.iterate(field);
-            let wanted_s = if finite { STEP_IN_TIME_SCALES * self.time_scale() * step_s.abs() } else { 0.0 };
+            let wanted_s = if finite { self.in_time_scales * self.time_scale() * step_s.abs() } else { 0.0 };
             if wanted_s < LARGEST_CHANGE * step_s.abs() {
                 step_s = step_s.signum() * wanted_s.max(0.01 * step_s.abs());
                 continue;

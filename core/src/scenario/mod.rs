@@ -16,6 +16,6 @@ pub mod today;
 
 pub use model::*;
 pub use page::format_page;
-pub use parse::{Parsed, parse, parse_bytes};
+pub use parse::{Parsed, QUANTITIES, parse, parse_bytes};
 pub use problem::{Place, Problem, Severity};
 pub use today::dated;

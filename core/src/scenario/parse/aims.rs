@@ -12,8 +12,8 @@ const MOST: usize = 8;
 /// Most events that can be wanted.
 const MOST_EVENTS: i64 = 10_000;
 
-/// The numbers that can be free: form and key, the keys that lead there, and what they measure.
-const QUANTITIES: [(&str, &[&str], Measure); 28] = [
+/// The numbers of a body and its form that can be free: form and key, the keys that lead there, and what they measure.
+pub const QUANTITIES: [(&str, &[&str], Measure); 28] = [
     ("mass", &["mass"], Measure::Mass),
     ("orbit.periapsis", &["orbit", "periapsis"], Measure::Length),
     ("orbit.apoapsis", &["orbit", "apoapsis"], Measure::Length),

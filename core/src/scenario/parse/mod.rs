@@ -18,6 +18,8 @@ mod swarms;
 mod syntax;
 mod view;
 
+pub use aims::QUANTITIES;
+
 use super::grammar;
 use super::model::{Form, Physics, Scenario};
 use super::names::Names;

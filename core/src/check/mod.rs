@@ -1,0 +1,188 @@
+//! The proof of a show before it is given: what an audience would notice, found ahead.
+//!
+//! A scenario is rehearsed, integrated a second time in other steps, integrated anew with each stated number changed a little,
+//! and looked at beat by beat. What is measured goes into a [`Report`]; what is wrong, and what to do, into its
+//! findings. A show is ready when none of them is a failure.
+//!
+//! ```
+//! use fallaround_core::check::Proof;
+//!
+//! let text = r#"
+//! format = 1
+//! title = "A ball and a world"
+//! [[body]]
+//! name = "Skerry"
+//! mass = "1 Moon masses"
+//! radius = "1737 km"
+//! [[body]]
+//! name = "Ball"
+//! drop = { onto = "Skerry", height = "100 m" }
+//! [[beat]]
+//! title = "Let go"
+//! clock = { reach = "contact of Ball with Skerry", at = "10 s" }
+//! view = { centre = "Ball", span = "300 m" }
+//! "#;
+//! let mut proof = Proof::start(text).map_err(|problems| problems[0].to_string())?;
+//! while !proof.work(1000).map_err(|problems| problems[0].to_string())?.done {}
+//! let proven = proof.finish().ok_or("not done")?;
+//! assert!(proven.report.is_ready(), "{:?}", proven.report.findings);
+//! # Ok::<(), String>(())
+//! ```
+
+mod finding;
+mod motion;
+mod near;
+mod numbers;
+mod reach;
+mod report;
+mod second;
+mod sight;
+#[cfg(test)]
+mod tests;
+
+pub use finding::{Finding, Topic, Weight};
+pub use reach::said;
+pub use report::{BeatReport, CueReport, Encounter, Lever, Report, Shift};
+
+use crate::scenario::Problem;
+use crate::show::{Rehearsal, Show};
+use numbers::Numbers;
+use second::Second;
+
+/// A check on its way, in small steps, so that whoever drives it can report progress and stop.
+#[derive(Debug)]
+pub struct Proof {
+    text: String,
+    /// Until the show is there.
+    rehearsal: Option<Rehearsal>,
+    /// From then on.
+    checking: Option<Checking>,
+}
+
+#[derive(Debug)]
+struct Checking {
+    proven: Proven,
+    todo: Todo,
+}
+
+/// What is worked at, once the show is there.
+#[derive(Debug)]
+enum Todo {
+    Second(Second),
+    Numbers(Numbers),
+    Done,
+}
+
+/// A checked show.
+#[derive(Debug)]
+pub struct Proven {
+    /// The show.
+    pub show: Show,
+    /// Notes on its text.
+    pub notes: Vec<Problem>,
+    /// What was measured and found.
+    pub report: Report,
+}
+
+/// How far a check has come.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Progress {
+    /// Whether all is checked.
+    pub done: bool,
+    /// Share of the work done, 0 to 1: an estimate that never goes back.
+    pub fraction: f64,
+}
+
+impl Proof {
+    /// Reads a scenario.
+    ///
+    /// # Errors
+    /// Every problem of the text, or of where its bodies start.
+    pub fn start(text: &str) -> Result<Self, Vec<Problem>> {
+        let rehearsal = Some(Rehearsal::start(text)?);
+        Ok(Self { text: text.to_owned(), rehearsal, checking: None })
+    }
+
+    /// Works on, for about the time of so many steps of the integrator.
+    ///
+    /// # Errors
+    /// The problem of a beat that can't be done.
+    pub fn work(&mut self, max_steps: usize) -> Result<Progress, Vec<Problem>> {
+        if let Some(rehearsal) = &mut self.rehearsal {
+            let progress = rehearsal.work(max_steps)?;
+            if !progress.done {
+                return Ok(Progress { done: false, fraction: SECOND_FROM * progress.fraction });
+            }
+        }
+        if let Some(rehearsal) = self.rehearsal.take() {
+            let notes = rehearsal.notes().to_vec();
+            self.checking = rehearsal.finish().map(|show| Checking::new(show, notes));
+        }
+        if let Some(checking) = &mut self.checking {
+            checking.work(&self.text, max_steps);
+        }
+        Ok(self.checking.as_ref().map_or(Progress { done: true, fraction: 1.0 }, Checking::progress))
+    }
+
+    /// What came of it, once it is done.
+    pub fn finish(self) -> Option<Proven> {
+        let Checking { proven, todo } = self.checking?;
+        matches!(todo, Todo::Done).then_some(proven)
+    }
+
+    /// The whole check at once, however long it takes.
+    ///
+    /// # Errors
+    /// As [`Proof::start`] and [`Proof::work`].
+    pub fn whole(text: &str) -> Result<Proven, Vec<Problem>> {
+        let mut proof = Self::start(text)?;
+        while !proof.work(usize::MAX)?.done {}
+        proof.finish().ok_or_else(Vec::new)
+    }
+}
+
+/// Shares of the whole work at which its parts begin.
+const SECOND_FROM: f64 = 0.2;
+const NUMBERS_FROM: f64 = 0.4;
+
+impl Checking {
+    fn new(show: Show, notes: Vec<Problem>) -> Self {
+        let todo = Todo::Second(Second::new(&show));
+        let beats = vec![BeatReport::default(); show.plan.beats.len()];
+        Self { proven: Proven { show, notes, report: Report { beats, ..Report::default() } }, todo }
+    }
+
+    fn work(&mut self, text: &str, max_steps: usize) {
+        let Proven { show, report, .. } = &mut self.proven;
+        match &mut self.todo {
+            Todo::Second(second) => {
+                if second.work(max_steps) {
+                    second.compare(show, &mut report.beats, &mut report.findings);
+                    reach::check(show, second.ephemeris(), &mut report.beats, &mut report.findings);
+                    motion::check(show, &mut report.beats, &mut report.findings);
+                    report.encounters = near::encounters(show);
+                    self.todo = Todo::Numbers(Numbers::new(text, show));
+                }
+            }
+            Todo::Numbers(numbers) => {
+                if numbers.work(show, &mut report.encounters, max_steps) {
+                    [report.numbers_stated, report.numbers_tried] = numbers.counts();
+                    report.levers = numbers.rank(show, &mut report.beats, &mut report.findings);
+                    numbers::close_calls(show, &report.encounters, &mut report.findings);
+                    report.findings.sort_by_key(|finding| (finding.weight, finding.place));
+                    self.todo = Todo::Done;
+                }
+            }
+            Todo::Done => {}
+        }
+    }
+
+    fn progress(&self) -> Progress {
+        let (from, to, within) = match &self.todo {
+            Todo::Second(second) => (SECOND_FROM, NUMBERS_FROM, second.fraction(&self.proven.show)),
+            Todo::Numbers(numbers) => (NUMBERS_FROM, 1.0, numbers.fraction()),
+            Todo::Done => (1.0, 1.0, 1.0),
+        };
+        Progress { done: matches!(self.todo, Todo::Done), fraction: from + (to - from) * within }
+    }
+}

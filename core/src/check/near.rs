@@ -1,0 +1,101 @@
+//! Bodies that come near each other while they are shown.
+
+use super::report::Encounter;
+use crate::ephemeris::events::{self, Query};
+use crate::math::float;
+use crate::scenario::{BodyId, EventKind};
+use crate::show::Show;
+
+/// Nearer than this, in Hill radii of the heavier one, is near: out to there it turns others about.
+const HILL_RADII: f64 = 3.0;
+/// Nearer than this, in the sum of their radii, is near, where neither goes around the other.
+const RADII: f64 = 10.0;
+/// And where one goes around the other: it all but skims the surface.
+const SKIMMED_RADII: f64 = 1.5;
+/// Nearer to each other than this part of how far they are from their primary, they have one place (balls that leave the same hand), and
+/// don't pass each other.
+const SAME_PLACE: f64 = 1e-9;
+
+/// The nearest of every pair that comes near, the nearest (in the measure that made it near) first.
+pub(super) fn encounters(show: &Show) -> Vec<Encounter> {
+    let listed = show.initial.listed;
+    let mut found: Vec<(f64, Encounter)> = Vec::new();
+    for a in 0..listed {
+        for b in a + 1..listed {
+            found.extend(nearest(show, BodyId(a), BodyId(b)));
+        }
+    }
+    found.sort_by(|x, y| x.0.total_cmp(&y.0));
+    found.into_iter().map(|(_, encounter)| encounter).collect()
+}
+
+fn nearest(show: &Show, a: BodyId, b: BodyId) -> Option<(f64, Encounter)> {
+    let bodies = &show.initial.bodies;
+    let gm = |body: BodyId| bodies.get(body.0).map_or(0.0, |one| one.gm_m3_s2);
+    let radius = |body: BodyId| bodies.get(body.0).map_or(0.0, |one| one.radius_m);
+    let primary = |body: BodyId| bodies.get(body.0).and_then(|one| one.primary);
+    // The lighter one is said to pass the heavier.
+    let (body, other) = if gm(a) > gm(b) { (b, a) } else { (a, b) };
+    let touch_m = radius(body) + radius(other);
+    if gm(other) == 0.0 && touch_m == 0.0 {
+        return None; // Points without gravity pass through each other unharmed.
+    }
+    let (kind, of) = match (primary(body) == Some(other), primary(other) == Some(body)) {
+        (true, _) => (EventKind::Periapsis, body),
+        (_, true) => (EventKind::Periapsis, other),
+        _ => (EventKind::ClosestApproach, body),
+    };
+    let to = if of == body { other } else { body };
+    let mut best: Option<(f64, Encounter)> = None;
+    for (beat, planned) in show.plan.beats.iter().enumerate() {
+        let (from_s, until_s) = (planned.from_s.min(planned.until_s), planned.from_s.max(planned.until_s));
+        let query = Query::new(kind, of, Some(to));
+        let passes = events::find(&show.ephemeris, &show.initial, &query, from_s, until_s);
+        for t_s in passes.iter().map(|event| event.t_s) {
+            let Some(state) = show.ephemeris.relative(body, other, t_s) else { continue };
+            if resting(show, body, other, t_s) {
+                continue;
+            }
+            let distance_m = state.pos.norm();
+            let hill_m = hill_radius_m(show, other, t_s);
+            let far_m =
+                primary(body).and_then(|p| show.ephemeris.relative(body, p, t_s)).map(|s| s.pos.norm());
+            if kind == EventKind::ClosestApproach && far_m.is_some_and(|far| distance_m < SAME_PLACE * far) {
+                continue;
+            }
+            // What goes round and round is near all the time, and meant to be.
+            let gm_m3_s2 = show.ephemeris.gm_m3_s2(body, t_s) + show.ephemeris.gm_m3_s2(other, t_s);
+            let bound = state.vel.norm_squared() * distance_m < 2.0 * gm_m3_s2;
+            let goes_round = kind == EventKind::Periapsis && bound;
+            let in_radii = distance_m / (if goes_round { SKIMMED_RADII } else { RADII } * touch_m);
+            let in_hill =
+                hill_m.filter(|_| !goes_round).map_or(f64::INFINITY, |hill| distance_m / (HILL_RADII * hill));
+            let nearness = in_radii.min(in_hill);
+            if nearness < 1.0 && best.as_ref().is_none_or(|best| nearness < best.0) {
+                let hill_radii = hill_m.map(|hill| distance_m / hill);
+                let gap_m = distance_m - touch_m;
+                best = Some((
+                    nearness,
+                    Encounter { body, other, t_s, beat, distance_m, gap_m, hill_radii, moved_m: 0.0 },
+                ));
+            }
+        }
+    }
+    best
+}
+
+/// Whether either lies on something, or has become part of it: what they touch is told as a contact.
+fn resting(show: &Show, body: BodyId, other: BodyId, t_s: f64) -> bool {
+    show.ephemeris.at_rest(body, t_s).is_some() || show.ephemeris.at_rest(other, t_s).is_some()
+}
+
+/// Radius within which a body holds what is near it against what it goes around, m.
+///
+/// # Source
+/// C. D. Murray and S. F. Dermott, Solar System Dynamics (1999), 3.13: the distance times the cube root of a third of the mass ratio.
+fn hill_radius_m(show: &Show, body: BodyId, t_s: f64) -> Option<f64> {
+    let primary = show.initial.bodies.get(body.0)?.primary?;
+    let distance_m = show.ephemeris.relative(body, primary, t_s)?.pos.norm();
+    let ratio = show.ephemeris.gm_m3_s2(body, t_s) / (3.0 * show.ephemeris.gm_m3_s2(primary, t_s));
+    (ratio.is_finite() && ratio > 0.0).then(|| distance_m * float::cbrt(ratio))
+}

@@ -1,0 +1,118 @@
+//! What a check measured: numbers for every beat and for the whole show.
+
+use super::finding::{Finding, Weight};
+use crate::scenario::{BodyId, EventRef};
+
+/// All that was measured and found.
+#[derive(Debug, Clone, PartialEq, Default)]
+pub struct Report {
+    /// What was found, the heaviest first, then in the order of the file.
+    pub findings: Vec<Finding>,
+    /// What was measured of each beat, in their order.
+    pub beats: Vec<BeatReport>,
+    /// What one part in 1e9 of each stated number does, the worst first.
+    pub levers: Vec<Lever>,
+    /// How many numbers the file states that could be tried.
+    pub numbers_stated: usize,
+    /// How many of them were tried.
+    pub numbers_tried: usize,
+    /// The nearest that bodies come to each other while they are shown, the nearest first.
+    pub encounters: Vec<Encounter>,
+}
+
+impl Report {
+    /// Whether the show is ready: nothing fails.
+    pub fn is_ready(&self) -> bool {
+        self.findings.iter().all(|finding| finding.weight != Weight::Failure)
+    }
+}
+
+/// What was measured of one beat. `None` and 0 where there is nothing to measure.
+#[derive(Debug, Clone, PartialEq, Default)]
+pub struct BeatReport {
+    /// How far off the worst body in the picture is drawn.
+    pub off: Option<Shift>,
+    /// How far off the worst body on stage is, in the picture or not, m.
+    pub off_m: f64,
+    /// How far one part in 1e9 of the worst stated number moves the picture at its end: an index into [`Report::levers`].
+    pub lever: Option<usize>,
+    /// The event that it reaches.
+    pub cue: Option<CueReport>,
+    /// Largest part of a turn around its primary that a body in the picture makes from one frame to the next.
+    pub turns_a_frame: f64,
+}
+
+/// How far a body is from where it should be.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Shift {
+    /// Which body.
+    pub body: BodyId,
+    /// Show time into the beat, s.
+    pub beat_s: f64,
+    /// How far in the picture of the house, relative to the view's centre, px at 1080 px of height.
+    pub px: f64,
+    /// How far in space, relative to the view's centre, m.
+    pub m: f64,
+}
+
+/// An event that a beat reaches, as it comes about.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct CueReport {
+    /// Which event.
+    pub event: EventRef,
+    /// Show time into the beat at which it is to happen, s.
+    pub at_s: f64,
+    /// Model time at which it happens, s.
+    pub model_s: f64,
+    /// How much later the clock comes to it, when the show is run by its plan, s of show time; negative: earlier.
+    pub late_s: f64,
+    /// How much later it happens in the second run, s of model time; `None`: it does not.
+    pub again_s: Option<f64>,
+    /// The same in frames of the show.
+    pub again_frames: f64,
+}
+
+/// A stated number, and what a change by one part in 1e9 does.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Lever {
+    /// Of which body.
+    pub body: BodyId,
+    /// Which number: "mass", "orbit.periapsis".
+    pub quantity: String,
+    /// What stands in the file.
+    pub stated: String,
+    /// How far the picture moves at the end of each beat.
+    pub shifts: Vec<Option<Shift>>,
+}
+
+impl Lever {
+    /// The beat in which the picture moves farthest, and how far.
+    pub fn worst(&self) -> Option<(usize, Shift)> {
+        let all = self.shifts.iter().enumerate().filter_map(|(beat, shift)| Some((beat, (*shift)?)));
+        all.fold(None, |worst: Option<(usize, Shift)>, one| match worst {
+            Some(worst) if worst.1.px >= one.1.px => Some(worst),
+            _ => Some(one),
+        })
+    }
+}
+
+/// Two bodies near each other.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Encounter {
+    /// One body.
+    pub body: BodyId,
+    /// The other.
+    pub other: BodyId,
+    /// When, model time, s.
+    pub t_s: f64,
+    /// The first beat that shows it.
+    pub beat: usize,
+    /// From centre to centre, m.
+    pub distance_m: f64,
+    /// From surface to surface, m.
+    pub gap_m: f64,
+    /// The distance in Hill radii of the heavier one, where that goes around something.
+    pub hill_radii: Option<f64>,
+    /// How far one part in 1e9 of a stated number moves them apart or together then, m.
+    pub moved_m: f64,
+}

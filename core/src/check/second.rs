@@ -1,0 +1,147 @@
+//! A second run of the same motion in other steps, and how far it is from the first.
+//!
+//! Steps of half the length have a 32,000th of the method's error (its order is 15) and other roundings. So where the first
+//! run's error is that of the method, the difference is that error; where it is rounding, the difference is
+//! the error of both together.
+
+use super::finding::{Finding, Topic, Weight};
+use super::report::{BeatReport, Shift};
+use super::sight::{self, Seen, called, name};
+use crate::Vector3;
+use crate::ephemeris::{Ephemeris, Propagation, SHOW_BYTES};
+use crate::scenario::BodyId;
+use crate::show::Show;
+
+/// Length of its steps, in those of the first.
+const STEP_SHARE: f64 = 0.5;
+
+/// Most memory of the second run, bytes: twice the steps, and something to spare.
+const MOST_BYTES: usize = 3 * SHOW_BYTES;
+
+/// Pieces of a beat between the instants compared.
+const PIECES: u32 = 200;
+
+/// From here on an eye at the front could see it: thin lines are smoothed over half a pixel, px.
+const WARNED_PX: f64 = 0.5;
+/// From here on a body stands visibly beside its mark: the thinnest marks are two pixels wide, px.
+const FAILED_PX: f64 = 2.0;
+
+/// The second run on its way.
+#[derive(Debug)]
+pub(super) struct Second {
+    propagation: Propagation,
+    /// What has to be covered still, s.
+    ends_s: Vec<f64>,
+    stopped: Option<String>,
+}
+
+impl Second {
+    pub(super) fn new(show: &Show) -> Self {
+        let (from_s, until_s) = sight::shown_s(show);
+        let propagation = Propagation::with_most_bytes(&show.initial, MOST_BYTES).with_step_share(STEP_SHARE);
+        // Time 0 is always covered: whatever is asked of an ephemeris leans on a first step.
+        let mut ends_s = vec![until_s.max(0.0)];
+        if from_s < 0.0 {
+            ends_s.insert(0, from_s);
+        }
+        Self { propagation, ends_s, stopped: None }
+    }
+
+    /// Integrates on. True once all is there.
+    pub(super) fn work(&mut self, max_steps: usize) -> bool {
+        if let Some(&end_s) = self.ends_s.last() {
+            match self.propagation.advance(end_s, max_steps) {
+                Ok(false) => {}
+                Ok(true) => drop(self.ends_s.pop()),
+                Err(stopped) => {
+                    self.stopped = Some(stopped.to_string());
+                    self.ends_s.clear();
+                }
+            }
+        }
+        self.ends_s.is_empty()
+    }
+
+    /// Share of the way, 0 to 1.
+    pub(super) fn fraction(&self, show: &Show) -> f64 {
+        let (from_s, until_s) = sight::shown_s(show);
+        let run = self.propagation.ephemeris();
+        ((run.until_s().min(until_s) - run.from_s().max(from_s)) / (until_s - from_s).max(1.0))
+            .clamp(0.0, 1.0)
+    }
+
+    /// The paths.
+    pub(super) fn ephemeris(&self) -> &Ephemeris {
+        self.propagation.ephemeris()
+    }
+
+    /// Compares; what is measured goes to the beats.
+    pub(super) fn compare(&self, show: &Show, beats: &mut [BeatReport], findings: &mut Vec<Finding>) {
+        if let Some(stopped) = &self.stopped {
+            findings.push(Finding {
+                weight: Weight::Failure,
+                topic: Topic::Error,
+                place: show.scenario.beats.first().map_or_else(Default::default, |beat| beat.place),
+                wrong: format!("a second run in shorter steps ends early: {stopped}"),
+                remedy: "give bodies that meet a radius, so that they touch instead of falling into a point"
+                    .to_owned(),
+            });
+            return;
+        }
+        for (seen, report) in sight::beats(show).into_iter().zip(beats) {
+            (report.off, report.off_m) = worst(&seen, self.ephemeris());
+            findings.extend(report.off.and_then(|off| finding(&seen, off)));
+        }
+    }
+}
+
+/// The worst in the picture, and the worst of all in metres.
+fn worst(seen: &Seen<'_>, second: &Ephemeris) -> (Option<Shift>, f64) {
+    let show = seen.show;
+    let about = seen.beat.view.centre.about;
+    let at = |eph: &Ephemeris, body: BodyId, t_s| eph.state(body, t_s).map(|state| state.pos);
+    let (mut worst, mut most_m): (Option<Shift>, f64) = (None, 0.0);
+    for beat_s in seen.instants(PIECES) {
+        let t_s = seen.model_s(beat_s);
+        let camera = seen.camera(t_s);
+        let centre = |eph| about.map_or(Some(Vector3::zeros()), |body| at(eph, body, t_s));
+        let Some(centres) = centre(&show.ephemeris).zip(centre(second)) else { continue };
+        for body in seen.bodies(t_s) {
+            let Some((here, there)) = at(&show.ephemeris, body, t_s).zip(at(second, body, t_s)) else {
+                continue;
+            };
+            let (px, m) = seen.apart(&camera, [here, there], centres.into());
+            most_m = most_m.max(m);
+            let is_seen = seen.holds(&camera, here) || seen.holds(&camera, there);
+            if is_seen && worst.is_none_or(|worst| px > worst.px) {
+                worst = Some(Shift { body, beat_s, px, m });
+            }
+        }
+    }
+    (worst, most_m)
+}
+
+fn finding(seen: &Seen<'_>, off: Shift) -> Option<Finding> {
+    let weight = if off.px > FAILED_PX {
+        Weight::Failure
+    } else if off.px > WARNED_PX {
+        Weight::Warning
+    } else {
+        return None;
+    };
+    let body = name(&seen.show.scenario, off.body);
+    Some(Finding {
+        weight,
+        topic: Topic::Error,
+        place: seen.beat.place,
+        wrong: format!(
+            "{body} may be drawn {:.1} px off in {}, {:.0} s into it: a second run in shorter steps goes another way",
+            off.px,
+            called(seen.index),
+            off.beat_s
+        ),
+        remedy: "the motion forgets its start by then: end the beat sooner, start it nearer to what it shows, or keep the bodies \
+                 farther apart"
+            .to_owned(),
+    })
+}

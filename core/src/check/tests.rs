@@ -1,0 +1,233 @@
+use super::*;
+use crate::scenario::BodyId;
+
+/// A star, a planet and a comet: nothing that a talk would not show.
+const QUIET: &str = r#"
+format = 1
+title = "Quiet"
+[[body]]
+name = "Orla"
+kind = "star"
+mass = "0.9 Sun masses"
+radius = "620000 km"
+[[body]]
+name = "Brae"
+mass = "1.3 Earth masses"
+radius = "6900 km"
+orbit = { around = "Orla", semi-major = "1.1 au", eccentricity = 0.02, anomaly = "40 deg" }
+[[body]]
+name = "Fenn"
+kind = "comet"
+orbit = { around = "Orla", periapsis = "0.42 au", eccentricity = 0.5, before-periapsis = "100 d" }
+"#;
+
+/// Three masses let go at the corners of a triangle of sides 3, 4 and 5 (C. Burrau, Astron. Nachr. 195 (1913), 113): they pass each
+/// other closely many times.
+const BURRAU: &str = r#"
+format = 1
+title = "Three"
+[[body]]
+name = "Ash"
+mass = "3 Sun masses"
+place = { position = ["1 au", "3 au", "0 au"], velocity = ["0 km/s", "0 km/s", "0 km/s"] }
+[[body]]
+name = "Birch"
+mass = "4 Sun masses"
+place = { position = ["-2 au", "-1 au", "0 au"], velocity = ["0 km/s", "0 km/s", "0 km/s"] }
+[[body]]
+name = "Cedar"
+mass = "5 Sun masses"
+place = { position = ["1 au", "-1 au", "0 au"], velocity = ["0 km/s", "0 km/s", "0 km/s"] }
+[[beat]]
+title = "Dance"
+clock = { span = "11 yr", lasts = "60 s" }
+view = { centre = "barycentre", span = "8 au" }
+"#;
+
+/// A small world and a ball 100 m above its ground.
+const BALL: &str = r#"
+format = 1
+title = "A ball"
+[[body]]
+name = "Skerry"
+mass = "1 Moon masses"
+radius = "1737 km"
+[[body]]
+name = "Ball"
+drop = { onto = "Skerry", height = "100 m" }
+"#;
+
+fn proven(bodies: &str, beats: &str) -> Proven {
+    match Proof::whole(&format!("{bodies}{beats}")) {
+        Ok(proven) => proven,
+        Err(problems) => panic!("{problems:#?}"),
+    }
+}
+
+/// The findings about something.
+fn about(proven: &Proven, topic: Topic) -> Vec<&Finding> {
+    proven.report.findings.iter().filter(|finding| finding.topic == topic).collect()
+}
+
+#[track_caller]
+fn found<'a>(proven: &'a Proven, topic: Topic, words: &str) -> &'a Finding {
+    let all = about(proven, topic);
+    let one = all.iter().find(|finding| finding.wrong.contains(words));
+    one.unwrap_or_else(|| panic!("nothing about {words:?} in {:#?}", proven.report.findings))
+}
+
+const REACH: &str = "[[beat]]\ntitle = \"R\"\nclock = { reach = \"periapsis of Fenn\", at = \"30 s\" }\n\
+                     view = { centre = \"Orla\", span = \"6 au\" }\nmarks = [\"speed of Fenn\"]\n";
+
+#[test]
+fn a_quiet_show_is_ready_and_drawn_where_it_should_be() {
+    let proven = proven(QUIET, REACH);
+    let report = &proven.report;
+    assert!(report.is_ready() && report.findings.is_empty(), "{:#?}", report.findings);
+    let off = report.beats[0].off.expect("something is in the picture");
+    // Rounding of a few hundred steps: 1e-16 · sqrt(300) of an au, at 180 px an au, is far below a millionth.
+    assert!(off.px < 1e-6 && off.px > 0.0, "{off:?}");
+    let cue = report.beats[0].cue.expect("a cue");
+    assert!(cue.late_s.abs() < 1e-6 && cue.again_frames < 1e-3, "{cue:?}");
+}
+
+#[test]
+fn small_steps_and_one_big_one_find_the_same_and_progress_never_goes_back() {
+    let text = format!("{QUIET}{REACH}");
+    let mut proof = Proof::start(&text).expect("a scenario");
+    let mut last = 0.0;
+    loop {
+        let progress = proof.work(5).expect("progress");
+        assert!(progress.fraction >= last && progress.fraction <= 1.0, "{progress:?} after {last}");
+        last = progress.fraction;
+        if progress.done {
+            break;
+        }
+    }
+    let piecewise = proof.finish().expect("done");
+    assert_eq!(piecewise.report, proven(QUIET, REACH).report);
+}
+
+#[test]
+fn what_is_not_done_gives_no_report() {
+    let proof = Proof::start(&format!("{QUIET}{REACH}")).expect("a scenario");
+    assert!(proof.finish().is_none());
+    assert!(Proof::start("format = 1").is_err());
+}
+
+#[test]
+fn every_stated_number_is_tried_and_does_what_the_third_law_says() {
+    let proven = proven(QUIET, REACH);
+    let report = &proven.report;
+    // Orla: mass, radius. Brae: mass, radius, semi-major, eccentricity, anomaly. Fenn: periapsis, eccentricity, before-periapsis.
+    assert_eq!((report.numbers_stated, report.numbers_tried), (10, 10));
+    let of = |body: usize, quantity: &str| {
+        report.levers.iter().find(|one| one.body == BodyId(body) && one.quantity == quantity).expect("tried")
+    };
+    // Brae runs ahead by 3/2 · 1e-9 of its mean motion, where its semi-major axis is 1e-9 less: in the time of the beat.
+    let beat = proven.show.plan.beats[0];
+    let gm = 0.9 * 1.327_124_4e20 + 1.3 * 3.986_004e14;
+    let a = 1.1 * 149_597_870_700.0f64;
+    let along_m = 1.5e-9 * (gm / a).sqrt() * beat.until_s;
+    let got_m = of(1, "orbit.semi-major").shifts[0].expect("in the picture").m;
+    // The orbit itself grows by 1e-9 of it; with eccentricity 0.02, speed varies by as much.
+    assert!(
+        (got_m / crate::math::float::hypot(along_m, 1e-9 * a) - 1.0).abs() < 0.1,
+        "{got_m} m, {along_m} m"
+    );
+    assert!(of(0, "radius").shifts[0].is_none_or(|shift| shift.m < 1e-3), "a radius moves nothing");
+}
+
+#[test]
+fn three_bodies_that_pass_closely_are_told_as_sensitive() {
+    let proven = proven(&BURRAU.replace("\"1 au\", \"3 au\"", "\"0.5 au\", \"2.5 au\""), "");
+    assert!(proven.report.is_ready(), "the same bits come of it everywhere: {:#?}", proven.report.findings);
+    let finding = found(&proven, Topic::Sensitivity, "its sixth digit");
+    assert_eq!(finding.weight, Weight::Warning);
+    assert_eq!(finding.place, proven.show.scenario.beats[0].place);
+    let (_, worst) = proven.report.levers[0].worst().expect("moved");
+    assert!(worst.px > 0.01, "{worst:?}");
+}
+
+#[test]
+fn a_dance_that_forgets_its_start_is_not_ready() {
+    // Roundings of 1e-16 grow to hundredths of an au in it, 135 px each.
+    let proven = proven(BURRAU, "");
+    assert!(!proven.report.is_ready(), "{:#?}", proven.report.beats);
+    let finding = found(&proven, Topic::Error, "px off in beat 1");
+    assert_eq!(finding.weight, Weight::Failure);
+    assert!(finding.remedy.contains("end the beat sooner"), "{finding:?}");
+}
+
+#[test]
+fn an_event_that_the_clock_has_no_time_for_is_found() {
+    // The glide back to the start takes longer than the second that `at` leaves.
+    let proven = proven(
+        QUIET,
+        "[[beat]]\ntitle = \"A\"\nclock = { pace = \"2 d/s\", lasts = \"45 s\" }\nview = { centre = \"Orla\", span = \"6 au\" }\n\
+         [[beat]]\ntitle = \"B\"\nstart = \"restart\"\nclock = { reach = \"periapsis of Fenn\", at = \"1 s\", lasts = \"30 s\" }\n",
+    );
+    let finding = found(&proven, Topic::Event, "late");
+    assert_eq!(finding.weight, Weight::Failure);
+    assert_eq!(finding.place, proven.show.scenario.beats[1].clock_place);
+}
+
+#[test]
+fn bodies_that_lie_before_they_are_to_move_are_found() {
+    let beats = "[[beat]]\ntitle = \"Fall\"\nclock = { span = \"30 s\", lasts = \"20 s\" }\nview = { centre = \"Ball\", span = \"300 m\" }\n\
+                 [[beat]]\ntitle = \"Late\"\nclock = { span = \"30 s\", lasts = \"20 s\" }\nmarks = [\"velocity of Ball\"]\n";
+    let finding = proven(BALL, beats);
+    let finding = found(&finding, Topic::Motion, "lies on Skerry before it begins");
+    assert!(finding.wrong.contains("beat 2"), "{finding:?}");
+}
+
+#[test]
+fn bodies_out_of_the_picture_are_found() {
+    let beats = REACH.replace("6 au", "0.2 au");
+    let proven = proven(QUIET, &beats);
+    found(&proven, Topic::Motion, "Fenn has marks but is in the picture for 0 %");
+}
+
+#[test]
+fn what_goes_round_too_fast_to_see_is_found() {
+    let proven = proven(
+        QUIET,
+        "[[beat]]\ntitle = \"F\"\nclock = { pace = \"7 yr/s\", lasts = \"10 s\" }\nview = { centre = \"Orla\", span = \"6 au\" }\n",
+    );
+    found(&proven, Topic::Motion, "Brae goes round");
+    assert!(proven.report.beats[0].turns_a_frame > 1.0 / 12.0);
+}
+
+#[test]
+fn what_jumps_from_frame_to_frame_is_found() {
+    // 100 m in half a second, in a picture 40 m high.
+    let beats = "[[beat]]\ntitle = \"F\"\nclock = { span = \"11 s\", lasts = \"0.5 s\" }\nview = { centre = \"Skerry\", span = \"40 m\" }\n";
+    let beats = beats.replace(
+        "centre = \"Skerry\"",
+        "centre = { about = \"Skerry\", offset = [\"1737.02 km\", \"0 km\", \"0 km\"] }",
+    );
+    let proven = proven(BALL, &beats);
+    found(&proven, Topic::Motion, "Ball jumps");
+}
+
+#[test]
+fn a_pass_within_hill_radii_is_listed_and_a_hair_s_breadth_is_warned_of() {
+    let text = |aside: &str| {
+        format!(
+            "{QUIET}[[body]]\nname = \"Pell\"\nplace = {{ about = \"Brae\", position = [\"2000000 km\", \"{aside} km\", \"0 km\"], velocity = [\"-4 km/s\", \"0 km/s\", \"0 km/s\"] }}\n\
+             [[beat]]\ntitle = \"Pass\"\nclock = {{ span = \"12 d\", lasts = \"30 s\" }}\nview = {{ centre = \"Brae\", span = \"5000000 km\" }}\n"
+        )
+    };
+    let far = proven(&text("300000"), "");
+    let one = far.report.encounters.iter().find(|e| e.body == BodyId(3)).expect("a pass");
+    assert!(one.hill_radii.is_some_and(|hill| hill < 0.3), "{one:?}");
+    assert!(about(&far, Topic::Encounter).is_empty(), "{:#?}", far.report.findings);
+    // Half a kilometre to spare, and a metre for each 1e-9: the sixth digit decides.
+    let warned = |gap_m: f64| {
+        let mut findings = Vec::new();
+        numbers::close_calls(&far.show, &[Encounter { gap_m, moved_m: 1.0, ..*one }], &mut findings);
+        findings
+    };
+    assert!(warned(500.0)[0].wrong.contains("Pell misses Brae by 0.5 km in beat 1"), "{:?}", warned(500.0));
+    assert!(warned(2000.0).is_empty());
+}

@@ -1,0 +1,164 @@
+//! The report for programs. Keys are stable; their endings say the unit.
+
+use fallaround_core::check::{BeatReport, Encounter, Finding, Lever, Shift, said};
+use fallaround_core::scenario::{Problem, Severity};
+use fallaround_core::show::Show;
+use serde_json::{Value, json};
+
+use super::{Shown, name, outcome};
+
+/// How many of the numbers that move the picture are written.
+const LEVERS: usize = 5;
+
+/// The keys of a report, in the order in which they are written.
+#[cfg(test)]
+pub(super) const KEYS: [&str; 18] = [
+    "beats",
+    "bodies",
+    "bytes",
+    "contacts",
+    "encounters",
+    "energy_error",
+    "file",
+    "findings",
+    "fingerprint",
+    "from_s",
+    "holds",
+    "lasts_s",
+    "numbers",
+    "problems",
+    "ready",
+    "steps",
+    "title",
+    "until_s",
+];
+
+/// Those of one beat.
+#[cfg(test)]
+pub(super) const BEAT_KEYS: [&str; 10] =
+    ["from_s", "lasts_s", "off", "off_m", "pace", "reaches", "show_s", "title", "turns_a_frame", "until_s"];
+
+/// Of a file that can't be shown.
+pub(super) fn wrong(file: &str, problems: &[Problem]) -> Value {
+    json!({ "file": file, "holds": false, "ready": false, "problems": self::problems(problems) })
+}
+
+/// Of a show.
+pub(super) fn of(file: &str, shown: &Shown) -> Value {
+    let (show, report) = (&shown.proven.show, &shown.proven.report);
+    let beats: Vec<Value> = (0..show.plan.beats.len())
+        .filter_map(|index| Some(beat(show, index, report.beats.get(index)?)))
+        .collect();
+    let contacts = show.ephemeris.contacts().iter().map(|contact| {
+        json!({
+            "t_s": contact.t_s,
+            "body": name(show, contact.body),
+            "onto": name(show, contact.onto),
+            "outcome": outcome(contact.outcome),
+            "speed_m_s": contact.speed_m_s,
+        })
+    });
+    let bodies: Vec<&str> = show.scenario.bodies.iter().map(|body| body.name.as_str()).collect();
+    json!({
+        "file": file,
+        "holds": true,
+        "ready": report.is_ready(),
+        "title": show.scenario.title,
+        "fingerprint": shown.fingerprint.to_string(),
+        "bodies": bodies,
+        "lasts_s": show.plan.lasts_s(),
+        "from_s": show.ephemeris.from_s(),
+        "until_s": show.ephemeris.until_s(),
+        "steps": show.ephemeris.forward().len() + show.ephemeris.backward().len(),
+        "bytes": show.ephemeris.bytes(),
+        "energy_error": shown.energy_error,
+        "beats": beats,
+        "contacts": contacts.collect::<Vec<_>>(),
+        "encounters": report.encounters.iter().map(|one| encounter(show, one)).collect::<Vec<_>>(),
+        "numbers": {
+            "stated": report.numbers_stated,
+            "tried": report.numbers_tried,
+            "part": 1e-9,
+            "worst": report.levers.iter().take(LEVERS).map(|one| lever(show, one)).collect::<Vec<_>>(),
+        },
+        "findings": report.findings.iter().map(finding).collect::<Vec<_>>(),
+        "problems": problems(&shown.proven.notes),
+    })
+}
+
+fn problems(problems: &[Problem]) -> Vec<Value> {
+    let one = |problem: &Problem| {
+        json!({
+            "line": problem.place.line,
+            "column": problem.place.column,
+            "severity": match problem.severity { Severity::Error => "error", Severity::Note => "note" },
+            "wrong": problem.wrong,
+            "remedy": problem.remedy,
+        })
+    };
+    problems.iter().map(one).collect()
+}
+
+fn finding(finding: &Finding) -> Value {
+    json!({
+        "weight": finding.weight.name(),
+        "topic": finding.topic.name(),
+        "line": finding.place.line,
+        "column": finding.place.column,
+        "wrong": finding.wrong,
+        "remedy": finding.remedy,
+    })
+}
+
+fn beat(show: &Show, index: usize, report: &BeatReport) -> Value {
+    let planned = show.plan.beats.get(index);
+    json!({
+        "title": show.scenario.beats.get(index).map(|beat| beat.title.as_str()),
+        "show_s": planned.map(|planned| planned.show_s),
+        "lasts_s": planned.map(|planned| planned.lasts_s),
+        "from_s": planned.map(|planned| planned.from_s),
+        "until_s": planned.map(|planned| planned.until_s),
+        "pace": planned.map(|planned| planned.pace),
+        "reaches": report.cue.as_ref().map(|cue| {
+            json!({
+                "event": said(&show.scenario, &cue.event),
+                "at_s": cue.at_s,
+                "t_s": cue.model_s,
+                "late_s": cue.late_s,
+                "again_off_s": cue.again_s,
+                "again_off_frames": cue.again_s.map(|_| cue.again_frames),
+            })
+        }),
+        "off": report.off.map(|off| shift(show, &off)),
+        "off_m": report.off_m,
+        "turns_a_frame": report.turns_a_frame,
+    })
+}
+
+fn shift(show: &Show, shift: &Shift) -> Value {
+    json!({ "body": name(show, shift.body), "beat_s": shift.beat_s, "px": shift.px, "m": shift.m })
+}
+
+fn lever(show: &Show, lever: &Lever) -> Value {
+    let at_ends: Vec<Value> =
+        lever.shifts.iter().map(|one| one.map_or(Value::Null, |one| shift(show, &one))).collect();
+    json!({
+        "body": name(show, lever.body),
+        "quantity": lever.quantity,
+        "stated": lever.stated,
+        "moves": at_ends,
+    })
+}
+
+fn encounter(show: &Show, one: &Encounter) -> Value {
+    json!({
+        "body": name(show, one.body),
+        "other": name(show, one.other),
+        "t_s": one.t_s,
+        "beat": one.beat + 1,
+        "distance_m": one.distance_m,
+        "gap_m": one.gap_m,
+        "hill_radii": one.hill_radii,
+        "moved_m": one.moved_m,
+    })
+}

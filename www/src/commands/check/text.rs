@@ -1,0 +1,188 @@
+//! The report for people, in columns for a terminal.
+
+use std::fmt::Write as _;
+
+use fallaround_core::check::{Finding, Report, said};
+use fallaround_core::show::Show;
+use fallaround_core::units::number;
+
+use super::{Shown, name, outcome};
+
+/// What is less is no matter, px.
+const LEAST_PX: f64 = 0.001;
+
+/// Of a show.
+pub(super) fn of(file: &str, shown: &Shown) -> String {
+    let mut out = String::new();
+    // Writing to a string can't fail.
+    let mut line = |text: String| writeln!(out, "{}", text.trim_end()).unwrap_or_default();
+    let (show, report) = (&shown.proven.show, &shown.proven.report);
+    let verdict = if report.is_ready() { "is ready" } else { "is not ready" };
+    line(format!("{file}: \"{}\" {verdict}", show.scenario.title));
+    for finding in &report.findings {
+        line(self::finding(file, finding));
+    }
+    whole(shown, &mut line);
+    beats(show, report, &mut line);
+    for contact in show.ephemeris.contacts() {
+        line(format!(
+            "  contact      {} {} {} at {}, {:.1} m/s",
+            name(show, contact.body),
+            outcome(contact.outcome),
+            name(show, contact.onto),
+            time(contact.t_s),
+            contact.speed_m_s
+        ));
+    }
+    for one in &report.encounters {
+        let hill = one.hill_radii.map(|hill| format!(", {} of its Hill radii", number::with_digits(hill, 2)));
+        line(format!(
+            "  close        {} passes {} at {} in beat {}: {} km from centre to centre{}",
+            name(show, one.body),
+            name(show, one.other),
+            time(one.t_s),
+            one.beat + 1,
+            number::with_digits(one.distance_m / 1e3, 4),
+            hill.unwrap_or_default()
+        ));
+    }
+    out
+}
+
+/// As editors read it.
+fn finding(file: &str, finding: &Finding) -> String {
+    let Finding { weight, place, wrong, remedy, .. } = finding;
+    format!("  {file}:{}:{}: {}: {wrong}; {remedy}", place.line, place.column, weight.name())
+}
+
+/// What holds of the whole show.
+fn whole(shown: &Shown, line: &mut impl FnMut(String)) {
+    let (show, report) = (&shown.proven.show, &shown.proven.report);
+    let bodies: Vec<&str> = show.scenario.bodies.iter().map(|body| body.name.as_str()).collect();
+    line(format!("  fingerprint  {}", shown.fingerprint));
+    line(format!("  bodies       {}", bodies.join(", ")));
+    line(format!("  length       {} in {} beats", minutes(show.plan.lasts_s()), show.plan.beats.len()));
+    line(format!(
+        "  model time   {} to {}, {} steps, {:.1} MB",
+        time(show.ephemeris.from_s()),
+        time(show.ephemeris.until_s()),
+        show.ephemeris.forward().len() + show.ephemeris.backward().len(),
+        show.ephemeris.bytes() as f64 / 1e6
+    ));
+    line(match shown.energy_error {
+        Some(error) => format!("  energy       kept to {error:.1e} of it"),
+        None => "  energy       not a measure here (contact, change, relativity, oblateness, drag, or nothing massive moves)".to_owned(),
+    });
+    let off = report.beats.iter().enumerate().filter_map(|(beat, report)| Some((beat, report.off?)));
+    if let Some((beat, off)) = off.max_by(|a, b| a.1.px.total_cmp(&b.1.px)) {
+        line(format!(
+            "  exactness    {} is drawn {} off at most, in beat {} (by a second run in other steps)",
+            name(show, off.body),
+            px(off.px),
+            beat + 1
+        ));
+    }
+    if let Some(lever) = report.levers.first()
+        && let Some((beat, shift)) = lever.worst()
+    {
+        line(format!(
+            "  last digits  a change by 1e-9 of {} of {} moves {} by {}, in beat {}: the most of {}",
+            lever.quantity,
+            name(show, lever.body),
+            name(show, shift.body),
+            px(shift.px),
+            beat + 1,
+            counted(report)
+        ));
+    }
+}
+
+fn counted(report: &Report) -> String {
+    if report.numbers_tried == report.numbers_stated {
+        format!("{} numbers", report.numbers_tried)
+    } else {
+        format!("{} numbers tried, of {} stated", report.numbers_tried, report.numbers_stated)
+    }
+}
+
+fn beats(show: &Show, report: &Report, line: &mut impl FnMut(String)) {
+    let titles = show.scenario.beats.iter().map(|beat| beat.title.chars().count());
+    let width = titles.max().unwrap_or(0).max(4);
+    line(format!(
+        "  {:<4} {:>5}  {:<width$}  {:>12}  {:>12}  {:>14}  {:>14}",
+        "beat", "at", "title", "model from", "until", "off by, px", "1e-9 moves, px"
+    ));
+    let all = show.scenario.beats.iter().zip(&show.plan.beats).zip(&report.beats);
+    for (index, ((beat, planned), report_of)) in all.enumerate() {
+        let moved = report_of.lever.and_then(|lever| *report.levers.get(lever)?.shifts.get(index)?);
+        line(format!(
+            "  {:>4} {:>5}  {:<width$}  {:>12}  {:>12}  {:>14}  {:>14}",
+            index + 1,
+            minutes(planned.show_s),
+            beat.title,
+            time(planned.from_s),
+            time(planned.until_s),
+            report_of.off.map_or_else(String::new, |off| pixels(off.px)),
+            moved.map_or_else(String::new, |moved| pixels(moved.px)),
+        ));
+        if let Some(cue) = &report_of.cue {
+            line(format!(
+                "              {} after {:.1} s, at {}",
+                said(&show.scenario, &cue.event),
+                cue.at_s,
+                time(cue.model_s)
+            ));
+        }
+    }
+}
+
+/// A length in the picture; what no eye could see is told as that.
+fn px(px: f64) -> String {
+    if px < LEAST_PX { format!("under {LEAST_PX} px") } else { format!("{} px", number::with_digits(px, 2)) }
+}
+
+/// The same in a column of pixels.
+fn pixels(px: f64) -> String {
+    if px < LEAST_PX { format!("< {LEAST_PX}") } else { number::with_digits(px, 2) }
+}
+
+/// Show time: `9:05`.
+#[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "a show lasts hours, not ages")]
+fn minutes(seconds: f64) -> String {
+    let seconds = seconds.max(0.0).round() as u64;
+    format!("{}:{:02}", seconds / 60, seconds % 60)
+}
+
+/// Model time in the unit that fits it.
+fn time(seconds: f64) -> String {
+    let size = seconds.abs();
+    let (per, unit) = if size >= 2.0 * 31_557_600.0 {
+        (31_557_600.0, "yr")
+    } else if size >= 2.0 * 86_400.0 {
+        (86_400.0, "d")
+    } else if size >= 2.0 * 3600.0 {
+        (3600.0, "h")
+    } else {
+        (1.0, "s")
+    };
+    format!("{:.3} {unit}", seconds / per)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn times_are_told_in_units_that_fit() {
+        assert_eq!(minutes(545.0), "9:05");
+        assert_eq!(time(90.0), "90.000 s");
+        assert_eq!(time(-86_400.0 * 3.0), "-3.000 d");
+        assert_eq!(time(31_557_600.0 * 12.5), "12.500 yr");
+    }
+
+    #[test]
+    fn what_no_eye_could_see_is_told_as_that() {
+        assert_eq!(px(3e-8), "under 0.001 px");
+        assert_eq!(px(12.34), "12 px");
+    }
+}
