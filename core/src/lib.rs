@@ -62,4 +62,8 @@ pub mod sweep;
 pub mod time;
 pub mod units;
 
+#[cfg(test)]
+#[path = "../benches/common/solar_system.rs"]
+mod solar_system;
+
 pub use nalgebra::Vector3;

@@ -3,5 +3,7 @@
 pub mod drift;
 pub mod radau;
 mod spacings;
+pub mod wisdom_holman;
 
 pub use radau::{PER_BODY, Radau, StepTooSmall};
+pub use wisdom_holman::WisdomHolman;

@@ -4,12 +4,9 @@ use super::*;
 use crate::ephemeris::states_at;
 use crate::integrate::drift;
 use crate::math::float::{atan2, cos};
+use crate::solar_system::{PLANETS, solar_system};
 use proptest::prelude::*;
 use std::f64::consts::TAU;
-
-#[path = "../../../benches/common/solar_system.rs"]
-mod solar_system;
-use solar_system::{PLANETS, solar_system};
 
 const DAY_S: f64 = 86_400.0;
 
