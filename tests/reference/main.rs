@@ -13,4 +13,6 @@ mod energy;
 mod figure_eight;
 mod handbooks;
 mod planets;
+mod satellites;
+mod transfers;
 mod transits;
