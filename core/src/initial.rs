@@ -2,7 +2,7 @@
 
 use crate::Vector3;
 use crate::air::Air;
-use crate::scenario::{BodyId, Change, Surface};
+use crate::scenario::{BodyId, ChangeKind, Surface};
 
 /// Everything that the integrator needs. Barycentric: the centre of mass of all massive bodies is at rest at the origin.
 #[derive(Debug, Clone, PartialEq)]
@@ -13,8 +13,9 @@ pub struct InitialState {
     pub listed: usize,
     /// The forces beyond Newton's attraction of points.
     pub forces: Forces,
-    /// What is done to the bodies on the way, in the order of time. They act from time 0 on; going back, nothing changes.
-    pub changes: Vec<Change>,
+    /// What is done to the bodies on the way, in the order of time, as far as it is known when. They act from time 0 on; going back,
+    /// nothing changes.
+    pub changes: Vec<TimedChange>,
     /// Swarms of tracers, in the order of the file. They feel the bodies and pull on nothing.
     pub swarms: Vec<InitialSwarm>,
 }
@@ -32,6 +33,17 @@ pub struct InitialSwarm {
     pub vel: Vec<Vector3<f64>>,
     /// Coefficient of drag times cross-section over mass of each tracer, m²/kg; 0: air does not slow them.
     pub area_m2_kg: f64,
+}
+
+/// Something done to a body on the way, at an instant that is known.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct TimedChange {
+    /// When, seconds from the scenario's start; not negative.
+    pub t_s: f64,
+    /// To which body.
+    pub body: BodyId,
+    /// What.
+    pub what: ChangeKind,
 }
 
 /// One body at the start.
@@ -64,6 +76,8 @@ pub struct Forces {
     pub atmospheres: Vec<Atmosphere>,
     /// Bodies that air slows.
     pub drags: Vec<Drag>,
+    /// Over which length Newton's attraction is softened, m; 0: bodies attract as points. Never beside relativity, oblate bodies or swarms.
+    pub softening_m: f64,
 }
 
 /// The air around a body. It does not turn.

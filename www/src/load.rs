@@ -8,7 +8,6 @@ use std::time::{Duration, SystemTime, UNIX_EPOCH};
 use anyhow::{Context as _, Result};
 use fallaround_core::ephemeris::{Ephemeris, Propagation};
 use fallaround_core::initial::InitialState;
-use fallaround_core::resolve::resolve;
 use fallaround_core::scenario::{self, BodyId, Place, Problem, Scenario, Severity, dated};
 use fallaround_core::show::{Rehearsal, Show};
 use indicatif::{ProgressBar, ProgressStyle};
@@ -90,9 +89,8 @@ pub(crate) struct Resolved {
 /// # Errors
 /// [`Wrong`] with every problem.
 pub(crate) fn resolved(path: &Path, today: &Today) -> Result<Resolved> {
-    let parsed = scenario::parse(&text(path, today)?);
-    let Some(scenario) = parsed.scenario else { return Err(Wrong::new(path, parsed.problems).into()) };
-    let initial = resolve(&scenario).map_err(|problems| Wrong::new(path, problems))?;
+    let (scenario, initial) =
+        Rehearsal::settled(&text(path, today)?).map_err(|problems| Wrong::new(path, problems))?;
     Ok(Resolved { scenario, initial })
 }
 

@@ -35,7 +35,7 @@ mod wording;
 pub use trial::Miss;
 
 use crate::scenario::edit::Document;
-use crate::scenario::{Aim, Place, Problem};
+use crate::scenario::{Aim, ChangeTime, Place, Problem};
 use fit::{Fit, cost};
 use std::fmt;
 use trial::{Trial, scene_m};
@@ -170,6 +170,11 @@ impl Aiming {
             let place = Place { line: 1, column: 1 };
             let problem = Problem::error(place, "the scenario states no aim", remedy);
             return Err(AimFailure::Problems(vec![problem]));
+        }
+        if let Some(change) = scenario.changes.iter().find(|c| !matches!(c.at, ChangeTime::Time(_))) {
+            let wrong = "an aim can't wait for a change at a beat or an event";
+            let remedy = "state the change's time while aiming";
+            return Err(AimFailure::Problems(vec![Problem::error(change.place, wrong, remedy)]));
         }
         let aims = scenario.aims;
         let scene_m = aims.first().map_or(0.0, |aim| scene_m(&document, aim));

@@ -153,7 +153,7 @@ impl Run {
     /// One step, cut short by the first contact or change in it.
     pub(super) fn step(&mut self, initial: &InitialState) -> Result<Step, StepTooSmall> {
         let start_s = self.radau.t_s();
-        let change_s = initial.changes.get(self.changed).map(|change| change.at.s());
+        let change_s = initial.changes.get(self.changed).map(|change| change.t_s);
         if let Some(t_s) = change_s.filter(|&t_s| t_s <= start_s) {
             let switches = self.change(initial, t_s, self.states(), self.radau.step_s());
             return Ok(Step { start_s, step_s: 0.0, contact: None, switches });
@@ -215,7 +215,7 @@ impl Run {
         step_s: f64,
     ) -> Vec<Switch> {
         let mut switches = Vec::new();
-        while let Some(change) = initial.changes.get(self.changed).filter(|change| change.at.s() <= t_s) {
+        while let Some(change) = initial.changes.get(self.changed).filter(|change| change.t_s <= t_s) {
             self.changed += 1;
             match &change.what {
                 ChangeKind::Gravity { on } => {

@@ -11,6 +11,7 @@ mod newton;
 mod oblateness;
 mod post_newtonian;
 mod resting;
+mod softening;
 
 use drag::Drags;
 use oblateness::Bulge;
@@ -24,6 +25,8 @@ pub struct Field {
     gms: Vec<f64>,
     /// Which bodies have mass, in order.
     massive: Vec<usize>,
+    /// 0: points.
+    softening_m: f64,
     relativity: Option<PostNewtonian>,
     bulges: Vec<Bulge>,
     drags: Vec<Drags>,
@@ -53,7 +56,15 @@ impl Field {
                 }
             }
         }
-        Self { gms, massive, relativity, bulges, drags, resting: Resting::default() }
+        Self {
+            gms,
+            massive,
+            softening_m: forces.softening_m,
+            relativity,
+            bulges,
+            drags,
+            resting: Resting::default(),
+        }
     }
 
     /// Adds a mass that rests on a body, at a fixed offset from its centre, m.
@@ -92,7 +103,7 @@ impl Field {
     /// Accelerations of all bodies, m/s², into the first three numbers for each body of `out`.
     ///
     /// `pos` and `vel` hold at least three numbers for each body; `vel` is read only when
-    /// [`Field::needs_velocities`]. Two bodies in the same place give infinities or NaN.
+    /// [`Field::needs_velocities`]. Two bodies in the same place give infinities or NaN, unless they are softened.
     pub fn accelerations(&mut self, pos: &[f64], vel: &[f64], out: &mut [f64]) {
         self.accelerations_at(0, true, pos, vel, out);
     }
@@ -110,7 +121,11 @@ impl Field {
     ) {
         let n = 3 * self.gms.len();
         let (pos, out) = (&pos[..n], &mut out[..n]);
-        newton::set(&self.gms, &self.massive, pos, out);
+        if self.softening_m == 0.0 {
+            newton::set(&self.gms, &self.massive, pos, out);
+        } else {
+            softening::set(&self.gms, &self.massive, self.softening_m, pos, out);
+        }
         if let Some(relativity) = &mut self.relativity {
             if anew {
                 relativity.add(instant, pos, &vel[..n], out);
@@ -125,9 +140,12 @@ impl Field {
             drag.add(&self.gms, pos, vel, out);
         }
         // Last: it shares out what the others found among the parts of a body.
-        self.resting.add(&self.gms, pos, out);
+        self.resting.add(&self.gms, self.softening_m, pos, out);
     }
 }
+
+#[cfg(test)]
+mod symmetry_tests;
 
 #[cfg(test)]
 mod tests {
@@ -158,7 +176,7 @@ mod tests {
 
     proptest! {
         #[test]
-        fn all_forces_but_relativity_keep_momentum(bodies in bodies()) {
+        fn all_forces_but_relativity_keep_momentum(bodies in bodies(), softening_m in prop_oneof![Just(0.0), 1e6..1e11_f64]) {
             let air = Atmosphere { body: BodyId(0), radius_m: 1e10, air: Air::exponential(1e-9, 1e10) };
             let forces = Forces {
                 relativity: false,
@@ -166,6 +184,7 @@ mod tests {
                 // What has no mass takes up no momentum.
                 atmospheres: if bodies[0].gm_m3_s2 > 0.0 { vec![air] } else { Vec::new() },
                 drags: vec![Drag { body: BodyId(1), area_m2_kg: 1e-2 }],
+                softening_m,
             };
             let pos: Vec<f64> = bodies.iter().flat_map(|b| b.pos.as_slice().to_vec()).collect();
             let vel: Vec<f64> = bodies.iter().flat_map(|b| b.vel.as_slice().to_vec()).collect();

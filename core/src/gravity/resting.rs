@@ -1,7 +1,9 @@
 //! Masses that rest on other bodies.
 //!
 //! A body with mass that came to rest on another keeps its place on it and its pull. The two then move as one:
-//! forces on either are shared by the mass of both. Its pull is Newton's alone.
+//! forces on either are shared by the mass of both. Its pull is Newton's alone, softened where theirs is.
+
+use super::softening;
 
 /// One mass at rest.
 #[derive(Debug, Clone, PartialEq)]
@@ -29,7 +31,7 @@ impl Resting {
     }
 
     /// Adds the pull of the masses at rest, and what pulls on them; shares out what `out` held for their hosts.
-    pub(super) fn add(&self, gms: &[f64], pos: &[f64], out: &mut [f64]) {
+    pub(super) fn add(&self, gms: &[f64], softening_m: f64, pos: &[f64], out: &mut [f64]) {
         if self.masses.is_empty() {
             return;
         }
@@ -44,14 +46,14 @@ impl Resting {
         for (n, mass) in self.masses.iter().enumerate() {
             let at = place(mass, pos);
             for (i, &gm) in gms.iter().enumerate().filter(|(i, _)| *i != mass.host) {
-                let pull = pull([pos[3 * i], pos[3 * i + 1], pos[3 * i + 2]], at);
+                let pull = pull([pos[3 * i], pos[3 * i + 1], pos[3 * i + 2]], at, softening_m);
                 for axis in 0..3 {
                     out[3 * i + axis] += share(gm, i) * mass.gm * pull[axis];
                     out[3 * mass.host + axis] -= share(mass.gm, mass.host) * gm * pull[axis];
                 }
             }
             for other in self.masses[..n].iter().filter(|other| other.host != mass.host) {
-                let pull = pull(place(other, pos), at);
+                let pull = pull(place(other, pos), at, softening_m);
                 for axis in 0..3 {
                     out[3 * other.host + axis] += share(other.gm, other.host) * mass.gm * pull[axis];
                     out[3 * mass.host + axis] -= share(mass.gm, mass.host) * other.gm * pull[axis];
@@ -67,10 +69,9 @@ fn place(mass: &Mass, pos: &[f64]) -> [f64; 3] {
 }
 
 /// Pull on a point by another of GM 1.
-fn pull(on: [f64; 3], by: [f64; 3]) -> [f64; 3] {
+fn pull(on: [f64; 3], by: [f64; 3], softening_m: f64) -> [f64; 3] {
     let d = [by[0] - on[0], by[1] - on[1], by[2] - on[2]];
-    let r2 = d[0] * d[0] + d[1] * d[1] + d[2] * d[2];
-    let w = 1.0 / (r2 * r2.sqrt());
+    let w = softening::weight(d, softening_m);
     [w * d[0], w * d[1], w * d[2]]
 }
 
@@ -87,7 +88,7 @@ mod tests {
         let mut out = [0.0; 9];
         super::super::newton::set(&gms, &[0, 2], &pos, &mut out);
         let before = out;
-        resting.add(&gms, &pos, &mut out);
+        resting.add(&gms, 0.0, &pos, &mut out);
         // The tracer: 4 away from the mass at rest.
         assert!((out[4] - (before[4] - 1.0 / 16.0)).abs() < 1e-15);
         // The host: three quarters of its own pull, one quarter of that on the mass at rest, √17 away.

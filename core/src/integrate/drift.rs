@@ -4,6 +4,12 @@
 ///
 /// `pos` and `vel` hold three numbers for each body.
 pub fn energy(gms: &[f64], pos: &[f64], vel: &[f64]) -> f64 {
+    softened_energy(gms, 0.0, pos, vel)
+}
+
+/// The same where attraction is softened over a length, m, in Plummer's way: a pair has -GM m / √(r² + ε²).
+pub fn softened_energy(gms: &[f64], softening_m: f64, pos: &[f64], vel: &[f64]) -> f64 {
+    let softening2 = softening_m * softening_m;
     // Compensated (Kahan 1965), so that its own rounding stays below what it is to show.
     let (mut sum, mut excess) = (0.0, 0.0);
     let mut add = |term: f64| {
@@ -22,7 +28,7 @@ pub fn energy(gms: &[f64], pos: &[f64], vel: &[f64]) -> f64 {
                     pos[3 * i + 1] - pos[3 * j + 1],
                     pos[3 * i + 2] - pos[3 * j + 2],
                 ];
-                add(-gm * other / (d[0] * d[0] + d[1] * d[1] + d[2] * d[2]).sqrt());
+                add(-gm * other / (d[0] * d[0] + d[1] * d[1] + d[2] * d[2] + softening2).sqrt());
             }
         }
     }

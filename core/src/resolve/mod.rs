@@ -4,12 +4,15 @@
 //! as unseen companions where one of its own is `real`; last, all is moved so that the centre of mass of the massive
 //! bodies rests at the origin.
 
-pub use crate::initial::{Atmosphere, Drag, Forces, InitialBody, InitialState, InitialSwarm, Oblate};
+pub use crate::initial::{
+    Atmosphere, Drag, Forces, InitialBody, InitialState, InitialSwarm, Oblate, TimedChange,
+};
 
 use crate::Vector3;
 use crate::air::Air;
 use crate::ephemeris::State;
-use crate::scenario::{self, Body, BodyId, Form, Place, Problem, RealBody, Scenario, Severity};
+use crate::scenario::{self, Body, BodyId, ChangeTime, Form, Place, Problem, RealBody, Scenario, Severity};
+use crate::units::Length;
 
 mod draws;
 mod forms;
@@ -29,7 +32,8 @@ use shape::Fault;
 ///
 /// Distances of a form are from centre to centre; heights are of a body's own centre above the surface. GM in an orbit is
 /// that of both bodies together. The coordinates of a `place` without `about` have their origin at the barycentre of the
-/// solar system where a body is `real`, and anywhere where none is.
+/// solar system where a body is `real`, and anywhere where none is. Changes that wait for a beat or an event are left out: a
+/// rehearsal finds when they are made.
 ///
 /// # Errors
 /// Every problem of the bodies at once, each at the place of its `[[body]]`.
@@ -70,7 +74,7 @@ pub fn resolve(scenario: &Scenario) -> Result<InitialState, Vec<Problem>> {
         };
         initial[index].primary = reals.iter().position(|r| *r == Some(primary)).map(BodyId);
     }
-    if problems.is_empty() {
+    if problems.is_empty() && scenario.physics.softening.is_none() {
         find_shared_places(&initial, bodies, &mut problems);
     }
     let mut swarms = Vec::new();
@@ -91,10 +95,25 @@ pub fn resolve(scenario: &Scenario) -> Result<InitialState, Vec<Problem>> {
     }
     let forces = forces(scenario, &initial, &reals);
     to_barycentre(&mut initial);
-    let mut changes = scenario.changes.clone();
-    // Those of the same instant keep the order of the file.
-    changes.sort_by(|a, b| a.at.s().total_cmp(&b.at.s()));
+    let stated = vec![None; scenario.changes.len()];
+    let changes = timed(scenario, &stated);
     Ok(InitialState { bodies: initial, listed: bodies.len(), forces, changes, swarms })
+}
+
+/// The changes of a scenario whose time is known, in the order of time: from the file, or for those that wait for a beat or an event from
+/// `found_s`, which has a place for each change of the file (seconds from the scenario's start).
+pub fn timed(scenario: &Scenario, found_s: &[Option<f64>]) -> Vec<TimedChange> {
+    let known = scenario.changes.iter().zip(found_s).filter_map(|(change, found_s)| {
+        let t_s = match change.at {
+            ChangeTime::Time(at) => at.s(),
+            ChangeTime::Beat { .. } | ChangeTime::Event { .. } => (*found_s)?,
+        };
+        Some(TimedChange { t_s, body: change.body, what: change.what })
+    });
+    let mut changes: Vec<TimedChange> = known.collect();
+    // Those of the same instant keep the order of the file.
+    changes.sort_by(|a, b| a.t_s.total_cmp(&b.t_s));
+    changes
 }
 
 /// GM of a body: as stated, else the real one's own, else none.
@@ -303,7 +322,8 @@ fn forces(scenario: &Scenario, initial: &[InitialBody], reals: &[Option<RealBody
             }));
         }
     }
-    Forces { relativity, oblate, atmospheres, drags }
+    let softening_m = scenario.physics.softening.map_or(0.0, Length::m);
+    Forces { relativity, oblate, atmospheres, drags, softening_m }
 }
 
 /// The air that a body states; `None` for a table that is none, which parsing has told.

@@ -144,10 +144,8 @@ fn told(scenario: &Scenario) -> String {
 #[test]
 fn contradictions_are_named_with_their_place() {
     // Most of these the reader of the file refuses first, with the place of the very key.
-    let (length, span) = (
-        |au: f64| Some(crate::units::Length::from_m(au * AU_M)),
-        |d: f64| Some(crate::units::Span::from_s(d * DAY_S)),
-    );
+    let (length, span) =
+        (|au: f64| Some(Length::from_m(au * AU_M)), |d: f64| Some(crate::units::Span::from_s(d * DAY_S)));
     let none = match sound().bodies[3].form {
         Form::Orbit(orbit) => Orbit { periapsis: None, eccentricity: None, ..orbit },
         _ => panic!("an orbit"),

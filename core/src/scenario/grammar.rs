@@ -92,6 +92,12 @@ pub const PHYSICS: Section = Section {
             "false",
             "whether unnamed solar-system bodies pull on real ones, unseen; on unless stated",
         ),
+        key(
+            "softening",
+            "length",
+            r#""1000 km""#,
+            "length below which gravity fades instead of growing without bound (Plummer's form); without real bodies, swarms, relativity and oblateness alone",
+        ),
     ],
 };
 
@@ -270,7 +276,12 @@ pub const DROP: Section = Section {
 pub const CHANGE: Section = Section {
     what: "a change",
     keys: &[
-        key("at", "time", r#""120 d""#, "when in model time, from the scenario's start"),
+        key(
+            "at",
+            "time or table",
+            r#"{ beat = "The long fall" }"#,
+            "when: in model time from the scenario's start, when a beat starts, or at an event",
+        ),
         key("gravity", "body", r#""Orla""#, "the body whose gravity is switched"),
         key("on", "true or false", "false", "with gravity: whether it acts from then on"),
         key("kick", "body", r#""Ball""#, "the body whose velocity changes, unless it rests on another"),
@@ -288,6 +299,22 @@ pub const CHANGE: Section = Section {
             r#"["0 km/s", "1 km/s", "0 km/s"]"#,
             "with kick: what is added, ecliptic axes, instead of speed",
         ),
+    ],
+};
+
+/// `at` of a change, as a table.
+pub const CHANGE_TIME: Section = Section {
+    what: "the time of a change",
+    keys: &[
+        key(
+            "beat",
+            "title of a beat",
+            r#""The long fall""#,
+            "when this beat starts, as planned; every beat that shows later model times sees the change, wherever it stands",
+        ),
+        key("event", "event", r#""2nd periapsis of Fenn""#, "at an event, counted from the scenario's start"),
+        key("before", "time", r#""3 d""#, "with event: so long before it, in model time"),
+        key("after", "time", r#""3 d""#, "so long after it, in model time"),
     ],
 };
 
@@ -445,7 +472,7 @@ pub const BODY_MARKS: [&str; 12] = [
 ];
 
 /// Every section, for the format's reference.
-pub const SECTIONS: [&Section; 20] = [
+pub const SECTIONS: [&Section; 21] = [
     &TOP,
     &PHYSICS,
     &BODY,
@@ -457,6 +484,7 @@ pub const SECTIONS: [&Section; 20] = [
     &DROP,
     &SWARM,
     &CHANGE,
+    &CHANGE_TIME,
     &BEAT,
     &CLOCK,
     &START,

@@ -8,7 +8,8 @@ use crate::ephemeris::osculating::osculating;
 use crate::ephemeris::{Ephemeris, events};
 use crate::initial::InitialState;
 use crate::scenario::{
-    Beat, BeatClock, BeatStart, BodyId, EventRef, Mark, ModelSpan, Problem, Scenario, Then,
+    Beat, BeatClock, BeatStart, BodyId, Change, ChangeTime, EventRef, Mark, ModelSpan, Place, Problem,
+    Scenario, Then,
 };
 
 /// Show seconds for which a beat that goes on may be lingered on before the model comes to its end.
@@ -65,6 +66,33 @@ pub fn make(
     Planner { scenario, initial, ephemeris, limits }.plan()
 }
 
+/// When a change is made, seconds from the scenario's start, as far as the changes that the ephemeris knows tell.
+///
+/// # Errors
+/// As [`make`].
+pub fn change_s(
+    scenario: &Scenario,
+    initial: &InitialState,
+    ephemeris: &Ephemeris,
+    limits: Limits,
+    change: &Change,
+) -> Result<f64, Need> {
+    let planner = Planner { scenario, initial, ephemeris, limits };
+    match change.at {
+        ChangeTime::Time(at) => Ok(at.s()),
+        ChangeTime::Event { event, after } => Ok(planner.event(0, change.place, event, 0.0)? + after.s()),
+        ChangeTime::Beat { beat, after } => {
+            let before = planner.beats(beat)?;
+            let beats = &scenario.beats;
+            let (from_s, _) = match beats.get(beat) {
+                Some(stated) => planner.start(beat, stated, before.last().copied())?,
+                None => (0.0, Run::Anew),
+            };
+            Ok(from_s + after.s())
+        }
+    }
+}
+
 struct Planner<'a> {
     limits: Limits,
     scenario: &'a Scenario,
@@ -74,15 +102,7 @@ struct Planner<'a> {
 
 impl Planner<'_> {
     fn plan(&self) -> Result<Plan, Need> {
-        let mut plan = Plan::default();
-        let mut first_pace = 0.0;
-        for (index, beat) in self.scenario.beats.iter().enumerate() {
-            let before = index.checked_sub(1).and_then(|i| plan.beats.get(i)).copied();
-            let planned = self.beat(index, beat, before, first_pace)?;
-            let pacing = planned.pacing(planned.from_s, first_pace, 0.0);
-            first_pace = pacing.pace_at(planned.lasts_s);
-            plan.beats.push(planned);
-        }
+        let mut plan = Plan { beats: self.beats(self.scenario.beats.len())?, ..Plan::default() };
         plan.covers_from_s = plan.beats.iter().map(|b| b.from_s.min(b.until_s)).fold(0.0, f64::min);
         plan.covers_until_s = plan.beats.iter().map(|b| b.from_s.max(b.until_s)).fold(0.0, f64::max);
         let (mut from_s, mut until_s) = (plan.covers_from_s, plan.covers_until_s);
@@ -105,6 +125,32 @@ impl Planner<'_> {
         Ok(plan)
     }
 
+    /// The first of the beats, so many.
+    fn beats(&self, count: usize) -> Result<Vec<PlannedBeat>, Need> {
+        let mut beats: Vec<PlannedBeat> = Vec::new();
+        let mut first_pace = 0.0;
+        for (index, beat) in self.scenario.beats.iter().enumerate().take(count) {
+            let planned = self.beat(index, beat, beats.last().copied(), first_pace)?;
+            let pacing = planned.pacing(planned.from_s, first_pace, 0.0);
+            first_pace = pacing.pace_at(planned.lasts_s);
+            beats.push(planned);
+        }
+        Ok(beats)
+    }
+
+    /// Model time at which a beat starts, and whether it follows from the one before.
+    fn start(&self, index: usize, beat: &Beat, before: Option<PlannedBeat>) -> Result<(f64, Run), Need> {
+        let goes_on = before.map_or(0.0, |b| b.until_s);
+        Ok(match beat.start {
+            BeatStart::GoOn if before.is_some() => (goes_on, Run::GoesOn),
+            BeatStart::GoOn | BeatStart::Restart => (0.0, Run::Anew),
+            BeatStart::Time(time) => (time.s(), Run::Anew),
+            BeatStart::Event { event, after } => {
+                (self.event(index, beat.clock_place, event, 0.0)? + after.s(), Run::Anew)
+            }
+        })
+    }
+
     fn beat(
         &self,
         index: usize,
@@ -112,15 +158,7 @@ impl Planner<'_> {
         before: Option<PlannedBeat>,
         first_pace: f64,
     ) -> Result<PlannedBeat, Need> {
-        let goes_on = before.map_or(0.0, |b| b.until_s);
-        let (from_s, run) = match beat.start {
-            BeatStart::GoOn if before.is_some() => (goes_on, Run::GoesOn),
-            BeatStart::GoOn | BeatStart::Restart => (0.0, Run::Anew),
-            BeatStart::Time(time) => (time.s(), Run::Anew),
-            BeatStart::Event { event, after } => {
-                (self.event(index, beat, event, 0.0)? + after.s(), Run::Anew)
-            }
-        };
+        let (from_s, run) = self.start(index, beat, before)?;
         self.want(from_s, index)?;
         let first_pace = if run == Run::GoesOn { first_pace } else { 0.0 };
         let before_beat = index.checked_sub(1).and_then(|i| self.scenario.beats.get(i));
@@ -148,7 +186,7 @@ impl Planner<'_> {
                 planned.way = Way::Span(self.span_s(index, beat, span, from_s)?);
             }
             BeatClock::Reach { event, at, lasts } => {
-                let model_s = self.event(index, beat, event, from_s)?;
+                let model_s = self.event(index, beat.clock_place, event, from_s)?;
                 planned.lasts_s = lasts.s().max(at.s());
                 planned.cue = Some(Cue { at_s: at.s(), model_s, event });
                 planned.way = Way::Cue;
@@ -218,7 +256,7 @@ impl Planner<'_> {
     }
 
     /// Model time of an event after an instant.
-    fn event(&self, index: usize, beat: &Beat, event: EventRef, after_s: f64) -> Result<f64, Need> {
+    fn event(&self, index: usize, place: Place, event: EventRef, after_s: f64) -> Result<f64, Need> {
         self.touch(after_s, index)?;
         // An event on which the beat itself starts is not meant.
         let after_s = after_s + 1e-3 + 1e-9 * after_s.abs();
@@ -228,7 +266,7 @@ impl Planner<'_> {
         let look_s = self.first_look_s(event, after_s);
         let reached_s = (self.ephemeris.until_s() - after_s).max(0.0);
         if reached_s > SEARCH_TIMES * look_s {
-            return Err(Need::Impossible(self.never(beat, event, after_s)));
+            return Err(Need::Impossible(self.never(place, event, after_s)));
         }
         let t_s = after_s + (2.0 * reached_s).max(look_s);
         if self.ephemeris.until_s() >= self.limits.until_s {
@@ -261,10 +299,10 @@ impl Planner<'_> {
         if time_s.is_finite() { time_s.max(1.0) } else { constants::DAY_S }
     }
 
-    fn never(&self, beat: &Beat, event: EventRef, after_s: f64) -> Problem {
+    fn never(&self, place: Place, event: EventRef, after_s: f64) -> Problem {
         let searched = readable(self.ephemeris.until_s() - after_s);
         Problem::error(
-            beat.clock_place,
+            place,
             format!("no {} of {} within the {searched} searched", event.kind.name(), self.name(event.body)),
             "name an event that happens, or change the motion so that it does",
         )

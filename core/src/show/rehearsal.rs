@@ -6,7 +6,7 @@ use super::planner::{self, Limits, Need};
 use crate::ephemeris::{Ephemeris, Propagation};
 use crate::initial::InitialState;
 use crate::resolve;
-use crate::scenario::{self, Place, Problem, Scenario};
+use crate::scenario::{self, ChangeTime, Place, Problem, Scenario};
 
 /// A show being integrated.
 #[derive(Debug)]
@@ -14,6 +14,8 @@ pub struct Rehearsal {
     scenario: Scenario,
     notes: Vec<Problem>,
     initial: InitialState,
+    /// When each change of the file is made, where that had to be found, seconds from the scenario's start.
+    found_s: Vec<Option<f64>>,
     propagation: Propagation,
     limits: Limits,
     why_limited: String,
@@ -22,6 +24,14 @@ pub struct Rehearsal {
     /// The largest share of the work reported so far.
     fraction: f64,
     plan: Option<Plan>,
+}
+
+/// What a look at the ephemeris gave.
+enum Made {
+    /// The time of a change.
+    Change(f64),
+    /// The whole plan.
+    Plan(Plan),
 }
 
 /// How far a rehearsal has come.
@@ -50,6 +60,7 @@ impl Rehearsal {
         let initial = resolve::resolve(&scenario)?;
         let propagation = Propagation::new(&initial);
         Ok(Self {
+            found_s: vec![None; scenario.changes.len()],
             scenario,
             notes: parsed.problems,
             initial,
@@ -112,14 +123,80 @@ impl Rehearsal {
             }
             self.want = None;
         }
-        match planner::make(&self.scenario, &self.initial, self.ephemeris(), self.limits) {
-            Ok(plan) => self.plan = Some(plan),
+        let next = self.open_change();
+        let made = match next.and_then(|index| self.scenario.changes.get(index)) {
+            Some(change) => {
+                planner::change_s(&self.scenario, &self.initial, self.ephemeris(), self.limits, change)
+                    .map(Made::Change)
+            }
+            None => {
+                planner::make(&self.scenario, &self.initial, self.ephemeris(), self.limits).map(Made::Plan)
+            }
+        };
+        match made {
+            Ok(Made::Plan(plan)) => {
+                self.check_changes(&plan)?;
+                self.plan = Some(plan);
+            }
+            Ok(Made::Change(t_s)) => self.make_change(next.unwrap_or_default(), t_s)?,
             Err(Need::Until { t_s, beat }) => {
                 self.from_s = if t_s >= 0.0 { self.ephemeris().until_s() } else { self.ephemeris().from_s() };
                 self.want = Some((t_s, beat));
             }
             Err(Need::Beyond { beat, .. }) => return Err(vec![self.ends_too_early(beat)]),
             Err(Need::Impossible(problem)) => return Err(vec![problem]),
+        }
+        Ok(())
+    }
+
+    /// The first change of the file whose time is still to be found.
+    fn open_change(&self) -> Option<usize> {
+        let open = |(change, found): (&scenario::Change, &Option<f64>)| {
+            found.is_none() && !matches!(change.at, ChangeTime::Time(_))
+        };
+        self.scenario.changes.iter().zip(&self.found_s).position(open)
+    }
+
+    /// Takes up a change at the time that was found for it, and starts integrating anew: what was integrated beyond that time is void,
+    /// and the steps before it shall not depend on how far that was.
+    fn make_change(&mut self, index: usize, t_s: f64) -> Result<(), Vec<Problem>> {
+        let Some(change) = self.scenario.changes.get(index) else { return Ok(()) };
+        let problem = |wrong: &str, remedy: &str| Err(vec![Problem::error(change.place, wrong, remedy)]);
+        if t_s < 0.0 {
+            return problem(
+                "this change comes before the scenario's start",
+                "changes act from model time 0 on; choose a later event, or a beat that starts later",
+            );
+        }
+        if self.found_s.iter().flatten().any(|&earlier_s| earlier_s > t_s) {
+            return problem(
+                "this change comes before another at a beat or an event that stands above it",
+                "write such changes in the order in which they happen",
+            );
+        }
+        if let Some(found) = self.found_s.get_mut(index) {
+            *found = Some(t_s);
+        }
+        self.initial.changes = resolve::timed(&self.scenario, &self.found_s);
+        self.propagation = Propagation::new(&self.initial);
+        self.limits = Limits::NONE;
+        Ok(())
+    }
+
+    /// A change at the start of a beat must leave that start where it is: beats before it may have shown later model times.
+    fn check_changes(&self, plan: &Plan) -> Result<(), Vec<Problem>> {
+        /// What cutting a step at the change may round.
+        const SAME: f64 = 1e-9;
+        for (change, found_s) in self.scenario.changes.iter().zip(&self.found_s) {
+            let (ChangeTime::Beat { beat, after }, Some(t_s)) = (change.at, *found_s) else { continue };
+            let from_s = plan.beats.get(beat).map_or(t_s, |planned| planned.from_s + after.s());
+            if (from_s - t_s).abs() > SAME * (1.0 + t_s) {
+                return Err(vec![Problem::error(
+                    change.place,
+                    "this change moves the start of its own beat: a beat before it shows what comes after the change",
+                    "state the change's time, or let the beats before it end sooner",
+                )]);
+            }
         }
         Ok(())
     }
@@ -142,6 +219,18 @@ impl Rehearsal {
         let estimate = if done { 1.0 } else { (share(beat) + within) / (share(beats) + 1.0) };
         let fraction = estimate.max(self.fraction);
         Progress { done, fraction, beat, beats, model_s }
+    }
+
+    /// The scenario and where everything starts, with the times of all changes found, and without the rest of the show.
+    ///
+    /// # Errors
+    /// As [`Rehearsal::start`] and [`Rehearsal::work`].
+    pub fn settled(text: &str) -> Result<(Scenario, InitialState), Vec<Problem>> {
+        let mut rehearsal = Self::start(text)?;
+        while rehearsal.open_change().is_some() {
+            rehearsal.work(usize::MAX)?;
+        }
+        Ok((rehearsal.scenario, rehearsal.initial))
     }
 
     /// The show, once it is ready.
@@ -174,6 +263,9 @@ impl Rehearsal {
     }
 }
 
+#[cfg(test)]
+#[path = "change_tests.rs"]
+mod change_tests;
 #[cfg(test)]
 #[path = "rehearsal_tests.rs"]
 mod tests;

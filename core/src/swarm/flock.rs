@@ -81,7 +81,7 @@ impl Setting {
         let massive = |body: BodyId| self.initial.bodies[body.0].gm_m3_s2 > 0.0;
         let matters = |a: BodyId, b: BodyId| massive(a) && massive(b) || a == self.about || b == self.about;
         let contacts = eph.contacts().iter().filter(|c| matters(c.body, c.onto)).map(|c| c.t_s);
-        let changes = self.initial.changes.iter().map(|change| change.at.s());
+        let changes = self.initial.changes.iter().map(|change| change.t_s);
         let end_s = if direction > 0.0 { eph.until_s() } else { eph.from_s() };
         contacts
             .chain(changes.filter(|_| direction > 0.0))

@@ -2,28 +2,29 @@
 
 use super::*;
 use crate::ephemeris::{Outcome, states_at};
-use crate::scenario::{Change, ChangeKind, Direction, Kick, Place};
-use crate::units::{Span, Speed};
+use crate::initial::TimedChange;
+use crate::scenario::{ChangeKind, Direction, Kick};
+use crate::units::Speed;
 use std::f64::consts::{PI, TAU};
 
 /// Roundings of some hundred steps.
 const TOL: f64 = 1e-13;
 
-fn change(t_s: f64, body: usize, what: ChangeKind) -> Change {
-    Change { at: Span::from_s(t_s), body: BodyId(body), what, place: Place::default() }
+fn change(t_s: f64, body: usize, what: ChangeKind) -> TimedChange {
+    TimedChange { t_s, body: BodyId(body), what }
 }
 
-fn gravity(t_s: f64, body: usize, on: bool) -> Change {
+fn gravity(t_s: f64, body: usize, on: bool) -> TimedChange {
     change(t_s, body, ChangeKind::Gravity { on })
 }
 
-fn kick(t_s: f64, body: usize, speed: f64, direction: Direction, about: Option<BodyId>) -> Change {
+fn kick(t_s: f64, body: usize, speed: f64, direction: Direction, about: Option<BodyId>) -> TimedChange {
     let speed = Speed::from_m_s(speed);
     change(t_s, body, ChangeKind::Kick(Kick::Along { speed, direction, about }))
 }
 
 /// A tracer on the unit circle around GM 1.
-fn circle(changes: Vec<Change>) -> InitialState {
+fn circle(changes: Vec<TimedChange>) -> InitialState {
     let mut start = initial(vec![body(1.0, [0.0; 3], [0.0; 3]), body(0.0, [1.0, 0.0, 0.0], [0.0, 1.0, 0.0])]);
     start.bodies[1].primary = Some(BodyId(0));
     start.changes = changes;
@@ -96,7 +97,7 @@ fn kicks_are_relative_to_what_they_are_about() {
     let mut start = circle(Vec::new());
     start.bodies.push(InitialBody { name: "C".into(), ..body(0.0, [0.0, 50.0, 0.0], [0.0, 0.0, 3.0]) });
     start.listed = 3;
-    let added = |change: Change| {
+    let added = |change: TimedChange| {
         let mut start = start.clone();
         start.changes = vec![change];
         at(&paths(&start, 1.0), 1, 0.0).vel - Vector3::new(0.0, 1.0, 0.0)

@@ -9,6 +9,7 @@ mod changes;
 mod contacts;
 mod orbits;
 mod relativity;
+mod softening;
 
 /// A point.
 fn body(gm_m3_s2: f64, pos: [f64; 3], vel: [f64; 3]) -> InitialBody {

@@ -1,6 +1,6 @@
 //! Changes: what is done to the model on its way.
 
-use super::BodyId;
+use super::{BodyId, EventRef};
 use crate::scenario::problem::Place;
 use crate::units::{Span, Speed};
 
@@ -8,14 +8,35 @@ use crate::units::{Span, Speed};
 /// finds the past unchanged.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Change {
-    /// When, from the scenario's start; not negative.
-    pub at: Span,
+    /// When.
+    pub at: ChangeTime,
     /// To which body.
     pub body: BodyId,
     /// What.
     pub what: ChangeKind,
     /// Where its `[[change]]` stands in the text.
     pub place: Place,
+}
+
+/// When a change is made.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum ChangeTime {
+    /// At a model time, from the scenario's start; not negative.
+    Time(Span),
+    /// When a beat starts, as the show is planned.
+    Beat {
+        /// Its place in the order of the beats.
+        beat: usize,
+        /// Model time after that; not negative.
+        after: Span,
+    },
+    /// At an event, counted from the scenario's start.
+    Event {
+        /// Which one.
+        event: EventRef,
+        /// Model time after it; negative: before it.
+        after: Span,
+    },
 }
 
 /// What is done to a body.

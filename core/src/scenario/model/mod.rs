@@ -62,7 +62,7 @@ impl Scenario {
 }
 
 /// `[physics]`. `None` leaves the choice to what the bodies bring along.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Default)]
+#[derive(Debug, Clone, Copy, PartialEq, Default)]
 pub struct Physics {
     /// First post-Newtonian relativity between all bodies; on by itself where a body is `real`.
     pub relativity: Option<bool>,
@@ -72,6 +72,9 @@ pub struct Physics {
     pub drag: Option<bool>,
     /// Whether the solar-system bodies that the file doesn't name pull on its `real` ones, unseen; on unless stated.
     pub companions: Option<bool>,
+    /// Length over which Newton's attraction is softened; `None`: bodies attract as points. Never beside relativity, oblateness,
+    /// swarms or `real` bodies.
+    pub softening: Option<Length>,
 }
 
 /// What a body is, for its drawing only.

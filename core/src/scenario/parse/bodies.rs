@@ -15,6 +15,8 @@ pub(super) struct ReadBody {
     pub(super) body: Body,
     /// The body by which this one's form is stated, how, and where that stands.
     pub(super) by: Option<Relation>,
+    /// Whether it states a radius, a wrong one included.
+    pub(super) radius_stated: bool,
     /// Where `real` stands.
     real_at: Option<At>,
     kind: Option<Kind>,
@@ -138,7 +140,8 @@ pub(super) fn read(section: &Reading<'_>, names: &Names) -> Option<ReadBody> {
         form,
         place: section.report().source().place(section.at.start),
     };
-    Some(ReadBody { body, by, real_at, kind, colour })
+    let radius_stated = section.get("radius").is_some();
+    Some(ReadBody { body, by, radius_stated, real_at, kind, colour })
 }
 
 /// The colour that is stated.

@@ -1,10 +1,13 @@
 //! `[[change]]`: what is done to bodies on the model's way.
 
 use super::super::grammar;
-use super::super::model::{BodyId, Change, ChangeKind, Direction, Form, Kick};
-use super::super::names::Names;
-use super::super::reader::Reading;
+use super::super::model::{BodyId, Change, ChangeKind, ChangeTime, Direction, Form, Kick};
+use super::super::names::{Names, nearest};
+use super::super::reader::{Field, Reading, tidy_text};
 use super::bodies::ReadBody;
+use super::events;
+use crate::units::Span;
+use crate::units::text::clip;
 
 const DIRECTIONS: &[(&str, Direction)] =
     &[("velocity", Direction::Velocity), ("outwards", Direction::Outwards)];
@@ -14,13 +17,26 @@ pub(super) fn read(
     sections: &[Reading<'_>],
     bodies: &[Option<ReadBody>],
     names: &Names,
+    beats: &[Reading<'_>],
 ) -> Option<Vec<Change>> {
-    let changes: Vec<Option<Change>> = sections.iter().map(|section| one(section, bodies, names)).collect();
+    let titles: Vec<String> = beats.iter().map(title).collect();
+    let changes: Vec<Option<Change>> =
+        sections.iter().map(|section| one(section, bodies, names, &titles)).collect();
     changes.into_iter().collect()
 }
 
-fn one(section: &Reading<'_>, bodies: &[Option<ReadBody>], names: &Names) -> Option<Change> {
-    let at = section.need("at").and_then(|field| field.not_negative());
+/// Title of a beat, or "".
+fn title(beat: &Reading<'_>) -> String {
+    beat.get("title").and_then(|field| field.item.as_str()).map(tidy_text).unwrap_or_default()
+}
+
+fn one(
+    section: &Reading<'_>,
+    bodies: &[Option<ReadBody>],
+    names: &Names,
+    titles: &[String],
+) -> Option<Change> {
+    let at = section.need("at").and_then(|field| time(&field, names, titles));
     let stated = section.stated(&grammar::CHANGES);
     if let [first, second, ..] = stated.as_slice() {
         section.report().error(
@@ -50,6 +66,64 @@ fn one(section: &Reading<'_>, bodies: &[Option<ReadBody>], names: &Names) -> Opt
     };
     let place = section.report().source().place(section.at.start);
     Some(Change { at: at?, body: body?, what: what?, place })
+}
+
+fn time(field: &Field<'_>, names: &Names, titles: &[String]) -> Option<ChangeTime> {
+    if !field.item.is_table_like() {
+        return field.not_negative().map(ChangeTime::Time);
+    }
+    let table = field.table(&grammar::CHANGE_TIME)?;
+    let stated = table.stated(&["beat", "event"]);
+    let Some(main) = stated.first() else {
+        table.error(
+            "the time of a change says neither beat nor event",
+            "state one of them, as in { event = \"periapsis of Fenn\" }",
+        );
+        return None;
+    };
+    if let Some(second) = stated.get(1) {
+        let wrong = "the time of a change has both beat and event";
+        table.report().error(&second.key_at, wrong, "state one of them");
+    }
+    let (before, after) = (table.get("before"), table.get("after"));
+    if let (Some(before), true) = (&before, after.is_some() || main.name() == "beat") {
+        let beside = if after.is_some() { "after" } else { "beat" };
+        let wrong = format!("before does not go with {beside}");
+        table.report().error(&before.key_at, wrong, "leave it out");
+    }
+    let shift = match after.or(before) {
+        None => Some(Span::default()),
+        Some(field) => field.not_negative::<Span>().map(|by| match field.name() {
+            "before" => Span::from_s(-by.s()),
+            _ => by,
+        }),
+    };
+    if main.name() == "event" {
+        let event = events::read(main, names);
+        return Some(ChangeTime::Event { event: event?, after: shift? });
+    }
+    let beat = beat(main, titles);
+    Some(ChangeTime::Beat { beat: beat?, after: shift? })
+}
+
+/// The beat that a field names by its title.
+fn beat(field: &Field<'_>, titles: &[String]) -> Option<usize> {
+    let name = tidy_text(field.text()?);
+    let mut named = titles.iter().enumerate().filter(|(_, title)| **title == name && !name.is_empty());
+    let Some((beat, _)) = named.next() else {
+        let known = titles.iter().map(String::as_str).filter(|title| !title.is_empty());
+        let remedy = match nearest(&name, known) {
+            Some(near) => format!("perhaps \"{near}\""),
+            None => "write the title of a [[beat]]".to_owned(),
+        };
+        field.error(format!("there is no beat \"{}\"", clip(&name)), remedy);
+        return None;
+    };
+    if named.next().is_some() {
+        field.error(format!("two beats are called \"{}\"", clip(&name)), "give one of them another title");
+        return None;
+    }
+    Some(beat)
 }
 
 /// Whether a body has gravity; one that is wrong has its own problem already.

@@ -26,7 +26,8 @@ pub(super) fn read(field: &Field<'_>, names: &Names) -> Option<EventRef> {
     }
 }
 
-fn event(text: &str, names: &Names) -> Result<EventRef, Fault> {
+/// The event that a text states.
+pub(super) fn event(text: &str, names: &Names) -> Result<EventRef, Fault> {
     let text = text.trim();
     let shown = clip(text);
     let Some((head, tail)) = text.split_once(" of ") else {

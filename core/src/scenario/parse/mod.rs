@@ -11,8 +11,10 @@ mod changes;
 mod clock;
 mod dates;
 mod events;
+mod extents;
 mod forms;
 mod marks;
+mod physics;
 mod relations;
 mod swarms;
 mod syntax;
@@ -21,7 +23,7 @@ mod view;
 pub use aims::QUANTITIES;
 
 use super::grammar;
-use super::model::{Form, Physics, Scenario};
+use super::model::{Form, Scenario};
 use super::names::Names;
 use super::problem::{Place, Problem, Severity};
 use super::reader::{Reading, Report};
@@ -139,13 +141,6 @@ fn read(top: &Reading<'_>) -> Option<Scenario> {
         None => Some("en".to_owned()),
     };
     let date = top.get("date").map(|field| dates::read(&field));
-    let physics = top.get("physics").and_then(|field| field.table(&grammar::PHYSICS)).map(|table| Physics {
-        relativity: table.flag("relativity"),
-        drag: table.flag("drag"),
-        oblateness: table.flag("oblateness"),
-        companions: table.flag("companions"),
-    });
-
     let mut sections = top.get("body").map(|field| field.tables(&grammar::BODY)).unwrap_or_default();
     if top.get("body").is_none() {
         top.error("the scenario has no body", "add [[body]] with its name, for one thing that moves");
@@ -170,24 +165,28 @@ fn read(top: &Reading<'_>) -> Option<Scenario> {
     let mut read: Vec<Option<bodies::ReadBody>> = sections.iter().map(|s| bodies::read(s, &names)).collect();
     relations::check(&sections, &read, &names);
     bodies::check_real(&read, date, top);
+    let physics = physics::read(top, &read, !of_swarms.is_empty());
     bodies::give_kinds(&mut read);
     bodies::give_colours(&mut read);
     let swarms = swarms::read(&of_swarms, &sections, &names);
 
+    let mut beats = top.get("beat").map(|field| field.tables(&grammar::BEAT)).unwrap_or_default();
+    cut_at(&mut beats, MAX_BEATS, "beats");
     let mut sections = top.get("change").map(|field| field.tables(&grammar::CHANGE)).unwrap_or_default();
     cut_at(&mut sections, MAX_CHANGES, "changes");
-    let changes = changes::read(&sections, &read, &names);
+    extents::check(&sections, &[("at", "event")], &read, &names);
+    let changes = changes::read(&sections, &read, &names, &beats);
 
-    let mut sections = top.get("beat").map(|field| field.tables(&grammar::BEAT)).unwrap_or_default();
     if top.get("beat").is_none() {
         top.report().note(&top.at, "the scenario has no beat", "add [[beat]] for each step of the talk");
     }
-    cut_at(&mut sections, MAX_BEATS, "beats");
     let language = language?;
-    let beats = beats::read(&sections, &beats::Around { names: &names, language: &language, date });
+    extents::check(&beats, &[("clock", "reach"), ("start", "event")], &read, &names);
+    let beats = beats::read(&beats, &beats::Around { names: &names, language: &language, date });
 
     let mut sections = top.get("aim").map(|field| field.tables(&grammar::AIM)).unwrap_or_default();
     cut_at(&mut sections, MAX_AIMS, "aims");
+    extents::check(&sections, &[("want", "event")], &read, &names);
     let forms: Vec<Option<&Form>> = read.iter().map(|b| b.as_ref().map(|b| &b.body.form)).collect();
     let aims: Option<Vec<_>> = sections.iter().map(|section| aims::read(section, &names, &forms)).collect();
 
@@ -197,7 +196,7 @@ fn read(top: &Reading<'_>) -> Option<Scenario> {
         audience: top.text_or_empty("audience"),
         language,
         date: date.flatten(),
-        physics: physics.unwrap_or_default(),
+        physics,
         bodies: read.into_iter().map(|b| b.map(|b| b.body)).collect::<Option<_>>()?,
         swarms: swarms?,
         changes: changes?,
