@@ -62,7 +62,9 @@ impl Orbit {
         found
             .into_iter()
             .map(|event| {
-                let state = eph.relative(SATELLITE, EARTH, event.t_s).expect("covered");
+                let state = eph
+                    .relative(SATELLITE, EARTH, event.t_s)
+                    .unwrap_or_else(|| panic!("{} s is not covered", event.t_s));
                 let pole = state.pos.cross(&state.vel);
                 (event, state.pos, pole)
             })

@@ -35,7 +35,7 @@ fn fly(gm: f64, from_m: f64, to_m: f64) {
         change(time_s, arrive)
     )));
     let eph = paths(&initial, 0.0, 3.0 * time_s);
-    let at = |t_s: f64| eph.relative(CRAFT, CENTRE, t_s).expect("covered");
+    let at = |t_s: f64| eph.relative(CRAFT, CENTRE, t_s).unwrap_or_else(|| panic!("{t_s} s is not covered"));
     // The centre doesn't move, so distances are exact to the rounding of some steps.
     assert_close("arrival", at(time_s).pos.norm() / to_m, 1.0, 1e-12, "");
     assert_close("half a turn", at(time_s).pos.angle(&-at(0.0).pos), 0.0, 1e-7, "rad");
