@@ -187,7 +187,9 @@ impl Trial {
     /// `None` where nothing can start from the changed number.
     fn start(number: Number, show: &Show) -> Option<Self> {
         let scenario = scenario::parse(&number.text).scenario?;
-        let initial: InitialState = resolve(&scenario).ok()?;
+        let mut initial: InitialState = resolve(&scenario).ok()?;
+        // Those that wait for a beat or an event are made when the show makes them.
+        initial.changes.clone_from(&show.initial.changes);
         let (from_s, until_s) = sight::shown_s(show);
         let mut ends_s = vec![until_s.max(0.0)];
         if from_s < 0.0 {

@@ -22,7 +22,7 @@ pub(super) fn error(show: &Show) -> Option<f64> {
             (0..gms.len()).map(|body| eph.state(BodyId(body), t_s)).collect::<Option<_>>()?;
         let pos: Vec<f64> = states.iter().flat_map(|state| <[f64; 3]>::from(state.pos)).collect();
         let vel: Vec<f64> = states.iter().flat_map(|state| <[f64; 3]>::from(state.vel)).collect();
-        Some(drift::energy(&gms, &pos, &vel))
+        Some(drift::softened_energy(&gms, forces.softening_m, &pos, &vel))
     };
     let start = energy(0.0)?;
     if start == 0.0 {
