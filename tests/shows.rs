@@ -4,6 +4,7 @@
 
 #![allow(clippy::expect_used, reason = "what a test needs and lacks fails it")]
 
+use fallaround_core::check::{Proof, Weight};
 use fallaround_core::ephemeris::events::{self, Query};
 use fallaround_core::ephemeris::osculating::osculating;
 use fallaround_core::math::float::atan2;
@@ -71,6 +72,24 @@ fn every_show_is_a_talk_of_about_ten_minutes_with_words_and_captions() {
                 "{name}, {}: {languages:?}",
                 beat.title
             );
+        }
+    }
+}
+
+#[test]
+fn every_show_is_ready_and_nothing_about_it_is_warned_of() {
+    for (name, _) in all() {
+        let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("../scenarios").join(&name);
+        let text = fs::read_to_string(&path).unwrap_or_else(|e| panic!("{}: {e}", path.display()));
+        let proven = Proof::whole(&dated(&text, NOW_UNIX_S)).unwrap_or_else(|p| panic!("{name}: {p:?}"));
+        assert!(proven.report.is_ready(), "{name}: {:#?}", proven.report.findings);
+        let warned: Vec<_> = proven.report.findings.iter().filter(|f| f.weight != Weight::Note).collect();
+        assert!(warned.is_empty(), "{name}: {warned:#?}");
+        for (index, beat) in proven.report.beats.iter().enumerate() {
+            // A hundredth of a pixel is drawn as none.
+            let off = beat.off.map_or(0.0, |off| off.px);
+            assert!(off < 0.01, "{name}, beat {}: {off} px", index + 1);
+            assert!(beat.frame_ms < 10.0, "{name}, beat {}: {} ms", index + 1, beat.frame_ms);
         }
     }
 }

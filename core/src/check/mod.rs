@@ -29,11 +29,15 @@
 //! # Ok::<(), String>(())
 //! ```
 
+mod comfort;
 mod finding;
+mod flash;
 mod motion;
 mod near;
 mod numbers;
+mod paint;
 mod reach;
+mod reading;
 mod report;
 mod second;
 mod sight;
@@ -44,9 +48,12 @@ pub use finding::{Finding, Topic, Weight};
 pub use reach::said;
 pub use report::{BeatReport, CueReport, Encounter, Lever, Report, Shift};
 
+use crate::ephemeris::SHOW_BYTES;
 use crate::scenario::Problem;
 use crate::show::{Rehearsal, Show};
+use comfort::Comfort;
 use numbers::Numbers;
+use reading::Reading;
 use second::Second;
 
 /// A check on its way, in small steps, so that whoever drives it can report progress and stop.
@@ -70,6 +77,8 @@ struct Checking {
 enum Todo {
     Second(Second),
     Numbers(Numbers),
+    Reading(Box<Reading>),
+    Comfort(Box<Comfort>),
     Done,
 }
 
@@ -142,14 +151,25 @@ impl Proof {
 }
 
 /// Shares of the whole work at which its parts begin.
-const SECOND_FROM: f64 = 0.2;
-const NUMBERS_FROM: f64 = 0.4;
+const SECOND_FROM: f64 = 0.1;
+const NUMBERS_FROM: f64 = 0.2;
+const READING_FROM: f64 = 0.4;
+const COMFORT_FROM: f64 = 0.6;
+
+/// A picture with words takes about as long as so many steps of the integrator, and a small one as so many.
+const STEPS_A_PICTURE: usize = 500;
+const STEPS_A_SMALL_PICTURE: usize = 50;
 
 impl Checking {
     fn new(show: Show, notes: Vec<Problem>) -> Self {
         let todo = Todo::Second(Second::new(&show));
-        let beats = vec![BeatReport::default(); show.plan.beats.len()];
-        Self { proven: Proven { show, notes, report: Report { beats, ..Report::default() } }, todo }
+        let report = Report {
+            beats: vec![BeatReport::default(); show.plan.beats.len()],
+            bytes: show.ephemeris.bytes(),
+            most_bytes: SHOW_BYTES,
+            ..Report::default()
+        };
+        Self { proven: Proven { show, notes, report }, todo }
     }
 
     fn work(&mut self, text: &str, max_steps: usize) {
@@ -169,6 +189,19 @@ impl Checking {
                     [report.numbers_stated, report.numbers_tried] = numbers.counts();
                     report.levers = numbers.rank(show, &mut report.beats, &mut report.findings);
                     numbers::close_calls(show, &report.encounters, &mut report.findings);
+                    self.todo = Todo::Reading(Box::new(Reading::new(show)));
+                }
+            }
+            Todo::Reading(reading) => {
+                if reading.work(show, report, (max_steps / STEPS_A_PICTURE).max(1)) {
+                    reading::memory(show, report);
+                    self.todo = Todo::Comfort(Box::new(Comfort::new(show)));
+                }
+            }
+            Todo::Comfort(comfort) => {
+                let frames = (max_steps / STEPS_A_SMALL_PICTURE).max(1);
+                if comfort.work(show, &mut report.beats, frames) {
+                    comfort::judge(show, &report.beats, &mut report.findings);
                     report.findings.sort_by_key(|finding| (finding.weight, finding.place));
                     self.todo = Todo::Done;
                 }
@@ -178,9 +211,12 @@ impl Checking {
     }
 
     fn progress(&self) -> Progress {
+        let show = &self.proven.show;
         let (from, to, within) = match &self.todo {
-            Todo::Second(second) => (SECOND_FROM, NUMBERS_FROM, second.fraction(&self.proven.show)),
-            Todo::Numbers(numbers) => (NUMBERS_FROM, 1.0, numbers.fraction()),
+            Todo::Second(second) => (SECOND_FROM, NUMBERS_FROM, second.fraction(show)),
+            Todo::Numbers(numbers) => (NUMBERS_FROM, READING_FROM, numbers.fraction()),
+            Todo::Reading(reading) => (READING_FROM, COMFORT_FROM, reading.fraction(show)),
+            Todo::Comfort(comfort) => (COMFORT_FROM, 1.0, comfort.fraction(show)),
             Todo::Done => (1.0, 1.0, 1.0),
         };
         Progress { done: matches!(self.todo, Todo::Done), fraction: from + (to - from) * within }

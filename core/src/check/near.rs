@@ -11,7 +11,7 @@ const HILL_RADII: f64 = 3.0;
 /// Nearer than this, in the sum of their radii, is near, where neither goes around the other.
 const RADII: f64 = 10.0;
 /// And where one goes around the other: it all but skims the surface.
-const SKIMMED_RADII: f64 = 1.5;
+const SKIMMED_RADII: f64 = 1.1;
 /// Nearer to each other than this part of how far they are from their primary, they have one place (balls that leave the same hand), and
 /// don't pass each other.
 const SAME_PLACE: f64 = 1e-9;

@@ -9,28 +9,27 @@ use crate::show::{Action, Clock, Cue, Plan, Show};
 
 /// A show that is run by its plan, frame by frame, with one key.
 #[derive(Debug)]
-pub(super) struct Player<'a> {
-    plan: &'a Plan,
+pub(super) struct Player {
     pub(super) clock: Clock,
 }
 
-impl<'a> Player<'a> {
-    pub(super) fn new(plan: &'a Plan) -> Self {
-        Self { plan, clock: Clock::new(plan) }
+impl Player {
+    pub(super) fn new(plan: &Plan) -> Self {
+        Self { clock: Clock::new(plan) }
     }
 
     /// A frame later; the key is pressed where a beat's time is over. False at the end of the show.
-    pub(super) fn step(&mut self) -> bool {
-        let Some(beat) = self.plan.beats.get(self.clock.beat()) else { return false };
+    pub(super) fn step(&mut self, plan: &Plan) -> bool {
+        let Some(beat) = plan.beats.get(self.clock.beat()) else { return false };
         let over = self.clock.beat_s() >= beat.lasts_s;
-        let last = self.clock.beat() + 1 >= self.plan.beats.len();
+        let last = self.clock.beat() + 1 >= plan.beats.len();
         if over && last {
             return false;
         }
         if self.clock.waiting() || over && beat.then != Then::Next {
-            self.clock.act(self.plan, Action::Next);
+            self.clock.act(plan, Action::Next);
         }
-        self.clock.advance(self.plan, FRAME_S);
+        self.clock.advance(plan, FRAME_S);
         true
     }
 }
@@ -92,7 +91,7 @@ fn late_by_clock(plan: &Plan) -> Vec<Option<f64>> {
     let mut player = Player::new(plan);
     loop {
         let before = player.clock;
-        if !player.step() {
+        if !player.step(plan) {
             return late;
         }
         let (Some(beat), Some(slot)) =

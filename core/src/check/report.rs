@@ -18,6 +18,10 @@ pub struct Report {
     pub numbers_tried: usize,
     /// The nearest that bodies come to each other while they are shown, the nearest first.
     pub encounters: Vec<Encounter>,
+    /// Memory that the show takes, bytes.
+    pub bytes: usize,
+    /// Memory that it may take, bytes.
+    pub most_bytes: usize,
 }
 
 impl Report {
@@ -40,6 +44,20 @@ pub struct BeatReport {
     pub cue: Option<CueReport>,
     /// Largest part of a turn around its primary that a body in the picture makes from one frame to the next.
     pub turns_a_frame: f64,
+    /// Time to paint its dearest picture, without a graphics card, ms.
+    pub frame_ms: f64,
+    /// Height of the smallest capitals from the back row, arcmin.
+    pub capital_arcmin: Option<f64>,
+    /// Width of the thinnest line from the back row, arcmin.
+    pub line_arcmin: Option<f64>,
+    /// Time to read the longest of its captions, s.
+    pub reading_s: f64,
+    /// How fast the view turns when it begins, at its fastest, degrees a second.
+    pub turn_deg_s: f64,
+    /// How fast the view slides when it begins, at its fastest, picture heights a second.
+    pub pan_heights_s: f64,
+    /// Largest share of ten degrees of sight that flashes more than three times in a second around its beginning.
+    pub flashing: f64,
 }
 
 /// How far a body is from where it should be.

@@ -231,3 +231,87 @@ fn a_pass_within_hill_radii_is_listed_and_a_hair_s_breadth_is_warned_of() {
     assert!(warned(500.0)[0].wrong.contains("Pell misses Brae by 0.5 km in beat 1"), "{:?}", warned(500.0));
     assert!(warned(2000.0).is_empty());
 }
+
+#[test]
+fn captions_that_are_too_long_for_their_beat_are_found() {
+    let beats = REACH.replace("at = \"30 s\"", "at = \"5 s\", lasts = \"6 s\"");
+    let caption = "caption = { en = \"Nearest, and fastest\", es = \"Cuando pasa más cerca de la estrella es cuando más rápido va, y no al revés, por más vueltas que le demos\" }\n";
+    let proven = proven(QUIET, &format!("{beats}{caption}"));
+    let finding = found(
+        &proven,
+        Topic::Reading,
+        "the caption \"es\" of beat 1 takes 10 s to read, and the beat lasts 6 s",
+    );
+    assert_eq!(finding.weight, Weight::Warning);
+    assert_eq!(about(&proven, Topic::Reading).len(), 1, "{:#?}", proven.report.findings);
+}
+
+#[test]
+fn names_without_room_are_noted() {
+    let moons: String = (0..12)
+        .map(|moon| {
+            format!(
+                "[[body]]\nname = \"A moon called {moon}\"\norbit = {{ around = \"Brae\", semi-major = \"{} km\", eccentricity = 0 }}\n",
+                300_000 + 10_000 * moon
+            )
+        })
+        .collect();
+    let proven = proven(
+        &format!("{QUIET}{moons}"),
+        "[[beat]]\ntitle = \"M\"\nclock = { pace = \"1 d/s\", lasts = \"10 s\" }\nview = { centre = \"Orla\", span = \"6 au\" }\n",
+    );
+    let finding = found(&proven, Topic::Reading, "the name of A moon called 11 has no room");
+    assert_eq!(finding.weight, Weight::Note);
+    assert!(proven.report.is_ready());
+}
+
+/// Two beats, the second with another view.
+fn moved(view: &str) -> Proven {
+    let beat = |view: &str| {
+        format!(
+            "[[beat]]\ntitle = \"V\"\nclock = {{ pace = \"1 d/s\", lasts = \"8 s\" }}\nview = {{ centre = {{ about = \"Orla\", offset = [{view} }}\n"
+        )
+    };
+    proven(QUIET, &(beat("\"0 au\", \"0 au\", \"0 au\"] }, span = \"4 au\"") + &beat(view)))
+}
+
+#[test]
+fn views_that_turn_or_slide_fast_are_found() {
+    let calm = moved("\"0.5 au\", \"0 au\", \"0 au\"] }, span = \"4 au\", turn = \"20 deg\"");
+    assert!(about(&calm, Topic::Comfort).is_empty(), "{:#?}", calm.report.findings);
+    // The easing of a move is at most 2.6 times as fast as its mean.
+    let turn = calm.report.beats[1].turn_deg_s;
+    assert!(turn > 20.0 / 1.2 && turn < 2.6 * 20.0 / 1.2, "{turn}");
+    let turned = moved("\"0 au\", \"0 au\", \"0 au\"] }, span = \"4 au\", turn = \"170 deg\"");
+    found(&turned, Topic::Comfort, "the view turns at");
+    let tilted = moved("\"0 au\", \"0 au\", \"0 au\"] }, span = \"4 au\", tilt = \"80 deg\"");
+    found(&tilted, Topic::Comfort, "the view turns at");
+    let slid = moved("\"60 au\", \"0 au\", \"0 au\"] }, span = \"4 au\"");
+    found(&slid, Topic::Comfort, "the view slides by");
+}
+
+#[test]
+fn nothing_that_the_house_draws_flashes_however_fast_keys_are_hit() {
+    // A star that fills the view of the second beat, and a veil on the way there.
+    let proven = proven(
+        QUIET,
+        "[[beat]]\ntitle = \"Far\"\nclock = { pace = \"1 d/s\", lasts = \"8 s\" }\nview = { centre = \"Brae\", span = \"40000 km\" }\n\
+         [[beat]]\ntitle = \"Star\"\nstart = { time = \"9 yr\" }\nclock = { pace = \"1 d/s\", lasts = \"8 s\" }\nview = { centre = \"Orla\", span = \"1500000 km\" }\n",
+    );
+    assert!(proven.report.beats.iter().all(|beat| beat.flashing == 0.0), "{:#?}", proven.report.beats);
+}
+
+#[test]
+fn a_show_near_its_bound_of_memory_and_dear_frames_are_found() {
+    let mut proven = proven(QUIET, REACH);
+    assert!(proven.report.bytes > 0 && proven.report.beats[0].frame_ms > 0.3, "{:#?}", proven.report.beats);
+    proven.report.bytes = proven.report.most_bytes * 4 / 5;
+    reading::memory(&proven.show, &mut proven.report);
+    found(&proven, Topic::Cost, "80 % of the memory");
+    let sliced = self::proven(
+        QUIET,
+        "[[beat]]\ntitle = \"S\"\nclock = { span = \"2 periods of Brae\", lasts = \"30 s\" }\nview = { centre = \"Orla\", span = \"2.4 au\" }\n\
+         marks = [{ sector = \"Brae\", every = \"10 d\" }, { sector = \"Fenn\", every = \"10 d\" }, \"trail of Brae\", \"trail of Fenn\"]\n",
+    );
+    found(&sliced, Topic::Cost, "ms to paint without a graphics card");
+}

@@ -12,7 +12,7 @@ const LEVERS: usize = 5;
 
 /// The keys of a report, in the order in which they are written.
 #[cfg(test)]
-pub(super) const KEYS: [&str; 18] = [
+pub(super) const KEYS: [&str; 19] = [
     "beats",
     "bodies",
     "bytes",
@@ -25,6 +25,7 @@ pub(super) const KEYS: [&str; 18] = [
     "from_s",
     "holds",
     "lasts_s",
+    "most_bytes",
     "numbers",
     "problems",
     "ready",
@@ -70,7 +71,8 @@ pub(super) fn of(file: &str, shown: &Shown) -> Value {
         "from_s": show.ephemeris.from_s(),
         "until_s": show.ephemeris.until_s(),
         "steps": show.ephemeris.forward().len() + show.ephemeris.backward().len(),
-        "bytes": show.ephemeris.bytes(),
+        "bytes": report.bytes,
+        "most_bytes": report.most_bytes,
         "energy_error": shown.energy_error,
         "beats": beats,
         "contacts": contacts.collect::<Vec<_>>(),
@@ -132,6 +134,13 @@ fn beat(show: &Show, index: usize, report: &BeatReport) -> Value {
         "off": report.off.map(|off| shift(show, &off)),
         "off_m": report.off_m,
         "turns_a_frame": report.turns_a_frame,
+        "frame_ms": report.frame_ms,
+        "capital_arcmin": report.capital_arcmin,
+        "line_arcmin": report.line_arcmin,
+        "reading_s": report.reading_s,
+        "turn_deg_s": report.turn_deg_s,
+        "pan_heights_s": report.pan_heights_s,
+        "flashing": report.flashing,
     })
 }
 

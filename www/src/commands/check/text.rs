@@ -2,7 +2,7 @@
 
 use std::fmt::Write as _;
 
-use fallaround_core::check::{Finding, Report, said};
+use fallaround_core::check::{BeatReport, Finding, Report, said};
 use fallaround_core::show::Show;
 use fallaround_core::units::number;
 
@@ -63,37 +63,88 @@ fn whole(shown: &Shown, line: &mut impl FnMut(String)) {
     line(format!("  bodies       {}", bodies.join(", ")));
     line(format!("  length       {} in {} beats", minutes(show.plan.lasts_s()), show.plan.beats.len()));
     line(format!(
-        "  model time   {} to {}, {} steps, {:.1} MB",
+        "  model time   {} to {}, {} steps",
         time(show.ephemeris.from_s()),
         time(show.ephemeris.until_s()),
-        show.ephemeris.forward().len() + show.ephemeris.backward().len(),
-        show.ephemeris.bytes() as f64 / 1e6
+        show.ephemeris.forward().len() + show.ephemeris.backward().len()
     ));
     line(match shown.energy_error {
         Some(error) => format!("  energy       kept to {error:.1e} of it"),
         None => "  energy       not a measure here (contact, change, relativity, oblateness, drag, or nothing massive moves)".to_owned(),
     });
-    let off = report.beats.iter().enumerate().filter_map(|(beat, report)| Some((beat, report.off?)));
-    if let Some((beat, off)) = off.max_by(|a, b| a.1.px.total_cmp(&b.1.px)) {
+    let worst = |of: fn(&BeatReport) -> f64| {
+        // The first of equals.
+        let beats = report.beats.iter().map(of).enumerate().rev();
+        beats.max_by(|a, b| a.1.total_cmp(&b.1)).unwrap_or_default()
+    };
+    let (beat, _) = worst(|beat| beat.off.map_or(0.0, |off| off.px));
+    if let Some(off) = report.beats.get(beat).and_then(|beat| beat.off) {
+        let body = name(show, off.body);
         line(format!(
-            "  exactness    {} is drawn {} off at most, in beat {} (by a second run in other steps)",
-            name(show, off.body),
+            "  exactness    {body} is drawn {} off at most, in beat {} (by a second run in shorter steps)",
             px(off.px),
             beat + 1
         ));
     }
-    if let Some(lever) = report.levers.first()
-        && let Some((beat, shift)) = lever.worst()
-    {
-        line(format!(
-            "  last digits  a change by 1e-9 of {} of {} moves {} by {}, in beat {}: the most of {}",
+    line(last_digits(show, report));
+    let (beat, ms) = worst(|beat| beat.frame_ms);
+    line(format!(
+        "  cost         {:.1} MB of {:.0}; frames take about {ms:.1} ms without a graphics card at most, in beat {}",
+        report.bytes as f64 / 1e6,
+        report.most_bytes as f64 / 1e6,
+        beat + 1
+    ));
+    let least = |of: fn(&BeatReport) -> Option<f64>| report.beats.iter().filter_map(of).reduce(f64::min);
+    let size = |size: Option<f64>| size.map_or_else(|| "none".to_owned(), |size| format!("{size:.1} arcmin"));
+    line(format!(
+        "  back row     smallest capitals {}, thinnest lines {}, from five picture heights away",
+        size(least(|beat| beat.capital_arcmin)),
+        size(least(|beat| beat.line_arcmin))
+    ));
+    let (turning, turn_deg_s) = worst(|beat| beat.turn_deg_s);
+    let (sliding, pan_heights_s) = worst(|beat| beat.pan_heights_s);
+    let mut moves = Vec::new();
+    if turn_deg_s > 0.0 {
+        moves.push(format!("turns by at most {turn_deg_s:.0} degrees a second, into beat {}", turning + 1));
+    }
+    if pan_heights_s > 0.0 {
+        moves.push(format!(
+            "slides by at most {pan_heights_s:.1} picture heights a second, into beat {}",
+            sliding + 1
+        ));
+    }
+    let moves = if moves.is_empty() { "stays as it is".to_owned() } else { moves.join(" and ") };
+    line(format!("  comfort      the view {moves}"));
+    let (beat, share) = worst(|beat| beat.flashing);
+    line(if share == 0.0 {
+        "  flashes      none, however fast the keys are hit".to_owned()
+    } else {
+        format!(
+            "  flashes      at most {:.0} % of ten degrees of sight, in beat {}, where 25 % are allowed",
+            100.0 * share,
+            beat + 1
+        )
+    });
+}
+
+fn last_digits(show: &Show, report: &Report) -> String {
+    if report.numbers_stated == 0 {
+        return "  last digits  no numbers are stated that could be changed".to_owned();
+    }
+    let worst = report.levers.first().and_then(|lever| Some((lever, lever.worst()?)));
+    match worst {
+        Some((lever, (beat, shift))) => format!(
+            "  last digits  a change of {} of {} by 1e-9 of it moves {} by {} at the end of beat {}: the most of {}",
             lever.quantity,
             name(show, lever.body),
             name(show, shift.body),
             px(shift.px),
             beat + 1,
             counted(report)
-        ));
+        ),
+        None => {
+            format!("  last digits  nothing is in the picture at the ends of beats ({})", counted(report))
+        }
     }
 }
 
@@ -109,14 +160,14 @@ fn beats(show: &Show, report: &Report, line: &mut impl FnMut(String)) {
     let titles = show.scenario.beats.iter().map(|beat| beat.title.chars().count());
     let width = titles.max().unwrap_or(0).max(4);
     line(format!(
-        "  {:<4} {:>5}  {:<width$}  {:>12}  {:>12}  {:>14}  {:>14}",
-        "beat", "at", "title", "model from", "until", "off by, px", "1e-9 moves, px"
+        "  {:<4} {:>5}  {:<width$}  {:>12}  {:>12}  {:>10}  {:>14}  {:>9}",
+        "beat", "at", "title", "model from", "until", "off by, px", "1e-9 moves, px", "frame, ms"
     ));
     let all = show.scenario.beats.iter().zip(&show.plan.beats).zip(&report.beats);
     for (index, ((beat, planned), report_of)) in all.enumerate() {
         let moved = report_of.lever.and_then(|lever| *report.levers.get(lever)?.shifts.get(index)?);
         line(format!(
-            "  {:>4} {:>5}  {:<width$}  {:>12}  {:>12}  {:>14}  {:>14}",
+            "  {:>4} {:>5}  {:<width$}  {:>12}  {:>12}  {:>10}  {:>14}  {:>9.1}",
             index + 1,
             minutes(planned.show_s),
             beat.title,
@@ -124,6 +175,7 @@ fn beats(show: &Show, report: &Report, line: &mut impl FnMut(String)) {
             time(planned.until_s),
             report_of.off.map_or_else(String::new, |off| pixels(off.px)),
             moved.map_or_else(String::new, |moved| pixels(moved.px)),
+            report_of.frame_ms
         ));
         if let Some(cue) = &report_of.cue {
             line(format!(
