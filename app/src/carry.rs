@@ -3,7 +3,7 @@
 //! Reading, resolving and planning are exact functions of the text and the ephemeris, and quick; only the
 //! ephemeris takes long to make. So it alone travels.
 
-use fallaround_core::ephemeris::{Chunk, ChunkError, Ephemeris, Mark};
+use fallaround_core::ephemeris::{ChunkError, Ephemeris};
 use fallaround_core::resolve;
 use fallaround_core::scenario;
 use fallaround_core::show::{Limits, Need, Show, planner};
@@ -33,19 +33,17 @@ impl std::error::Error for CarryError {}
 
 /// The ephemeris of a show, to be sent.
 pub fn pack(show: &Show) -> Vec<f64> {
-    show.ephemeris.chunk_since(Mark::default()).into_numbers()
+    show.ephemeris.to_numbers()
 }
 
 /// The show of a text and of the ephemeris that was made from it.
 ///
 /// # Errors
 /// [`CarryError`] when the two don't belong together.
-pub fn unpack(text: &str, numbers: Vec<f64>) -> Result<Show, CarryError> {
+pub fn unpack(text: &str, numbers: &[f64]) -> Result<Show, CarryError> {
     let scenario = scenario::parse(text).scenario.ok_or(CarryError::OtherText)?;
     let Ok(initial) = resolve::resolve(&scenario) else { return Err(CarryError::OtherText) };
-    let chunk = Chunk::from_numbers(numbers).map_err(CarryError::Numbers)?;
-    let mut ephemeris = Ephemeris::default();
-    ephemeris.append(&chunk).map_err(CarryError::Numbers)?;
+    let ephemeris = Ephemeris::from_numbers(numbers).map_err(CarryError::Numbers)?;
     if ephemeris.bodies() != initial.bodies.len() {
         return Err(CarryError::OtherText);
     }

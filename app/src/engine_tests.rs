@@ -39,7 +39,7 @@ fn a_show_arrives_whole_and_its_progress_never_goes_back() {
     let FromWorker::Rehearsed { run: 3, fingerprint } = &last.message else { panic!("{:?}", last.message) };
     let whole = Rehearsal::whole(SHIPPED).unwrap();
     assert_eq!(*fingerprint, Fingerprint::of(SHIPPED, &whole).to_string());
-    let carried = carry::unpack(SHIPPED, last.numbers.clone()).unwrap();
+    let carried = carry::unpack(SHIPPED, &last.numbers).unwrap();
     assert_eq!(carried.plan, whole.plan);
     assert_eq!(carried.initial, whole.initial);
     assert_eq!(carried.ephemeris, whole.ephemeris);

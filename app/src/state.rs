@@ -297,7 +297,7 @@ impl State {
     /// Puts a rehearsed show on the stage.
     fn raise(&self, offer: Offer) {
         let Offer { pending: Pending { source, at, .. }, fingerprint, numbers } = offer;
-        let show = match crate::carry::unpack(&source.text, numbers) {
+        let show = match crate::carry::unpack(&source.text, &numbers) {
             Ok(show) => show,
             Err(why) => {
                 return self.lay_open(Trouble::whole(source.name, why.to_string(), "load the page again"));

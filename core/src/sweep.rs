@@ -1,6 +1,6 @@
 //! Sectors: the area that the line from a centre to a body covers, by quadrature of the areal velocity.
 //!
-//! Nothing is counted in pixels or cut into triangles. In one step of the ephemeris position and velocity are
+//! Nothing is counted in pixels or cut into triangles. In one piece of the ephemeris position and velocity are
 //! polynomials of degree 9 and 8, so the areal velocity of a motion in a plane is one of degree 17, which nine points
 //! of Gauss integrate exactly.
 
@@ -44,14 +44,12 @@ pub fn area_m2(eph: &Ephemeris, body: BodyId, about: BodyId, from_s: f64, until_
 
 /// The area on one track; `near_s` is the end of the interval nearer to time 0.
 fn on_track(track: &Track, body: BodyId, about: BodyId, near_s: f64, far_s: f64) -> Option<f64> {
-    let (first, last) = (track.find(near_s)?, track.find(far_s)?);
     let mut sum = 0.0;
-    for index in first..=last {
-        let (start_s, step_s) = track.step(index)?;
-        let (a, b) = (track.numbers(index, body.0)?, track.numbers(index, about.0)?);
+    for (start_s, step_s) in track.stretches(&[body.0, about.0], near_s, far_s) {
+        let (a, b) = (track.numbers(body.0, start_s, step_s)?, track.numbers(about.0, start_s, step_s)?);
         // Of the very numbers, not of the states, so that nothing of their size is lost twice.
         let mut apart = [0.0; crate::ephemeris::PER_BODY];
-        for ((d, a), b) in apart.iter_mut().zip(a).zip(b) {
+        for ((d, a), b) in apart.iter_mut().zip(&a).zip(&b) {
             *d = a - b;
         }
         let part = |t_s: f64| ((t_s - start_s) / step_s).clamp(0.0, 1.0);

@@ -2,27 +2,30 @@
 //!
 //! Each step of the integrator leaves its own polynomial: acceleration as a polynomial of degree 7 in the
 //! fraction of the step (Everhart 1985), so positions and velocities between steps are as exact as the step
-//! itself. Seeking is a binary search.
+//! itself. Of each body, steps are joined to longer pieces of the same form where that changes no more than roundings
+//! do. Seeking is a binary search.
 
 use crate::Vector3;
 use crate::scenario::BodyId;
 
 mod changes;
-pub mod chunk;
 pub mod events;
+mod flat;
 pub mod osculating;
 pub mod propagation;
 mod run;
 #[cfg(test)]
 mod tests;
+mod thin;
 mod touch;
 pub mod track;
 
 pub use crate::integrate::PER_BODY;
 pub use changes::Switch;
-pub use chunk::{Chunk, ChunkError, Mark};
+pub use flat::ChunkError;
 pub use propagation::{Propagation, SHOW_BYTES, Stopped, Why, states_at};
-pub use track::Track;
+pub use thin::Tolerance;
+pub use track::{Piece, Track};
 
 /// Where a body is and how it moves: m and m/s, barycentric.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -63,7 +66,7 @@ pub struct Contact {
 
 /// The paths of all bodies over an interval that contains time 0.
 ///
-/// A body that rests on another, or became part of it, goes on in every step with that other body.
+/// A body that rests on another, or became part of it, goes on with that other body.
 #[derive(Debug, Clone, PartialEq, Default)]
 pub struct Ephemeris {
     gms: Vec<f64>,
@@ -159,22 +162,22 @@ impl Ephemeris {
         })
     }
 
-    /// The steps from time 0 on.
+    /// The paths from time 0 on.
     pub fn forward(&self) -> &Track {
         &self.forward
     }
 
-    /// The steps from time 0 back.
+    /// The paths from time 0 back.
     pub fn backward(&self) -> &Track {
         &self.backward
     }
 
-    /// The steps from time 0 on, to be added to.
+    /// The paths from time 0 on, to be added to.
     pub fn forward_mut(&mut self) -> &mut Track {
         &mut self.forward
     }
 
-    /// The steps from time 0 back, to be added to.
+    /// The paths from time 0 back, to be added to.
     pub fn backward_mut(&mut self) -> &mut Track {
         &mut self.backward
     }
@@ -187,6 +190,11 @@ impl Ephemeris {
     /// Notes that the gravity of a body was switched.
     pub fn push_switch(&mut self, switch: Switch) {
         self.switches.push(switch);
+    }
+
+    /// How far at most its paths lie from the integrated ones.
+    pub const fn tolerance(&self) -> Tolerance {
+        Tolerance::ROUNDING
     }
 
     /// Memory held, bytes.

@@ -1,6 +1,7 @@
 //! Growing an ephemeris: from an initial state, both ways in time, a few steps at a time.
 
 use super::run::Run;
+use super::thin::{Thinner, Tolerance};
 use super::track::evaluate;
 use super::{Ephemeris, State};
 use crate::initial::InitialState;
@@ -67,6 +68,8 @@ pub struct Propagation {
     ephemeris: Ephemeris,
     forward: Run,
     backward: Run,
+    forward_thinner: Thinner,
+    backward_thinner: Thinner,
     forward_stopped: Option<Stopped>,
     backward_stopped: Option<Stopped>,
     most_bytes: usize,
@@ -80,11 +83,14 @@ impl Propagation {
 
     /// The same, with another bound on its memory, bytes.
     pub fn with_most_bytes(initial: &InitialState, most_bytes: usize) -> Self {
+        let thinner = Thinner::new(initial.bodies.len(), Tolerance::ROUNDING);
         Self {
             most_bytes,
             ephemeris: Ephemeris::new(initial.bodies.iter().map(|body| body.gm_m3_s2).collect()),
             forward: Run::new(initial, 1.0),
             backward: Run::new(initial, -1.0),
+            forward_thinner: thinner.clone(),
+            backward_thinner: thinner,
             forward_stopped: None,
             backward_stopped: None,
             initial: initial.clone(),
@@ -130,10 +136,10 @@ impl Propagation {
     }
 
     fn step(&mut self, backward: bool) -> Result<(), Stopped> {
-        let (run, stopped) = if backward {
-            (&mut self.backward, &mut self.backward_stopped)
+        let (run, thinner, stopped) = if backward {
+            (&mut self.backward, &mut self.backward_thinner, &mut self.backward_stopped)
         } else {
-            (&mut self.forward, &mut self.forward_stopped)
+            (&mut self.forward, &mut self.forward_thinner, &mut self.forward_stopped)
         };
         if let Some(stopped) = stopped {
             return Err(stopped.clone());
@@ -147,9 +153,13 @@ impl Propagation {
             *stopped = Some(why.clone());
             why
         })?;
+        let track = if backward { self.ephemeris.backward_mut() } else { self.ephemeris.forward_mut() };
         if step.step_s != 0.0 {
-            let track = if backward { self.ephemeris.backward_mut() } else { self.ephemeris.forward_mut() };
             track.push(step.start_s, step.step_s, run.numbers());
+            thinner.grow(track);
+        }
+        if step.cut {
+            thinner.close(track, run.hosts());
         }
         if let Some(contact) = step.contact {
             self.ephemeris.push_contact(contact);

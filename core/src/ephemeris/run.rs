@@ -33,6 +33,8 @@ pub(super) struct Step {
     pub(super) step_s: f64,
     pub(super) contact: Option<Contact>,
     pub(super) switches: Vec<Switch>,
+    /// Whether the motion goes on otherwise from its end: a contact, or a change.
+    pub(super) cut: bool,
 }
 
 /// The integration in one direction of time.
@@ -117,6 +119,12 @@ impl Run {
         &self.numbers
     }
 
+    /// On which body each body rests; itself where it moves freely.
+    pub(super) fn hosts(&self) -> impl Iterator<Item = usize> {
+        let host = |body| self.at_rest.iter().find(|rest| rest.body == body).map_or(body, |rest| rest.host);
+        (0..self.gms.len()).map(host)
+    }
+
     /// Starts from states of the free bodies.
     fn set_off(&mut self, initial: &InitialState, t_s: f64, states: &[State], first_step_s: f64) {
         self.pos.clear();
@@ -156,7 +164,7 @@ impl Run {
         let change_s = initial.changes.get(self.changed).map(|change| change.t_s);
         if let Some(t_s) = change_s.filter(|&t_s| t_s <= start_s) {
             let switches = self.change(initial, t_s, self.states(), self.radau.step_s());
-            return Ok(Step { start_s, step_s: 0.0, contact: None, switches });
+            return Ok(Step { start_s, step_s: 0.0, contact: None, switches, cut: true });
         }
         self.radau.state(&mut self.pos, &mut self.vel);
         if let Some(longest_s) = self.field.longest_step_s(&self.pos, &self.vel) {
@@ -174,19 +182,25 @@ impl Run {
             let Some(change_s) = change_s.filter(|&change_s| change_s < start_s + whole_s) else {
                 self.spread();
                 self.radau.finish();
-                return Ok(Step { start_s, step_s: whole_s, contact: None, switches: Vec::new() });
+                return Ok(Step {
+                    start_s,
+                    step_s: whole_s,
+                    contact: None,
+                    switches: Vec::new(),
+                    cut: false,
+                });
             };
             let step_s = change_s - start_s;
             let states = self.cut(whole_s, step_s / whole_s);
             let switches = self.change(initial, change_s, states, whole_s);
-            return Ok(Step { start_s, step_s, contact: None, switches });
+            return Ok(Step { start_s, step_s, contact: None, switches, cut: true });
         };
         let step_s = t_s - start_s;
         let mut states = self.cut(whole_s, step_s / whole_s);
         let mut contact = self.collide(initial, i, j, &mut states);
         contact.t_s = if whole_s < 0.0 && t_s >= 0.0 { JUST_BEFORE_START_S } else { t_s };
         self.set_off(initial, t_s, &states, whole_s);
-        Ok(Step { start_s, step_s, contact: Some(contact), switches: Vec::new() })
+        Ok(Step { start_s, step_s, contact: Some(contact), switches: Vec::new(), cut: true })
     }
 
     /// Ends the step at a part of it, and gives the states there.

@@ -74,13 +74,11 @@ impl fmt::Display for Fingerprint {
 }
 
 fn put_track(hash: &mut Sha256, track: &Track, bodies: usize) {
-    put_count(hash, track.len());
-    for index in 0..track.len() {
-        if let Some((start_s, step_s)) = track.step(index) {
-            put(hash, &[start_s, step_s]);
-        }
-        for body in 0..bodies {
-            put(hash, track.numbers(index, body).unwrap_or_default());
+    for body in 0..bodies {
+        put_count(hash, track.pieces(body));
+        for piece in (0..track.pieces(body)).filter_map(|index| track.piece(body, index)) {
+            put(hash, &[piece.start_s, piece.step_s]);
+            put(hash, piece.numbers);
         }
     }
 }

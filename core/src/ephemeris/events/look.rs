@@ -97,6 +97,20 @@ impl Look {
         }
     }
 
+    /// The bodies looked at: so many of these.
+    pub(super) const fn bodies(&self) -> ([usize; 3], usize) {
+        match *self {
+            Self::Extreme { body, other, .. }
+            | Self::Node { body, other, .. }
+            | Self::Crossing { body, other, .. }
+            | Self::Station { body, observer: other } => ([body, other, other], 2),
+            Self::Alignment { body, observer, star, .. }
+            | Self::Transit { body, observer, star, .. }
+            | Self::Elongation { body, observer, star } => ([body, observer, star], 3),
+            Self::Shadow { body, caster, star, .. } => ([body, caster, star], 3),
+        }
+    }
+
     /// Whether one of the two rests on the other, or both on the same body.
     pub(super) fn at_rest(&self, eph: &Ephemeris, t_s: f64) -> bool {
         let (a, b) = match *self {

@@ -239,7 +239,8 @@ fn search(
         unit: look.unit(),
     };
     let mut last: Option<Sight> = None;
-    for step in steps(eph, from_s, until_s) {
+    let (bodies, count) = look.bodies();
+    for step in steps(eph, &bodies[..count], from_s, until_s) {
         if look.at_rest(eph, step.at(0.5)) {
             continue;
         }

@@ -1,4 +1,4 @@
-//! The steps of an ephemeris in order of time, and the relative motion of two bodies in one of them.
+//! The steps in which some bodies of an ephemeris keep their polynomials, in order of time, and the relative motion of two of them.
 
 use super::roots::Poly;
 use crate::Vector3;
@@ -8,11 +8,10 @@ use crate::ephemeris::{Ephemeris, PER_BODY, Track};
 /// seen from both sides, never from none.
 pub(super) const MARGIN: f64 = 1e-6;
 
-/// One step of a track.
+/// A stretch of a track in which the bodies looked at keep their polynomials.
 #[derive(Debug, Clone, Copy)]
 pub(super) struct Step<'a> {
     track: &'a Track,
-    index: usize,
     pub(super) start_s: f64,
     pub(super) step_s: f64,
 }
@@ -30,8 +29,8 @@ impl Step<'_> {
 
     /// Motion of a body relative to another as a polynomial of the fraction of the step.
     pub(super) fn relative(&self, body: usize, about: usize) -> Option<Relative> {
-        let a = self.track.numbers(self.index, body)?;
-        let b = self.track.numbers(self.index, about)?;
+        let a = self.track.numbers(body, self.start_s, self.step_s)?;
+        let b = self.track.numbers(about, self.start_s, self.step_s)?;
         let t = self.step_s;
         let mut c = [[0.0; DEGREE + 1]; 3];
         for (axis, c) in c.iter_mut().enumerate() {
@@ -140,22 +139,20 @@ fn derivative(c: &[f64; DEGREE + 1]) -> [f64; DEGREE] {
     std::array::from_fn(|k| (k + 1) as f64 * c[k + 1])
 }
 
-/// The steps that cover an interval, in order of time.
-pub(super) fn steps(eph: &Ephemeris, from_s: f64, until_s: f64) -> impl Iterator<Item = Step<'_>> {
+/// The steps of some bodies that cover an interval, in order of time.
+pub(super) fn steps<'a>(
+    eph: &'a Ephemeris,
+    bodies: &'a [usize],
+    from_s: f64,
+    until_s: f64,
+) -> impl Iterator<Item = Step<'a>> {
     let (forward, backward) = (eph.forward(), eph.backward());
-    let back = if from_s < 0.0 { range(backward, until_s.min(0.0), from_s) } else { 0..0 };
-    let on = if until_s >= 0.0 { range(forward, from_s.max(0.0), until_s) } else { 0..0 };
-    let step =
-        |track: &'_ Track, index: usize| track.step(index).map(|(start, length)| (start, length, index));
-    let back = back.rev().filter_map(move |i| step(backward, i)).map(move |s| (backward, s));
-    let on = on.filter_map(move |i| step(forward, i)).map(move |s| (forward, s));
-    back.chain(on).map(|(track, (start_s, step_s, index))| Step { track, index, start_s, step_s })
-}
-
-/// Indices of the steps between two instants, the first nearer to 0.
-fn range(track: &Track, near_s: f64, far_s: f64) -> std::ops::Range<usize> {
-    match (track.find(near_s), track.find(far_s)) {
-        (Some(first), Some(last)) if near_s.abs() <= track.end_s().abs() => first..last + 1,
-        _ => 0..0,
-    }
+    let step = |track: &'a Track| move |(start_s, step_s)| Step { track, start_s, step_s };
+    let back: Vec<Step<'a>> = if from_s < 0.0 {
+        backward.stretches(bodies, until_s.min(0.0), from_s).map(step(backward)).collect()
+    } else {
+        Vec::new()
+    };
+    let on = (until_s >= 0.0).then(|| forward.stretches(bodies, from_s.max(0.0), until_s).map(step(forward)));
+    back.into_iter().rev().chain(on.into_iter().flatten())
 }

@@ -10,6 +10,7 @@ mod contacts;
 mod orbits;
 mod relativity;
 mod softening;
+mod thin;
 
 /// A point.
 fn body(gm_m3_s2: f64, pos: [f64; 3], vel: [f64; 3]) -> InitialBody {
