@@ -1,9 +1,11 @@
 //! Integration of the equations of motion.
 
 pub mod drift;
+pub mod long_run;
 pub mod radau;
 mod spacings;
 pub mod wisdom_holman;
 
+pub use long_run::LongRun;
 pub use radau::{PER_BODY, Radau, StepTooSmall};
 pub use wisdom_holman::WisdomHolman;

@@ -152,6 +152,11 @@ impl WisdomHolman {
         self.start_s + self.steps * self.step_s
     }
 
+    /// Until when no trouble ahead can be felt yet, s: a few steps before the end of the last, as far as [`Trouble`] would take it back.
+    pub fn sure_until_s(&self) -> f64 {
+        self.start_s + (self.steps - BACK).max(0.0) * self.step_s
+    }
+
     /// Length of the steps, s; negative where time goes back.
     pub const fn step_s(&self) -> f64 {
         self.step_s
@@ -168,7 +173,7 @@ impl WisdomHolman {
         self.drift(way)?;
         let noticed = self.kick.prepare(h, true, &mut self.rows);
         if (noticed.near > 0 || noticed.steepest > STEEPEST)
-            && let Some(trouble) = self.look(noticed.steepest)
+            && let Some(trouble) = self.trouble_within(0.5)
         {
             self.kick.leave(h, &mut self.rows);
             self.drift(-way)?;
@@ -209,8 +214,8 @@ impl WisdomHolman {
         self.state_after(0.0, pos, vel)
     }
 
-    /// The same, some seconds after the end of the last step (before it, where negative): by one step of that length. It may be as
-    /// long as a step, and does not move on.
+    /// The same, some seconds after the end of the last step, by one step of that length, which may be as long as a step; or some
+    /// seconds before it, by unmaking steps. Nothing of the run itself changes.
     ///
     /// # Errors
     /// [`Trouble::Lost`] when a body meets the centre.
@@ -219,16 +224,19 @@ impl WisdomHolman {
         if self.kicked {
             self.drift_shown(0.5 * self.step_s)?;
         }
+        let t_s = self.t_s() + dt_s;
+        let mut dt_s = dt_s;
+        while dt_s / self.step_s <= -1.0 {
+            self.step_shown(-self.step_s)?;
+            dt_s += self.step_s;
+        }
         self.correct(-1.0, self.step_s)?;
         if dt_s != 0.0 {
             self.correct(1.0, dt_s)?;
-            self.drift_shown(0.5 * dt_s)?;
-            self.kick.prepare(dt_s, true, &mut self.shown);
-            self.kick.give(dt_s, &mut self.shown);
-            self.drift_shown(0.5 * dt_s)?;
+            self.step_shown(dt_s)?;
             self.correct(-1.0, dt_s)?;
         }
-        self.write(self.t_s() + dt_s, pos, vel);
+        self.write(t_s, pos, vel);
         Ok(())
     }
 
@@ -274,6 +282,13 @@ impl WisdomHolman {
             .map_err(|Lost(place)| Trouble::Lost { body: self.planets[place] })
     }
 
+    fn step_shown(&mut self, h_s: f64) -> Result<(), Trouble> {
+        self.drift_shown(0.5 * h_s)?;
+        self.kick.prepare(h_s, true, &mut self.shown);
+        self.kick.give(h_s, &mut self.shown);
+        self.drift_shown(0.5 * h_s)
+    }
+
     /// Takes what is shown from the true state to that of steps of `h_s`, or back where `sign` is -1.
     fn correct(&mut self, sign: f64, h_s: f64) -> Result<(), Trouble> {
         corrector::kicks(sign, |place, length| {
@@ -310,16 +325,17 @@ impl WisdomHolman {
         });
     }
 
-    /// What is the matter, if anything is: looks at each pair along its straight way through half a step both ways.
+    /// What is the matter within so many steps both ways, if anything is, with each pair on its straight way.
     #[cold]
-    fn look(&self, steepest: f64) -> Option<Trouble> {
+    pub(super) fn trouble_within(&self, steps: f64) -> Option<Trouble> {
         let n = self.planets.len();
-        if steepest > STEEPEST {
-            let distance = |i: usize| dot(self.rows.pos_of(i), self.rows.pos_of(i));
-            let nearest = (0..n).min_by(|&a, &b| distance(a).total_cmp(&distance(b)))?;
+        let distance = |i: usize| dot(self.rows.pos_of(i), self.rows.pos_of(i)).sqrt();
+        let nearest = (0..n).min_by(|&a, &b| distance(a).total_cmp(&distance(b)))?;
+        let r = distance(nearest);
+        if self.step_s * self.step_s * self.gms[nearest] > STEEPEST * r * r * r {
             return Some(Trouble::Steep { body: self.planets[nearest] });
         }
-        let half_s = 0.5 * self.step_s.abs();
+        let half_s = steps * self.step_s.abs();
         for i in 0..n {
             for j in i + 1..n {
                 let minus = |a: [f64; 3], b: [f64; 3]| [a[0] - b[0], a[1] - b[1], a[2] - b[2]];
