@@ -23,7 +23,11 @@ const LAST_CORRECTION: f64 = 1e-9;
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub(super) struct Lost(pub(super) usize);
 
+/// What stands in `done` for a body that is lost.
+pub(super) const LOST: f64 = 2.0;
+
 /// Moves bodies on by `h_s` seconds. `gms` are those of their motions about the centre, `done` is room for a number for each.
+/// One that is lost stays where it is; the first of them is told.
 ///
 /// `slowing` is the part of `β = 2 GM / r - v²` by which time runs slower along the conic, s²/m²: 0 for Newton.
 pub(super) fn drift(
@@ -38,12 +42,14 @@ pub(super) fn drift(
     if good == gms.len() {
         return Ok(());
     }
+    let mut first = Ok(());
     for body in 0..gms.len() {
-        if done[body] == 0.0 {
-            slow(body, h_s, slowing, gms[body], rows).ok_or(Lost(body))?;
+        if done[body] == 0.0 && slow(body, h_s, slowing, gms[body], rows).is_none() {
+            done[body] = LOST;
+            first = first.and(Err(Lost(body)));
         }
     }
-    Ok(())
+    first
 }
 
 /// One body, by the search that always ends.

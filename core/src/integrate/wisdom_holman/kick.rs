@@ -121,6 +121,34 @@ impl Kick {
         self.shares.len()
     }
 
+    /// One axis of the planets' places at the kick that was worked out last, m.
+    pub(super) fn planets(&self, axis: usize) -> &[f64] {
+        &self.around[axis][..self.shares.len()]
+    }
+
+    /// GM of a planet, m³/s².
+    pub(super) fn gm(&self, planet: usize) -> f64 {
+        self.gms[planet]
+    }
+
+    /// By how much the kick that was worked out last shifts all, m.
+    pub(super) fn shift(&self) -> [f64; 3] {
+        self.shift
+    }
+
+    /// One axis of σ = Σ m v / m₀: the centre moves the other way, m/s.
+    pub(super) fn sigma(&self, axis: usize, rows: &Rows) -> f64 {
+        dot(&self.shares, &rows.vel[axis])
+    }
+
+    pub(super) fn relativity(&self) -> bool {
+        self.relativity
+    }
+
+    pub(super) fn centre_gm(&self) -> f64 {
+        self.centre_gm
+    }
+
     /// m / m₀ of each planet.
     pub(super) fn shares(&self) -> &[f64] {
         &self.shares
@@ -153,10 +181,7 @@ impl Kick {
             self.slip(0.5 * h_s, rows);
         }
         let near = self.pulls(rows, whole);
-        let mut sigma = [0.0; 3];
-        for (axis, sum) in sigma.iter_mut().enumerate() {
-            *sum = dot(&self.shares, &rows.vel[axis]);
-        }
+        let sigma = std::array::from_fn(|axis| self.sigma(axis, rows));
         let bend = if whole { -h_s * h_s * h_s / 24.0 } else { 0.0 };
         let mut steepest = 0.0;
         let mut all = [0.0; 3];
@@ -342,8 +367,9 @@ fn spread<const N: usize>(
     }
 }
 
+/// What -v⁴ / 2c² moves some bodies by.
 #[inline]
-fn slip<const N: usize>(first: usize, h_s: f64, rows: &mut Rows) {
+pub(super) fn slip<const N: usize>(first: usize, h_s: f64, rows: &mut Rows) {
     let vel = lanes3::<N>(&rows.vel, first);
     let mut moved = [[0.0; N]; 3];
     for l in 0..N {

@@ -23,12 +23,16 @@ mod kick;
 mod rows;
 #[cfg(test)]
 mod tests;
+mod tracers;
+
+pub use tracers::{Fate, TRACER_HILL_RADII};
 
 use crate::math::float::cbrt;
 use kepler::Lost;
 use kick::{Kick, PER_C2};
 use rows::Rows;
 use std::f64::consts::TAU;
+use tracers::Tracers;
 
 /// Pairs nearer than this many of their common Hill radii are no longer planets that disturb one another a little.
 pub const NEAR_HILL_RADII: f64 = 3.0;
@@ -89,6 +93,7 @@ pub struct WisdomHolman {
     /// The true state, while it is worked out.
     shown: Rows,
     done: Vec<f64>,
+    tracers: Tracers,
     /// For each pair of planets, the distance that they may not come within, m.
     limits_m: Vec<f64>,
     /// Place and velocity of the barycentre at the start.
@@ -120,9 +125,7 @@ impl WisdomHolman {
         for (place, &body) in planets.iter().enumerate() {
             let at: [f64; 3] = std::array::from_fn(|axis| pos[3 * body + axis] - pos[3 * centre + axis]);
             let v: [f64; 3] = std::array::from_fn(|axis| vel[3 * body + axis] - barycentre[1][axis]);
-            let more = 1.0
-                + if relativity { PER_C2 * (0.5 * dot(v, v) + 3.0 * gm / dot(at, at).sqrt()) } else { 0.0 };
-            rows.set(place, at, v.map(|v| v * more));
+            rows.set(place, at, momentum(relativity, gm, at, v));
         }
         let planet_gms: Vec<f64> = planets.iter().map(|&body| gms[body]).collect();
         let mut it = Self {
@@ -134,6 +137,7 @@ impl WisdomHolman {
             rows,
             kicked: false,
             done: vec![0.0; n],
+            tracers: Tracers::default(),
             limits_m: vec![0.0; n * n],
             barycentre,
             start_s: t_s,
@@ -180,6 +184,11 @@ impl WisdomHolman {
             self.go_back()?;
             return Err(trouble);
         }
+        if !self.tracers.is_empty() {
+            let t_s = self.t_s();
+            self.tracers.drift(way, self.slowing, t_s);
+            self.tracers.kick(h, &self.kick, &self.planets, t_s + 0.5 * h);
+        }
         self.kick.give(h, &mut self.rows);
         self.kicked = true;
         self.steps += 1.0;
@@ -189,19 +198,16 @@ impl WisdomHolman {
     /// Unmakes the last few steps, as far as there are any.
     fn go_back(&mut self) -> Result<(), Trouble> {
         let h = self.step_s;
-        if self.kicked {
-            self.drift(0.5 * h)?;
-            self.kicked = false;
-        }
+        self.show()?;
         let mut left = BACK;
         while left > 0.0 && self.steps > 0.0 {
-            self.drift(-0.5 * h)?;
-            self.kick.prepare(-h, true, &mut self.rows);
-            self.kick.give(-h, &mut self.rows);
-            self.drift(-0.5 * h)?;
+            self.step_shown(-h)?;
             self.steps -= 1.0;
             left -= 1.0;
         }
+        self.rows.copy_from(&self.shown);
+        self.tracers.rows.copy_from(&self.tracers.shown);
+        self.kicked = false;
         Ok(())
     }
 
@@ -220,10 +226,7 @@ impl WisdomHolman {
     /// # Errors
     /// [`Trouble::Lost`] when a body meets the centre.
     pub fn state_after(&mut self, dt_s: f64, pos: &mut [f64], vel: &mut [f64]) -> Result<(), Trouble> {
-        self.shown.copy_from(&self.rows);
-        if self.kicked {
-            self.drift_shown(0.5 * self.step_s)?;
-        }
+        self.show()?;
         let t_s = self.t_s() + dt_s;
         let mut dt_s = dt_s;
         while dt_s / self.step_s <= -1.0 {
@@ -261,13 +264,9 @@ impl WisdomHolman {
         }
         for (i, &body) in self.planets.iter().enumerate() {
             let (at, p) = (self.shown.pos_of(i), self.shown.vel_of(i));
-            let less = if self.slowing == 0.0 {
-                1.0
-            } else {
-                1.0 - PER_C2 * (0.5 * dot(p, p) + 3.0 * self.gms[i] / dot(at, at).sqrt())
-            };
+            let v = velocity(self.kick.relativity(), self.gms[i], at, p);
             for axis in 0..3 {
-                vel[3 * body + axis] = self.barycentre[1][axis] + p[axis] * less;
+                vel[3 * body + axis] = self.barycentre[1][axis] + v[axis];
             }
         }
     }
@@ -278,23 +277,35 @@ impl WisdomHolman {
     }
 
     fn drift_shown(&mut self, h_s: f64) -> Result<(), Trouble> {
+        self.tracers.drift_shown(h_s, self.slowing);
         kepler::drift(h_s, self.slowing, &self.gms, &mut self.shown, &mut self.done)
             .map_err(|Lost(place)| Trouble::Lost { body: self.planets[place] })
     }
 
+    /// Copies what the steps carry, to the end of the last step.
+    fn show(&mut self) -> Result<(), Trouble> {
+        self.shown.copy_from(&self.rows);
+        self.tracers.shown.copy_from(&self.tracers.rows);
+        if self.kicked { self.drift_shown(0.5 * self.step_s) } else { Ok(()) }
+    }
+
     fn step_shown(&mut self, h_s: f64) -> Result<(), Trouble> {
         self.drift_shown(0.5 * h_s)?;
-        self.kick.prepare(h_s, true, &mut self.shown);
-        self.kick.give(h_s, &mut self.shown);
+        self.kick_shown(h_s, true);
         self.drift_shown(0.5 * h_s)
+    }
+
+    fn kick_shown(&mut self, h_s: f64, whole: bool) {
+        self.kick.prepare(h_s, whole, &mut self.shown);
+        self.tracers.kick_shown(h_s, &self.kick);
+        self.kick.give(h_s, &mut self.shown);
     }
 
     /// Takes what is shown from the true state to that of steps of `h_s`, or back where `sign` is -1.
     fn correct(&mut self, sign: f64, h_s: f64) -> Result<(), Trouble> {
         corrector::kicks(sign, |place, length| {
             self.drift_shown(place * h_s)?;
-            self.kick.prepare(length * h_s, false, &mut self.shown);
-            self.kick.give(length * h_s, &mut self.shown);
+            self.kick_shown(length * h_s, false);
             self.drift_shown(-place * h_s)
         })
     }
@@ -357,6 +368,24 @@ const BACK: f64 = 3.0;
 
 /// The largest h² GM / r³ of a step that resolves periapsis.
 const STEEPEST: f64 = (TAU / STEPS_PER_PERIAPSIS) * (TAU / STEPS_PER_PERIAPSIS);
+
+/// Momentum over mass, which is what kicks change: by relativity it is a little more than the velocity.
+fn momentum(relativity: bool, gm: f64, at: [f64; 3], v: [f64; 3]) -> [f64; 3] {
+    if !relativity {
+        return v;
+    }
+    let more = 1.0 + PER_C2 * (0.5 * dot(v, v) + 3.0 * gm / dot(at, at).sqrt());
+    v.map(|v| v * more)
+}
+
+/// The velocity that belongs to a momentum over mass.
+fn velocity(relativity: bool, gm: f64, at: [f64; 3], p: [f64; 3]) -> [f64; 3] {
+    if !relativity {
+        return p;
+    }
+    let less = 1.0 - PER_C2 * (0.5 * dot(p, p) + 3.0 * gm / dot(at, at).sqrt());
+    p.map(|p| p * less)
+}
 
 fn dot(a: [f64; 3], b: [f64; 3]) -> f64 {
     a[0] * b[0] + a[1] * b[1] + a[2] * b[2]

@@ -30,6 +30,15 @@ impl Rows {
         }
     }
 
+    /// Takes a body out, and puts the last one in its place.
+    pub(super) fn swap_remove(&mut self, body: usize) {
+        for rows in [&mut self.pos, &mut self.vel, &mut self.pos_excess, &mut self.vel_excess] {
+            for row in rows {
+                row.swap_remove(body);
+            }
+        }
+    }
+
     /// Sets a body anew, and forgets what rounding had done to it.
     pub(super) fn set(&mut self, body: usize, pos: [f64; 3], vel: [f64; 3]) {
         for axis in 0..3 {

@@ -306,3 +306,87 @@ fn relativity_turns_mercury_and_keeps_its_mean_motion() {
     println!("off by {off:e}″");
     assert!(off < 1e-3, "the place is off by {off}″");
 }
+
+/// Tracers go as bodies without mass do, and pull on nothing.
+#[test]
+fn tracers_go_as_massless_bodies_and_change_nothing() {
+    let planets = Bodies::planets();
+    let (h, years) = (4.0 * DAY_S, 20.0);
+    let at = |i: usize| {
+        let r = AU_M * (2.2 + 0.1 * f64::from(u8::try_from(i).unwrap()));
+        ([0.0, r, 0.02 * r], [-(1.1 * SUN / r).sqrt(), 10.0, 0.0])
+    };
+    let mut with = Bodies::planets();
+    let (mut pos, mut vel) = (Vec::new(), Vec::new());
+    for i in 0..7 {
+        let (p, v) = at(i);
+        pos.extend(p);
+        vel.extend(v);
+        with.gms.push(0.0);
+        with.pos.extend(p);
+        with.vel.extend(v);
+    }
+    for relativity in [false, true] {
+        let mut bodies = WisdomHolman::new(&Start { relativity, ..with.start() }, h).unwrap();
+        let mut alone = WisdomHolman::new(&Start { relativity, ..planets.start() }, h).unwrap();
+        let mut tracers = alone.clone();
+        tracers.set_tracers(&pos, &vel, [7e8, 1e13]).unwrap();
+        while bodies.t_s() < years * YEAR_S {
+            for run in [&mut bodies, &mut alone, &mut tracers] {
+                run.step().unwrap();
+            }
+        }
+        let (mut a, mut b) = (with.pos.clone(), with.vel.clone());
+        bodies.state(&mut a, &mut b).unwrap();
+        let (mut c, mut d) = (planets.pos.clone(), planets.vel.clone());
+        tracers.state(&mut c, &mut d).unwrap();
+        let (mut e, mut f) = (planets.pos.clone(), planets.vel.clone());
+        alone.state(&mut e, &mut f).unwrap();
+        assert_eq!((c, d), (e, f), "tracers moved a planet");
+        assert_eq!(tracers.tracers_left(), 7);
+        for i in 0..7 {
+            let (at, v) = tracers.tracer(i).unwrap();
+            let (want, want_v) =
+                (minus(vector(&a, 9 + i), vector(&a, 0)), minus(vector(&b, 9 + i), vector(&b, 0)));
+            let (off, off_v) = (minus(at, want), minus(v, want_v));
+            // The term of second order, which they go without: some 1e-10 of their motion, over 30 radians.
+            assert!(dot(off, off).sqrt() < 1e-8 * AU_M, "tracer {i} off by {} m", dot(off, off).sqrt());
+            assert!(dot(off_v, off_v).sqrt() < 1e-4, "tracer {i} off by {} m/s", dot(off_v, off_v).sqrt());
+        }
+    }
+}
+
+#[test]
+fn tracers_that_steps_can_t_follow_are_removed_and_told_of() {
+    let planets = Bodies::planets();
+    let speed = (SUN / AU_M).sqrt();
+    let jupiter = vector(&planets.pos, 5);
+    let beside = [jupiter[0] + 1e10, jupiter[1], jupiter[2]];
+    let pos =
+        [[AU_M, 0.0, 0.0], [0.0, AU_M, 0.0], beside, [0.0, 3.0 * AU_M, 0.0], [3.0 * AU_M, 0.0, 0.0]].concat();
+    let vel = [
+        [0.0, 0.05 * speed, 0.0],
+        [2.0 * speed, 0.0, 0.0],
+        vector(&planets.vel, 5),
+        [0.0; 3],
+        [0.0, 0.57 * speed, 0.0],
+    ]
+    .concat();
+    let mut run = WisdomHolman::new(&planets.start(), 4.0 * DAY_S).unwrap();
+    run.set_tracers(&pos, &vel, [7e8, 20.0 * AU_M]).unwrap();
+    let (mut p, mut v) = (planets.pos.clone(), planets.vel.clone());
+    while run.t_s() < 20.0 * YEAR_S {
+        run.step().unwrap();
+    }
+    run.state(&mut p, &mut v).unwrap();
+    let fates: Vec<Option<Fate>> = (0..6).map(|i| run.fate(i).map(|(fate, _)| fate)).collect();
+    let (down, away) = (Some(Fate::IntoCentre), Some(Fate::Away));
+    assert_eq!(fates, [down, away, Some(Fate::Near(5)), down, None, None]);
+    // At rest 3 au away, it falls for 3^1.5 / (4 √2) of a year.
+    let fell = run.fate(3).unwrap().1 / YEAR_S;
+    assert!((fell - 0.918_5).abs() < 0.02, "{fell} years");
+    assert_eq!(run.tracers_left(), 1);
+    let (at, _) = run.tracer(4).unwrap();
+    assert!((2.8..3.2).contains(&(dot(at, at).sqrt() / AU_M)), "{at:?}");
+    assert!(run.tracer(0).is_none() && run.tracer(5).is_none());
+}
