@@ -14,6 +14,7 @@ mod resting;
 mod softening;
 
 use drag::Drags;
+use newton::Newton;
 use oblateness::Bulge;
 use post_newtonian::PostNewtonian;
 use resting::Resting;
@@ -25,6 +26,7 @@ pub struct Field {
     gms: Vec<f64>,
     /// Which bodies have mass, in order.
     massive: Vec<usize>,
+    newton: Newton,
     /// 0: points.
     softening_m: f64,
     relativity: Option<PostNewtonian>,
@@ -46,6 +48,7 @@ impl Field {
     pub(crate) fn of(gms: Vec<f64>, forces: &Forces, members: &[usize]) -> Self {
         let local = |global: usize| members.iter().position(|&m| m == global);
         let massive: Vec<usize> = (0..gms.len()).filter(|&i| gms[i] != 0.0).collect();
+        let newton = Newton::new(&gms);
         let relativity = forces.relativity.then(|| PostNewtonian::new(&gms));
         let bulges = forces.oblate.iter().filter_map(|o| Some(Bulge::new(local(o.body.0)?, o))).collect();
         let mut drags = Vec::new();
@@ -59,6 +62,7 @@ impl Field {
         Self {
             gms,
             massive,
+            newton,
             softening_m: forces.softening_m,
             relativity,
             bulges,
@@ -122,7 +126,7 @@ impl Field {
         let n = 3 * self.gms.len();
         let (pos, out) = (&pos[..n], &mut out[..n]);
         if self.softening_m == 0.0 {
-            newton::set(&self.gms, &self.massive, pos, out);
+            self.newton.set(pos, out);
         } else {
             softening::set(&self.gms, &self.massive, self.softening_m, pos, out);
         }

@@ -86,7 +86,7 @@ mod tests {
         let mut resting = Resting::default();
         resting.add_mass(&gms, 0, [0.0, 1.0, 0.0], 1.0);
         let mut out = [0.0; 9];
-        super::super::newton::set(&gms, &[0, 2], &pos, &mut out);
+        super::super::newton::Newton::new(&gms).set(&pos, &mut out);
         let before = out;
         resting.add(&gms, 0.0, &pos, &mut out);
         // The tracer: 4 away from the mass at rest.

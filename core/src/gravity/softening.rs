@@ -68,7 +68,7 @@ mod tests {
         let (gms, massive) = ([0.0, 9.0, 0.0, 16.0], [1, 3]);
         let (mut soft, mut hard) = ([9.0; 12], [9.0; 12]);
         set(&gms, &massive, 0.0, &pos, &mut soft);
-        super::super::newton::set(&gms, &massive, &pos, &mut hard);
+        super::super::newton::Newton::new(&gms).set(&pos, &mut hard);
         for (soft, hard) in soft.iter().zip(hard) {
             assert!((soft - hard).abs() < 1e-15, "without softening: got {soft}, want {hard}");
         }

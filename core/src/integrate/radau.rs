@@ -13,17 +13,20 @@
 //! H. Rein & D. S. Spiegel, Open J. Astrophys. 7 (2024), use for such time scales: the seventh root of 7! times the tolerance.
 
 use super::spacings::{
-    B_FROM_G, BINOMIAL, G_FROM_B, INVERSE, POSITION, VELOCITY, position_weights, velocity_weights,
+    B_FROM_G, BINOMIAL, G_FROM_B, INVERSE, POSITION_FROM_G, SPACINGS, VELOCITY_FROM_G, position_weights,
+    velocity_weights,
 };
 use crate::gravity::Field;
+use wide::f64x4;
 
 /// Numbers of one body in one step: position, velocity, acceleration at its start, and the seven coefficients b0 to b6
 /// of each axis, in the order `[x0 y0 z0] [vx vy vz] [ax ay az] [b0x b0y b0z] … [b6x b6y b6z]`.
 pub const PER_BODY: usize = 30;
 
-/// Numbers worked on side by side. Four fill the vector registers of every target twice over.
+/// Numbers worked on side by side: four fill the vector registers of every target twice over. Left to themselves, compilers
+/// find them natively and lose them in wasm.
+type Lanes = f64x4;
 const LANES: usize = 4;
-type Lanes = [f64; LANES];
 
 /// Length of a step in time scales: (7! · 1e-9)^(1/7), the tolerance of Rein & Spiegel. Smaller: slower, and no more exact, because rounding
 /// already dominates; larger: the error of the method shows.
@@ -60,10 +63,40 @@ struct Block {
     acc: Lanes,
     b: [Lanes; 7],
     g: [Lanes; 7],
+    /// What the last round changed of the last coefficient.
+    last_change: Lanes,
     /// What was predicted for `b`.
     predicted: [Lanes; 7],
     last_b: [Lanes; 7],
     last_predicted: [Lanes; 7],
+}
+
+impl Block {
+    /// The sum of a0 and b, each with its weight, the smallest first.
+    #[inline]
+    fn weighted(&self, weights: &[f64; 8]) -> Lanes {
+        weighted(weights, self.acc, &self.b)
+    }
+}
+
+/// The sum of a0 and seven coefficients, each with its weight, the smallest first.
+#[inline]
+fn weighted(weights: &[f64; 8], acc: Lanes, coefficients: &[Lanes; 7]) -> Lanes {
+    let mut sum = coefficients[6] * weights[7];
+    for k in (0..6).rev() {
+        sum += coefficients[k] * weights[k + 1];
+    }
+    sum + acc * weights[0]
+}
+
+/// The sum of those of seven coefficients from `k` on, each with its weight in column `k` of a table, the last first.
+#[inline]
+fn column(table: &[[f64; 7]; 7], k: usize, coefficients: &[Lanes; 7]) -> Lanes {
+    let mut sum = coefficients[6] * table[6][k];
+    for j in (k..6).rev() {
+        sum += coefficients[j] * table[j][k];
+    }
+    sum
 }
 
 /// The step has become too small to go on: bodies are falling into each other.
@@ -86,6 +119,8 @@ pub struct Radau {
     pos: Vec<f64>,
     vel: Vec<f64>,
     acc: Vec<f64>,
+    /// Squares of the acceleration and its first three derivatives at the end of the step, in units of the step, of each component.
+    squares: Vec<[f64; 4]>,
 }
 
 impl Radau {
@@ -96,8 +131,8 @@ impl Radau {
         let padded = pos.len().div_ceil(LANES) * LANES;
         let mut blocks = vec![Block::default(); padded / LANES];
         for (i, (&x, &v)) in pos.iter().zip(vel).enumerate() {
-            blocks[i / LANES].pos[i % LANES] = x;
-            blocks[i / LANES].vel[i % LANES] = v;
+            blocks[i / LANES].pos.as_mut_array()[i % LANES] = x;
+            blocks[i / LANES].vel.as_mut_array()[i % LANES] = v;
         }
         Self {
             bodies: pos.len() / 3,
@@ -111,6 +146,7 @@ impl Radau {
             pos: vec![0.0; padded],
             vel: vec![0.0; padded],
             acc: vec![0.0; padded],
+            squares: vec![[0.0; 4]; padded],
         }
     }
 
@@ -153,6 +189,7 @@ impl Radau {
             self.step_s = step_s;
             self.predict();
             let finite = self.iterate(field);
+            self.expand();
             let wanted_s = if finite { self.in_time_scales * self.time_scale() * step_s.abs() } else { 0.0 };
             if wanted_s < LARGEST_CHANGE * step_s.abs() {
                 step_s = step_s.signum() * wanted_s.max(0.01 * step_s.abs());
@@ -170,22 +207,13 @@ impl Radau {
         const VEL: [f64; 8] = velocity_weights(1.0);
         let step = self.step_s;
         for block in &mut self.blocks {
-            for l in 0..LANES {
-                let sum = |weights: &[f64; 8]| {
-                    let mut sum = 0.0;
-                    for k in (0..7).rev() {
-                        sum += weights[k + 1] * block.b[k][l];
-                    }
-                    sum + weights[0] * block.acc[l]
-                };
-                // The small change first, so that the two sums of each kind lose least.
-                let bent = step * step * sum(&POS) - block.pos_excess[l];
-                let (x, excess) = compensated(block.pos[l], bent);
-                let straight = step * block.vel[l] - (excess + step * block.vel_excess[l]);
-                (block.pos[l], block.pos_excess[l]) = compensated(x, straight);
-                let change = step * sum(&VEL) - block.vel_excess[l];
-                (block.vel[l], block.vel_excess[l]) = compensated(block.vel[l], change);
-            }
+            // The small change first, so that the two sums of each kind lose least.
+            let bent = block.weighted(&POS) * (step * step) - block.pos_excess;
+            let (x, excess) = compensated(block.pos, bent);
+            let straight = block.vel * step - (excess + block.vel_excess * step);
+            (block.pos, block.pos_excess) = compensated(x, straight);
+            let change = block.weighted(&VEL) * step - block.vel_excess;
+            (block.vel, block.vel_excess) = compensated(block.vel, change);
             block.last_b = block.b;
             block.last_predicted = block.predicted;
         }
@@ -197,7 +225,8 @@ impl Radau {
     /// Positions and velocities at the start of the step: three numbers for each body.
     pub fn state(&self, pos: &mut [f64], vel: &mut [f64]) {
         for (i, (x, v)) in pos.iter_mut().zip(vel).enumerate() {
-            (*x, *v) = (self.blocks[i / LANES].pos[i % LANES], self.blocks[i / LANES].vel[i % LANES]);
+            let (block, l) = (&self.blocks[i / LANES], i % LANES);
+            (*x, *v) = (block.pos.as_array()[l], block.vel.as_array()[l]);
         }
     }
 
@@ -207,11 +236,11 @@ impl Radau {
         for axis in 0..3 {
             let i = 3 * body + axis;
             let (block, l) = (&self.blocks[i / LANES], i % LANES);
-            numbers[axis] = block.pos[l];
-            numbers[3 + axis] = block.vel[l];
-            numbers[6 + axis] = block.acc[l];
+            numbers[axis] = block.pos.as_array()[l];
+            numbers[3 + axis] = block.vel.as_array()[l];
+            numbers[6 + axis] = block.acc.as_array()[l];
             for (k, b) in block.b.iter().enumerate() {
-                numbers[9 + 3 * k + axis] = b[l];
+                numbers[9 + 3 * k + axis] = b.as_array()[l];
             }
         }
         numbers
@@ -219,12 +248,12 @@ impl Radau {
 
     fn start_accelerations(&mut self, field: &mut Field) {
         for (i, block) in self.blocks.iter().enumerate() {
-            self.pos[i * LANES..][..LANES].copy_from_slice(&block.pos);
-            self.vel[i * LANES..][..LANES].copy_from_slice(&block.vel);
+            self.pos[i * LANES..][..LANES].copy_from_slice(block.pos.as_array());
+            self.vel[i * LANES..][..LANES].copy_from_slice(block.vel.as_array());
         }
         field.accelerations(&self.pos, &self.vel, &mut self.acc);
         for (block, acc) in self.blocks.iter_mut().zip(self.acc.chunks_exact(LANES)) {
-            block.acc.copy_from_slice(acc);
+            block.acc = lanes(acc);
         }
         self.acc_known = true;
     }
@@ -234,33 +263,20 @@ impl Radau {
         let ratio = self.step_s / self.last_step_s;
         // Far beyond the last step its polynomials say nothing.
         let known = self.last_step_s != 0.0 && ratio < 20.0;
+        let (binomial, g_from_b) = (from_memory(&BINOMIAL), from_memory(&G_FROM_B));
         for block in &mut self.blocks {
+            block.predicted = [Lanes::ZERO; 7];
+            block.b = [Lanes::ZERO; 7];
             if known {
                 let mut power = 1.0;
                 for k in 0..7 {
                     power *= ratio;
-                    for l in 0..LANES {
-                        let mut sum = 0.0;
-                        for j in (k..7).rev() {
-                            sum += BINOMIAL[j][k] * block.last_b[j][l];
-                        }
-                        block.predicted[k][l] = power * sum;
-                        block.b[k][l] =
-                            block.predicted[k][l] + (block.last_b[k][l] - block.last_predicted[k][l]);
-                    }
+                    block.predicted[k] = column(binomial, k, &block.last_b) * power;
+                    block.b[k] = block.predicted[k] + (block.last_b[k] - block.last_predicted[k]);
                 }
-            } else {
-                block.predicted = [[0.0; LANES]; 7];
-                block.b = [[0.0; LANES]; 7];
             }
             for k in 0..7 {
-                for l in 0..LANES {
-                    let mut sum = 0.0;
-                    for j in (k..7).rev() {
-                        sum += G_FROM_B[j][k] * block.b[j][l];
-                    }
-                    block.g[k][l] = sum;
-                }
+                block.g[k] = column(g_from_b, k, &block.b);
             }
         }
     }
@@ -271,11 +287,10 @@ impl Radau {
         // Forces so slight that the next change of the path changes them by roundings only are worked out no more.
         let mut anew = true;
         for round in 0..MOST_ROUNDS {
-            let (mut changed, mut largest) = (0.0_f64, 0.0_f64);
             for node in 1..8 {
                 self.place(node, field.needs_velocities(anew));
                 field.accelerations_at(node, anew, &self.pos, &self.vel, &mut self.acc);
-                let (change, acc) = match node {
+                match node {
                     1 => self.correct::<1>(),
                     2 => self.correct::<2>(),
                     3 => self.correct::<3>(),
@@ -283,9 +298,9 @@ impl Radau {
                     5 => self.correct::<5>(),
                     6 => self.correct::<6>(),
                     _ => self.correct::<7>(),
-                };
-                (changed, largest) = (change, acc);
+                }
             }
+            let (changed, largest) = self.last_change();
             if !(changed + largest).is_finite() {
                 return false;
             }
@@ -306,67 +321,82 @@ impl Radau {
     /// Positions (and velocities) at one of the spacings.
     fn place(&mut self, node: usize, velocities: bool) {
         let step = self.step_s;
-        let along = step * super::spacings::SPACINGS[node];
-        let mut weights = POSITION[node];
-        for w in &mut weights {
-            *w *= step * step;
-        }
+        let along = step * SPACINGS[node];
+        let weights = POSITION_FROM_G[node].map(|w| w * (step * step));
         for (block, pos) in self.blocks.iter().zip(self.pos.chunks_exact_mut(LANES)) {
-            for l in 0..LANES {
-                let mut sum = 0.0;
-                for k in (0..7).rev() {
-                    sum += weights[k + 1] * block.b[k][l];
-                }
-                sum += weights[0] * block.acc[l] - block.pos_excess[l];
-                pos[l] = block.pos[l] + (along * block.vel[l] + sum);
-            }
+            let bent = weighted(&weights, block.acc, &block.g) - block.pos_excess;
+            pos.copy_from_slice((block.pos + (block.vel * along + bent)).as_array());
         }
         if velocities {
+            let weights = VELOCITY_FROM_G[node].map(|w| w * step);
             for (block, vel) in self.blocks.iter().zip(self.vel.chunks_exact_mut(LANES)) {
-                for l in 0..LANES {
-                    let mut sum = 0.0;
-                    for k in (0..7).rev() {
-                        sum += VELOCITY[node][k + 1] * block.b[k][l];
-                    }
-                    sum += VELOCITY[node][0] * block.acc[l];
-                    vel[l] = block.vel[l] + (step * sum - block.vel_excess[l]);
-                }
+                let change = weighted(&weights, block.acc, &block.g) - block.vel_excess;
+                vel.copy_from_slice((block.vel + change).as_array());
             }
         }
     }
 
-    /// Takes the accelerations at one of the spacings into the polynomials. Gives the largest change of the last
-    /// coefficient and the largest acceleration.
-    fn correct<const NODE: usize>(&mut self) -> (f64, f64) {
-        let mut changed = [0.0_f64; LANES];
-        let mut largest = [0.0_f64; LANES];
+    /// Takes the accelerations at one of the spacings into the polynomials.
+    fn correct<const NODE: usize>(&mut self) {
+        let inverse = from_memory(&INVERSE[NODE]);
         for (block, acc) in self.blocks.iter_mut().zip(self.acc.chunks_exact(LANES)) {
+            let mut g = (lanes(acc) - block.acc) * inverse[0];
+            for j in 1..NODE {
+                g = (g - block.g[j - 1]) * inverse[j];
+            }
+            if NODE == 7 {
+                block.last_change = g - block.g[6];
+            }
+            block.g[NODE - 1] = g;
+        }
+    }
+
+    /// The largest change of the last coefficient in this round, and the largest acceleration at the last spacing.
+    fn last_change(&self) -> (f64, f64) {
+        let (mut changed, mut largest) = (0.0, 0.0);
+        for (block, acc) in self.blocks.iter().zip(self.acc.chunks_exact(LANES)) {
             for l in 0..LANES {
-                let mut g = (acc[l] - block.acc[l]) * INVERSE[NODE][0];
-                for j in 1..NODE {
-                    g = (g - block.g[j - 1][l]) * INVERSE[NODE][j];
-                }
-                let change = g - block.g[NODE - 1][l];
-                block.g[NODE - 1][l] = g;
-                for k in 0..NODE {
-                    block.b[k][l] += B_FROM_G[NODE - 1][k] * change;
-                }
-                changed[l] = larger(changed[l], change.abs());
-                largest[l] = larger(largest[l], acc[l].abs());
+                changed = larger(changed, block.last_change.as_array()[l].abs());
+                largest = larger(largest, acc[l].abs());
             }
         }
-        (changed.into_iter().fold(0.0, larger), largest.into_iter().fold(0.0, larger))
+        (changed, largest)
+    }
+
+    /// Turns the polynomials into powers of time.
+    fn expand(&mut self) {
+        let b_from_g = from_memory(&B_FROM_G);
+        for block in &mut self.blocks {
+            for k in 0..7 {
+                block.b[k] = column(b_from_g, k, &block.g);
+            }
+        }
     }
 
     /// The shortest time scale of all bodies at the end of the step, in units of the step.
-    fn time_scale(&self) -> f64 {
-        let mut least = f64::INFINITY;
-        let mut largest = 0.0_f64;
-        for body in 0..self.bodies {
-            largest = largest.max(self.derivatives(body)[0]);
+    fn time_scale(&mut self) -> f64 {
+        // Of the acceleration and its first three derivatives: 1, n, n (n - 1), n (n - 1)(n - 2).
+        const WEIGHTS: [[f64; 8]; 4] = [
+            [1.0, 1.0, 1.0, 1.0, 1.0, 1.0, 1.0, 1.0],
+            [0.0, 1.0, 2.0, 3.0, 4.0, 5.0, 6.0, 7.0],
+            [0.0, 0.0, 2.0, 6.0, 12.0, 20.0, 30.0, 42.0],
+            [0.0, 0.0, 0.0, 6.0, 24.0, 60.0, 120.0, 210.0],
+        ];
+        let weights = from_memory(&WEIGHTS);
+        for (block, squares) in self.blocks.iter().zip(self.squares.chunks_exact_mut(LANES)) {
+            for (order, weights) in weights.iter().enumerate() {
+                let sum = block.weighted(weights);
+                for (squares, square) in squares.iter_mut().zip((sum * sum).to_array()) {
+                    squares[order] = square;
+                }
+            }
         }
-        for body in 0..self.bodies {
-            let [a, jerk, snap, crackle] = self.derivatives(body);
+        let bodies = || self.squares[..3 * self.bodies].chunks_exact(3);
+        let square = |axes: &[[f64; 4]], order: usize| axes[0][order] + axes[1][order] + axes[2][order];
+        let largest = bodies().map(|axes| square(axes, 0)).fold(0.0, f64::max);
+        let mut least = f64::INFINITY;
+        for axes in bodies() {
+            let [a, jerk, snap, crackle] = [0, 1, 2, 3].map(|order| square(axes, order));
             if a.max(jerk).max(snap) <= NOISE * NOISE * largest {
                 continue;
             }
@@ -378,28 +408,21 @@ impl Radau {
         }
         least.sqrt()
     }
+}
 
-    /// Squares of the acceleration and its first three derivatives at the end of the step, in units of the step.
-    fn derivatives(&self, body: usize) -> [f64; 4] {
-        let mut squares = [0.0; 4];
-        for axis in 0..3 {
-            let i = 3 * body + axis;
-            let (block, l) = (&self.blocks[i / LANES], i % LANES);
-            let mut d = [block.acc[l], 0.0, 0.0, 0.0];
-            let mut n = 1.0;
-            for b in &block.b {
-                d[0] += b[l];
-                d[1] += n * b[l];
-                d[2] += n * (n - 1.0) * b[l];
-                d[3] += n * (n - 1.0) * (n - 2.0) * b[l];
-                n += 1.0;
-            }
-            for (square, d) in squares.iter_mut().zip(d) {
-                *square += d * d;
-            }
-        }
-        squares
-    }
+/// A table, to be read from where it lies: as constants in the code, its numbers would be made anew for each use in wasm,
+/// which takes longer than what they are used for.
+#[inline]
+fn from_memory<T>(table: &T) -> &T {
+    std::hint::black_box(table)
+}
+
+/// As many numbers of a slice as are worked on side by side.
+#[inline]
+fn lanes(numbers: &[f64]) -> Lanes {
+    let mut lanes = [0.0; LANES];
+    lanes.copy_from_slice(numbers);
+    Lanes::new(lanes)
 }
 
 /// The larger of two numbers; NaN when one of them is (`f64::max` would lose it).
@@ -408,12 +431,48 @@ fn larger(a: f64, b: f64) -> f64 {
     if b > a || b.is_nan() { b } else { a }
 }
 
-/// A sum, and how much of it is rounding: what is to be taken from the next addend.
+/// Sums, and how much of each is rounding: what is to be taken from the next addend.
 ///
 /// # Source
 /// W. Kahan, "Further remarks on reducing truncation errors", Comm. ACM 8 (1965), 40.
 #[inline]
-fn compensated(sum: f64, addend: f64) -> (f64, f64) {
+fn compensated(sum: Lanes, addend: Lanes) -> (Lanes, Lanes) {
     let new = sum + addend;
     (new, (new - sum) - addend)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::initial::Forces;
+
+    /// Steps of one circle around GM 1, and where it ends.
+    fn circle(share: f64) -> (u32, [f64; 3]) {
+        let turn = std::f64::consts::TAU;
+        let mut field = Field::of(vec![1.0, 0.0], &Forces::default(), &[0, 1]);
+        let (pos, vel) = ([0.0, 0.0, 0.0, 1.0, 0.0, 0.0], [0.0, 0.0, 0.0, 0.0, 1.0, 0.0]);
+        let mut radau = Radau::new(0.0, &pos, &vel, 0.01);
+        radau.set_step_share(share);
+        let mut steps = 0;
+        while radau.t_s() < turn {
+            radau.limit_step(turn - radau.t_s());
+            radau.solve(&mut field).unwrap();
+            radau.finish();
+            steps += 1;
+        }
+        let (mut pos, mut vel) = ([0.0; 6], [0.0; 6]);
+        radau.state(&mut pos, &mut vel);
+        (steps, [pos[3], pos[4], pos[5]])
+    }
+
+    #[test]
+    fn steps_of_half_the_length_are_twice_as_many_and_end_in_the_same_place() {
+        let ((whole, a), (half, b)) = (circle(1.0), circle(0.5));
+        // But for the search for the first and the rest before the end.
+        assert!((2 * whole).abs_diff(half) <= 6, "{whole} and {half} steps");
+        // Rounding of some tens of steps.
+        for (a, b) in a.into_iter().zip(b) {
+            assert!((a - b).abs() < 1e-14, "{a} and {b}");
+        }
+    }
 }

@@ -105,7 +105,7 @@ pub(super) const fn position_weights(h: f64) -> [f64; 8] {
 }
 
 /// [`velocity_weights`] at each spacing.
-pub(super) const VELOCITY: [[f64; 8]; 8] = {
+const VELOCITY: [[f64; 8]; 8] = {
     let mut table = [[0.0; 8]; 8];
     let mut n = 0;
     while n < 8 {
@@ -116,7 +116,7 @@ pub(super) const VELOCITY: [[f64; 8]; 8] = {
 };
 
 /// [`position_weights`] at each spacing.
-pub(super) const POSITION: [[f64; 8]; 8] = {
+const POSITION: [[f64; 8]; 8] = {
     let mut table = [[0.0; 8]; 8];
     let mut n = 0;
     while n < 8 {
@@ -125,6 +125,33 @@ pub(super) const POSITION: [[f64; 8]; 8] = {
     }
     table
 };
+
+/// Weights of a0, g0, … g6 in the change of position over the first h of a step beyond h v0, at each spacing, in units of the
+/// step squared: the double integrals of 1, h, h (h - h1), …
+pub(super) const POSITION_FROM_G: [[f64; 8]; 8] = from_g(&POSITION);
+
+/// As [`POSITION_FROM_G`], in the change of velocity, in units of the step.
+pub(super) const VELOCITY_FROM_G: [[f64; 8]; 8] = from_g(&VELOCITY);
+
+/// Weights of a0 and g from those of a0 and b.
+const fn from_g(from_b: &[[f64; 8]; 8]) -> [[f64; 8]; 8] {
+    let mut table = [[0.0; 8]; 8];
+    let mut n = 0;
+    while n < 8 {
+        table[n][0] = from_b[n][0];
+        let mut j = 0;
+        while j < 7 {
+            let mut k = 0;
+            while k <= j {
+                table[n][j + 1] += B_FROM_G[j][k] * from_b[n][k + 1];
+                k += 1;
+            }
+            j += 1;
+        }
+        n += 1;
+    }
+    table
+}
 
 /// Binomial coefficients: `BINOMIAL[j][k]` = C(j + 1, k + 1), which move the polynomial of a step on to the next.
 pub(super) const BINOMIAL: [[f64; 7]; 7] = {
@@ -176,6 +203,29 @@ mod tests {
                 }
                 let want = if k == start { 1.0 } else { 0.0 };
                 assert!((b[k] - want).abs() < 1e-15, "b{k} of b{start}: {}", b[k]);
+            }
+        }
+    }
+
+    #[test]
+    fn weights_of_g_are_integrals_of_its_polynomials() {
+        // Gauss's rule with four points is exact to degree 7, that of h … (h - h6).
+        let points = [
+            (-0.861_136_311_594_052_6, 0.347_854_845_137_453_85),
+            (-0.339_981_043_584_856_26, 0.652_145_154_862_546_1),
+            (0.339_981_043_584_856_26, 0.652_145_154_862_546_1),
+            (0.861_136_311_594_052_6, 0.347_854_845_137_453_85),
+        ];
+        for n in 1..8 {
+            for j in 0..7 {
+                let (end, mut integral) = (SPACINGS[n], 0.0);
+                for (x, weight) in points {
+                    let h = 0.5 * end * (x + 1.0);
+                    let product: f64 = SPACINGS[..=j].iter().map(|s| h - s).product();
+                    integral += 0.5 * end * weight * product;
+                }
+                let got = VELOCITY_FROM_G[n][j + 1];
+                assert!((got - integral).abs() < 1e-15, "g{j} at {end}: {got} and {integral}");
             }
         }
     }
