@@ -3,6 +3,7 @@
 use super::finding::{Finding, Topic, Weight};
 use super::report::BeatReport;
 use super::sight::{FRAME_S, Seen, beats, called, name};
+use crate::ephemeris::Outcome;
 use crate::scenario::{BodyId, Mark};
 use crate::show::Show;
 use std::f64::consts::TAU;
@@ -36,6 +37,7 @@ struct Seenness {
 /// Looks at every beat.
 pub(super) fn check(show: &Show, reports: &mut [BeatReport], findings: &mut Vec<Finding>) {
     for (seen, report) in beats(show).iter().zip(reports) {
+        findings.extend(lost_centre(seen));
         let marked = marked(&seen.beat.marks);
         let moving = moving(&seen.beat.marks);
         for body in (0..show.scenario.bodies.len()).map(BodyId) {
@@ -93,6 +95,24 @@ pub(super) fn check(show: &Show, reports: &mut [BeatReport], findings: &mut Vec<
             }
         }
     }
+}
+
+/// A view that follows what is no longer there.
+fn lost_centre(seen: &Seen<'_>) -> Option<Finding> {
+    let centre = seen.beat.view.centre.about?;
+    let contact = seen.show.ephemeris.at_rest(centre, seen.planned.from_s)?;
+    (contact.outcome == Outcome::Merged).then(|| Finding {
+        weight: Weight::Warning,
+        topic: Topic::Motion,
+        place: seen.beat.place,
+        wrong: format!(
+            "the view of {} follows {}, which is part of {} by then",
+            called(seen.index),
+            name(&seen.show.scenario, centre),
+            name(&seen.show.scenario, contact.onto)
+        ),
+        remedy: "name another centre".to_owned(),
+    })
 }
 
 fn look(seen: &Seen<'_>, body: BodyId) -> Seenness {

@@ -1,11 +1,11 @@
 //! What hangs on the last digits: each stated number is changed by one part in 1e9, in the text, and the show integrated anew.
 //!
-//! The pictures at the ends of the beats are compared at the same model times. The work is bounded: where a file states more
+//! Pictures of each beat are compared at the same model times, from its start to its end. The work is bounded: where a file states more
 //! numbers than there is time for, those of the first bodies are tried, and the report says how many.
 
 use super::finding::{Finding, Topic, Weight};
 use super::report::{BeatReport, Encounter, Lever, Shift};
-use super::sight::{self, called, name};
+use super::sight::{self, Seen, called, name};
 use crate::Vector3;
 use crate::ephemeris::{Ephemeris, Propagation, SHOW_BYTES};
 use crate::initial::InitialState;
@@ -18,12 +18,18 @@ use crate::units::number;
 /// By what part each number is changed.
 const PART: f64 = 1e-9;
 
+/// Pieces of a beat between the instants compared.
+const PIECES: u32 = 16;
+
 /// Pairs of bodies worked out in all steps of all runs, at most: some seconds on one core.
 const MOST_PAIR_STEPS: f64 = 4e7;
 
 /// From here on, px, the sixth digit of a number, which few authors state, moves the picture by ten pixels. A planet that is ahead
 /// after hundreds of rounds stays far below.
 const WARNED_PX: f64 = 0.01;
+
+/// Up to here, px, larger changes do as much more; beyond, the body is simply elsewhere.
+const FAR_PX: f64 = 1.0;
 
 /// An encounter hangs on the sixth digit, the last that authors state as a rule, when the gap is less than so many times what one
 /// part in 1e9 does.
@@ -141,13 +147,14 @@ impl Numbers {
                 topic: Topic::Sensitivity,
                 place: scenario.beats.get(beat).map_or_else(Default::default, |beat| beat.place),
                 wrong: format!(
-                    "one part in 1e9 of {} of {} ({}) moves {} by {} px at the end of {}, and its sixth digit a thousand times as far",
+                    "a billionth more of {} of {} ({}) moves {} by {} px in {}{}",
                     lever.quantity,
                     name(scenario, lever.body),
                     lever.stated,
                     name(scenario, shift.body),
                     number::with_digits(shift.px, 2),
-                    called(beat)
+                    called(beat),
+                    if shift.px < FAR_PX { ", and its sixth digit a thousand times as far" } else { "" }
                 ),
                 remedy: "the show is the same from this file on every computer, but change no digit of it, and don't tell it as \
                          the one way it must go; or end the beat sooner"
@@ -233,25 +240,35 @@ fn changed(document: &Document, path: Path<'_>) -> Option<(String, Value)> {
     (value != 0.0).then_some((stated, Value::Number(value * (1.0 + PART))))
 }
 
-/// How far the picture at the end of each beat moves.
+/// How far the picture of each beat moves at most, of what is in it before or after.
 fn shifts(show: &Show, run: &Ephemeris) -> Vec<Option<Shift>> {
+    sight::beats(show).iter().map(|seen| worst(seen, run)).collect()
+}
+
+fn worst(seen: &Seen<'_>, run: &Ephemeris) -> Option<Shift> {
     let at = |eph: &Ephemeris, body: BodyId, t_s| eph.state(body, t_s).map(|state| state.pos);
-    let one = |seen: sight::Seen<'_>| {
-        let beat_s = seen.planned.lasts_s;
+    let about = seen.beat.view.centre.about;
+    let first = &seen.show.ephemeris;
+    let mut worst: Option<Shift> = None;
+    for beat_s in seen.instants(PIECES) {
         let t_s = seen.model_s(beat_s);
+        // A run that ended early stands at its end from then on: that is no shift.
+        if t_s > run.until_s() || t_s < run.from_s() {
+            continue;
+        }
         let camera = seen.camera(t_s);
-        let about = seen.beat.view.centre.about;
         let centre = |eph| about.map_or(Some(Vector3::zeros()), |body| at(eph, body, t_s));
-        let centres = [centre(&show.ephemeris)?, centre(run)?];
-        let moved = seen.bodies(t_s).filter_map(|body| {
-            let places = [at(&show.ephemeris, body, t_s)?, at(run, body, t_s)?];
-            let (px, m) = seen.apart(&camera, places, centres);
-            let is_seen = places.iter().any(|place| seen.holds(&camera, *place));
-            is_seen.then_some(Shift { body, beat_s, px, m })
-        });
-        moved.max_by(|a, b| a.px.total_cmp(&b.px))
-    };
-    sight::beats(show).into_iter().map(one).collect()
+        let Some(centres) = centre(first).zip(centre(run)) else { continue };
+        for body in seen.bodies(t_s) {
+            let Some(places) = at(first, body, t_s).zip(at(run, body, t_s)) else { continue };
+            let (px, m) = seen.apart(&camera, places.into(), centres.into());
+            let is_seen = seen.holds(&camera, places.0) || seen.holds(&camera, places.1);
+            if is_seen && worst.is_none_or(|worst| px > worst.px) {
+                worst = Some(Shift { body, beat_s, px, m });
+            }
+        }
+    }
+    worst
 }
 
 fn count(n: usize) -> f64 {

@@ -38,7 +38,7 @@ pub struct BeatReport {
     pub off: Option<Shift>,
     /// How far off the worst body on stage is, in the picture or not, m.
     pub off_m: f64,
-    /// How far one part in 1e9 of the worst stated number moves the picture at its end: an index into [`Report::levers`].
+    /// The stated number of which one part in 1e9 moves its picture farthest: an index into [`Report::levers`].
     pub lever: Option<usize>,
     /// The event that it reaches.
     pub cue: Option<CueReport>,
@@ -99,7 +99,7 @@ pub struct Lever {
     pub quantity: String,
     /// What stands in the file.
     pub stated: String,
-    /// How far the picture moves at the end of each beat.
+    /// How far the picture of each beat moves, at the worst instant looked at; `None` where nothing is in it.
     pub shifts: Vec<Option<Shift>>,
 }
 

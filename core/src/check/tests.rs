@@ -142,7 +142,7 @@ fn every_stated_number_is_tried_and_does_what_the_third_law_says() {
 fn three_bodies_that_pass_closely_are_told_as_sensitive() {
     let proven = proven(&BURRAU.replace("\"1 au\", \"3 au\"", "\"0.5 au\", \"2.5 au\""), "");
     assert!(proven.report.is_ready(), "the same bits come of it everywhere: {:#?}", proven.report.findings);
-    let finding = found(&proven, Topic::Sensitivity, "its sixth digit");
+    let finding = found(&proven, Topic::Sensitivity, "a billionth more of");
     assert_eq!(finding.weight, Weight::Warning);
     assert_eq!(finding.place, proven.show.scenario.beats[0].place);
     let (_, worst) = proven.report.levers[0].worst().expect("moved");
@@ -180,6 +180,16 @@ fn bodies_that_lie_before_they_are_to_move_are_found() {
     let finding = proven(BALL, beats);
     let finding = found(&finding, Topic::Motion, "lies on Skerry before it begins");
     assert!(finding.wrong.contains("beat 2"), "{finding:?}");
+}
+
+#[test]
+fn a_view_of_what_has_merged_is_found() {
+    let merging = BALL.replace("radius = \"1737 km\"", "radius = \"1737 km\"\nsurface = \"merge\"");
+    let beats = "[[beat]]\ntitle = \"Fall\"\nclock = { span = \"30 s\", lasts = \"20 s\" }\nview = { centre = \"Ball\", span = \"300 m\" }\n\
+                 [[beat]]\ntitle = \"Late\"\nclock = { span = \"30 s\", lasts = \"20 s\" }\n";
+    let proven = proven(&merging, beats);
+    let finding = found(&proven, Topic::Motion, "follows Ball, which is part of Skerry");
+    assert_eq!(finding.place, proven.show.scenario.beats[1].place);
 }
 
 #[test]

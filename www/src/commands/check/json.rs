@@ -10,7 +10,7 @@ use super::{Shown, name, outcome};
 /// How many of the numbers that move the picture are written.
 const LEVERS: usize = 5;
 
-/// The keys of a report, in the order in which they are written.
+/// The keys of a report, by the alphabet.
 #[cfg(test)]
 pub(super) const KEYS: [&str; 19] = [
     "beats",
@@ -36,8 +36,25 @@ pub(super) const KEYS: [&str; 19] = [
 
 /// Those of one beat.
 #[cfg(test)]
-pub(super) const BEAT_KEYS: [&str; 10] =
-    ["from_s", "lasts_s", "off", "off_m", "pace", "reaches", "show_s", "title", "turns_a_frame", "until_s"];
+pub(super) const BEAT_KEYS: [&str; 17] = [
+    "capital_arcmin",
+    "flashing",
+    "frame_ms",
+    "from_s",
+    "lasts_s",
+    "line_arcmin",
+    "off",
+    "off_m",
+    "pace",
+    "pan_heights_s",
+    "reaches",
+    "reading_s",
+    "show_s",
+    "title",
+    "turn_deg_s",
+    "turns_a_frame",
+    "until_s",
+];
 
 /// Of a file that can't be shown.
 pub(super) fn wrong(file: &str, problems: &[Problem]) -> Value {
@@ -149,13 +166,13 @@ fn shift(show: &Show, shift: &Shift) -> Value {
 }
 
 fn lever(show: &Show, lever: &Lever) -> Value {
-    let at_ends: Vec<Value> =
+    let moves: Vec<Value> =
         lever.shifts.iter().map(|one| one.map_or(Value::Null, |one| shift(show, &one))).collect();
     json!({
         "body": name(show, lever.body),
         "quantity": lever.quantity,
         "stated": lever.stated,
-        "moves": at_ends,
+        "moves": moves,
     })
 }
 

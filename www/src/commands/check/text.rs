@@ -8,6 +8,9 @@ use fallaround_core::units::number;
 
 use super::{Shown, name, outcome};
 
+/// How many of the numbers that move the picture are told.
+const LEVERS: usize = 3;
+
 /// What is less is no matter, px.
 const LEAST_PX: f64 = 0.001;
 
@@ -86,7 +89,7 @@ fn whole(shown: &Shown, line: &mut impl FnMut(String)) {
             beat + 1
         ));
     }
-    line(last_digits(show, report));
+    last_digits(show, report, line);
     let (beat, ms) = worst(|beat| beat.frame_ms);
     line(format!(
         "  cost         {:.1} MB of {:.0}; frames take about {ms:.1} ms without a graphics card at most, in beat {}",
@@ -127,24 +130,28 @@ fn whole(shown: &Shown, line: &mut impl FnMut(String)) {
     });
 }
 
-fn last_digits(show: &Show, report: &Report) -> String {
+/// The numbers that move the picture most.
+fn last_digits(show: &Show, report: &Report, line: &mut impl FnMut(String)) {
     if report.numbers_stated == 0 {
-        return "  last digits  no numbers are stated that could be changed".to_owned();
+        line("  last digits  no numbers are stated that could be changed".to_owned());
+        return;
     }
-    let worst = report.levers.first().and_then(|lever| Some((lever, lever.worst()?)));
-    match worst {
-        Some((lever, (beat, shift))) => format!(
-            "  last digits  a change of {} of {} by 1e-9 of it moves {} by {} at the end of beat {}: the most of {}",
+    let mut label = "last digits";
+    let worst = report.levers.iter().filter_map(|lever| Some((lever, lever.worst()?)));
+    for (index, (lever, (beat, shift))) in worst.take(LEVERS).enumerate() {
+        if index > 0 && shift.px < LEAST_PX {
+            break;
+        }
+        let of = if index == 0 { format!(": the most of {}", counted(report)) } else { String::new() };
+        line(format!(
+            "  {label:<11}  {} of {}, changed by a billionth, moves {} by {} in beat {}{of}",
             lever.quantity,
             name(show, lever.body),
             name(show, shift.body),
             px(shift.px),
-            beat + 1,
-            counted(report)
-        ),
-        None => {
-            format!("  last digits  nothing is in the picture at the ends of beats ({})", counted(report))
-        }
+            beat + 1
+        ));
+        label = "";
     }
 }
 
@@ -160,14 +167,14 @@ fn beats(show: &Show, report: &Report, line: &mut impl FnMut(String)) {
     let titles = show.scenario.beats.iter().map(|beat| beat.title.chars().count());
     let width = titles.max().unwrap_or(0).max(4);
     line(format!(
-        "  {:<4} {:>5}  {:<width$}  {:>12}  {:>12}  {:>10}  {:>14}  {:>9}",
-        "beat", "at", "title", "model from", "until", "off by, px", "1e-9 moves, px", "frame, ms"
+        "  {:<4} {:>5}  {:<width$}  {:>12}  {:>12}  {:>10}  {:>19}  {:>9}",
+        "beat", "at", "title", "model from", "until", "off by, px", "billionth moves, px", "frame, ms"
     ));
     let all = show.scenario.beats.iter().zip(&show.plan.beats).zip(&report.beats);
     for (index, ((beat, planned), report_of)) in all.enumerate() {
         let moved = report_of.lever.and_then(|lever| *report.levers.get(lever)?.shifts.get(index)?);
         line(format!(
-            "  {:>4} {:>5}  {:<width$}  {:>12}  {:>12}  {:>10}  {:>14}  {:>9.1}",
+            "  {:>4} {:>5}  {:<width$}  {:>12}  {:>12}  {:>10}  {:>19}  {:>9.1}",
             index + 1,
             minutes(planned.show_s),
             beat.title,
