@@ -5,11 +5,13 @@
 #![allow(clippy::expect_used, reason = "what a test needs and lacks fails it")]
 
 use fallaround_core::check::{Proof, Weight};
+use fallaround_core::conic::semi_major_from_state;
 use fallaround_core::ephemeris::events::{self, Query};
 use fallaround_core::ephemeris::osculating::osculating;
 use fallaround_core::math::float::atan2;
 use fallaround_core::scenario::{BodyId, EventKind, dated};
 use fallaround_core::show::{Action, Clock, Rehearsal, Show};
+use fallaround_core::swarm::Cursor;
 use fallaround_core::sweep;
 use std::fs;
 use std::path::Path;
@@ -243,4 +245,94 @@ fn planets_today_says_true_numbers() {
     assert!((4.0..4.3).contains(&rounds("Mercury")), "four times and a bit: {}", rounds("Mercury"));
     assert!((1.55..1.7).contains(&rounds("Venus")), "once and a half and a little more: {}", rounds("Venus"));
     assert!((0.5..0.56).contains(&rounds("Mars")), "a little past half way: {}", rounds("Mars"));
+}
+
+/// Longitude, rad, and distance, km, of every tracer of a swarm at an instant, from the body that it is about.
+fn places(show: &Show, swarm: usize, t_s: f64) -> Vec<(f64, f64)> {
+    let mut cursor = Cursor::new(&show.initial, swarm);
+    assert!(cursor.seek(&show.swarms[swarm], &show.ephemeris, t_s, usize::MAX));
+    let at = cursor.positions();
+    assert!(!at.gone.contains(&true), "all of them are there");
+    at.x.iter().zip(at.y).map(|(x, y)| (atan2(*y, *x), (x * x + y * y).sqrt() / 1e3)).collect()
+}
+
+/// Least and greatest.
+fn range(values: impl Iterator<Item = f64>) -> (f64, f64) {
+    values.fold((f64::INFINITY, f64::NEG_INFINITY), |(a, b), v| (a.min(v), b.max(v)))
+}
+
+#[test]
+fn ten_thousand_falls_says_true_numbers_of_what_breaks() {
+    let show = show("ten-thousand-falls.toml");
+    let (ammel, kestrel) = (body(&show, "Ammel"), body(&show, "Kestrel"));
+    let counts: Vec<usize> = show.swarms.iter().map(|path| path.tracers()).collect();
+    assert_eq!(counts, [2500, 7500]);
+    let conic = osculating(&show.ephemeris, &show.initial, kestrel, Some(ammel), 0.0).expect("a conic");
+    let period_s = conic.period_s().expect("a closed orbit");
+    said("once round, min", period_s / 60.0, 286.0, 1.0);
+    let km_h = speed(&show, "Kestrel", "Ammel", 0.0) * 3.6;
+    said("its speed, km/h", km_h, 51_000.0, 1000.0);
+    let pieces = &show.initial.swarms[0];
+    let machine = show.ephemeris.relative(kestrel, ammel, 0.0).expect("a state").vel;
+    let (_, fastest) = range(pieces.vel.iter().map(|vel| (vel - machine).norm() * 3.6));
+    said("the fastest piece, km/h", fastest, 900.0, 20.0);
+    assert!(fastest / km_h < 0.02);
+    let gm = show.initial.bodies[ammel.0].gm_m3_s2;
+    let periods = pieces.pos.iter().zip(&pieces.vel).map(|(pos, vel)| {
+        let a = semi_major_from_state(*pos, *vel, gm);
+        std::f64::consts::TAU * a * (a / gm).sqrt()
+    });
+    let (first_s, last_s) = range(periods);
+    said("the last is late, min", (last_s - period_s) / 60.0, 15.0, 2.0);
+    said("the first is early, min", (period_s - first_s) / 60.0, 13.0, 1.0);
+    let rounds = 2.0 * DAY_S / first_s - 2.0 * DAY_S / last_s;
+    // "Two days", as it is said: to an hour.
+    assert!((rounds - 1.0).abs() < 1.0 / 48.0, "in two days the first gain {rounds} rounds on the last");
+    // Where it broke, the ring is a thread; on the far side it is broad.
+    let places_then = places(&show, 0, show.plan.beats[4].until_s);
+    let width_at = |lon: f64| {
+        let near = places_then.iter().filter(|(l, _)| (l.abs() - lon).abs() < 0.03).map(|(_, r)| *r);
+        let (inner, outer) = range(near);
+        outer - inner
+    };
+    let (thread, broad) = (width_at(0.0), width_at(std::f64::consts::PI));
+    assert!(thread < 150.0 && broad > 3000.0, "{thread:.0} km and {broad:.0} km");
+    let mut around: Vec<f64> = places(&show, 0, show.plan.beats[3].until_s).iter().map(|(l, _)| *l).collect();
+    around.sort_by(f64::total_cmp);
+    let gap = range(around.windows(2).map(|w| w[1] - w[0])).1;
+    assert!(gap < 0.15, "a ring has no gap: {gap} rad");
+}
+
+#[test]
+fn ten_thousand_falls_says_true_numbers_of_the_ring_and_its_moon() {
+    let show = show("ten-thousand-falls.toml");
+    let ammel = body(&show, "Ammel");
+    said("Quick, km/h", speed(&show, "Quick", "Ammel", 0.0) * 3.6, 43_000.0, 1000.0);
+    said("Slow, km/h", speed(&show, "Slow", "Ammel", 0.0) * 3.6, 38_000.0, 1000.0);
+    // The moon pulls at both, so it comes out even to some degrees.
+    let longitude = |name: &str, t_s: f64| {
+        let pos = show.ephemeris.relative(body(&show, name), ammel, t_s).expect("a state").pos;
+        atan2(pos.y, pos.x)
+    };
+    let end_s = show.plan.beats[6].until_s;
+    let (quick, slow) = (longitude("Quick", end_s), longitude("Slow", end_s));
+    assert!(quick.abs() < 0.1 && slow.abs() < 0.1, "on one line again: {quick} and {slow} rad");
+    let (inner, outer) = range(places(&show, 1, 0.0).into_iter().map(|(_, r)| r));
+    let moon = show.ephemeris.relative(body(&show, "Tyrn"), ammel, 0.0).expect("a state").pos.norm() / 1e3;
+    said("inner edge, km", inner, 55_000.0, 20.0);
+    said("from the ring to the moon, km", moon - outer, 7000.0, 20.0);
+    // The edge swings by thousands of kilometres after the moon has passed, by none before.
+    let end_s = show.plan.beats[7].until_s;
+    let edge = |t_s: f64| {
+        let mut outermost = [0.0_f64; 60];
+        for (longitude, r) in places(&show, 1, t_s) {
+            let starts = |i: u32| std::f64::consts::PI * (f64::from(i) / 30.0 - 1.0);
+            let part = (1..60).filter(|i| longitude >= starts(*i)).count();
+            outermost[part] = outermost[part].max(r);
+        }
+        let (least, most) = range(outermost.into_iter());
+        most - least
+    };
+    let (before, after) = (edge(0.0), edge(end_s));
+    assert!(before < 800.0 && after > 2000.0, "{before:.0} km and {after:.0} km");
 }

@@ -1,12 +1,14 @@
-//! A show from the worker to the page: its ephemeris as numbers, and the rest made again from the text.
+//! A show from the worker to the page: its paths as numbers, and the rest made again from the text.
 //!
 //! Reading, resolving and planning are exact functions of the text and the ephemeris, and quick; only the
-//! ephemeris takes long to make. So it alone travels.
+//! ephemeris and the paths of swarms take long to make. So they alone travel.
 
 use fallaround_core::ephemeris::{ChunkError, Ephemeris};
+use fallaround_core::initial::TimedChange;
 use fallaround_core::resolve;
-use fallaround_core::scenario;
+use fallaround_core::scenario::{self, ChangeTime, Scenario};
 use fallaround_core::show::{Limits, Need, Show, planner};
+use fallaround_core::swarm::{self, SwarmPath};
 
 /// Why a show couldn't be put together again.
 #[derive(Debug, Clone, PartialEq)]
@@ -31,19 +33,89 @@ impl std::fmt::Display for CarryError {
 
 impl std::error::Error for CarryError {}
 
-/// The ephemeris of a show, to be sent.
+/// The paths of a show, to be sent: how many numbers the ephemeris has, its numbers, so for the times of its changes, s, and for each
+/// swarm.
 pub fn pack(show: &Show) -> Vec<f64> {
-    show.ephemeris.to_numbers()
+    let ephemeris = show.ephemeris.to_numbers();
+    let swarms = show.swarms.iter().map(|path| path.chunk_since(swarm::Mark::default()).into_numbers());
+    let mut numbers = Vec::new();
+    let changes = show.initial.changes.iter().map(|change| change.t_s).collect();
+    for part in [ephemeris, changes].into_iter().chain(swarms) {
+        numbers.push(number_from(part.len()));
+        numbers.extend(part);
+    }
+    numbers
 }
 
-/// The show of a text and of the ephemeris that was made from it.
+/// The parts of what was packed; `None` where it isn't whole.
+fn parts(mut rest: &[f64]) -> Option<Vec<Vec<f64>>> {
+    let mut parts = Vec::new();
+    while let [count, tail @ ..] = rest {
+        let (part, after) = tail.split_at_checked(count_from(*count)?)?;
+        parts.push(part.to_vec());
+        rest = after;
+    }
+    Some(parts)
+}
+
+/// The changes of a scenario from the times of all, in order.
+fn changes(scenario: &Scenario, mut times_s: Vec<f64>) -> Option<Vec<TimedChange>> {
+    for change in &scenario.changes {
+        if let ChangeTime::Time(at) = change.at {
+            let index = times_s.iter().position(|t_s| t_s.to_bits() == at.s().to_bits())?;
+            times_s.remove(index);
+        }
+    }
+    // What is left was found, in the order of the file.
+    let mut found_s = times_s.into_iter();
+    let found_s: Vec<Option<f64>> = scenario
+        .changes
+        .iter()
+        .map(|change| if matches!(change.at, ChangeTime::Time(_)) { None } else { found_s.next() })
+        .collect();
+    Some(resolve::timed(scenario, &found_s))
+}
+
+#[expect(clippy::cast_precision_loss, reason = "counts of things in memory are exact in f64")]
+fn number_from(count: usize) -> f64 {
+    count as f64
+}
+
+#[expect(
+    clippy::cast_possible_truncation,
+    clippy::cast_sign_loss,
+    reason = "checked to be a whole number that fits"
+)]
+fn count_from(number: f64) -> Option<usize> {
+    (number >= 0.0 && number <= f64::from(u32::MAX) && number.fract() == 0.0).then_some(number as usize)
+}
+
+/// The show of a text and of the paths that were made from it.
 ///
 /// # Errors
 /// [`CarryError`] when the two don't belong together.
 pub fn unpack(text: &str, numbers: &[f64]) -> Result<Show, CarryError> {
     let scenario = scenario::parse(text).scenario.ok_or(CarryError::OtherText)?;
-    let Ok(initial) = resolve::resolve(&scenario) else { return Err(CarryError::OtherText) };
-    let ephemeris = Ephemeris::from_numbers(numbers).map_err(CarryError::Numbers)?;
+    let Ok(mut initial) = resolve::resolve(&scenario) else { return Err(CarryError::OtherText) };
+    let parts = parts(numbers).ok_or(CarryError::Numbers(ChunkError::Malformed))?;
+    if parts.len() != 2 + initial.swarms.len() {
+        return Err(CarryError::OtherText);
+    }
+    let mut parts = parts.into_iter();
+    let of_bodies = parts.next().unwrap_or_default();
+    let ephemeris = Ephemeris::from_numbers(&of_bodies).map_err(CarryError::Numbers)?;
+    let times_s = parts.next().unwrap_or_default();
+    initial.changes = changes(&scenario, times_s).ok_or(CarryError::OtherText)?;
+    let mut swarms = Vec::new();
+    for (part, start) in parts.zip(&initial.swarms) {
+        let chunk = swarm::Chunk::from_numbers(part).map_err(CarryError::Numbers)?;
+        let mut path = SwarmPath::default();
+        path.append(&chunk).map_err(CarryError::Numbers)?;
+        if path.tracers() != start.pos.len() {
+            return Err(CarryError::OtherText);
+        }
+        swarms.push(path);
+    }
     if ephemeris.bodies() != initial.bodies.len() {
         return Err(CarryError::OtherText);
     }
@@ -56,7 +128,7 @@ pub fn unpack(text: &str, numbers: &[f64]) -> Result<Show, CarryError> {
         made => made,
     };
     match plan {
-        Ok(plan) => Ok(Show { scenario, initial, ephemeris, plan }),
+        Ok(plan) => Ok(Show { scenario, initial, ephemeris, swarms, plan }),
         Err(_) => Err(CarryError::TooShort),
     }
 }

@@ -33,6 +33,8 @@ enum Kept {
     Area { points: Vec<f64>, fill: Paint },
     #[serde(rename = "d")]
     Disc { at: [f64; 2], radius: f64, fill: Option<Paint>, rim: Option<KeptStroke> },
+    #[serde(rename = "p")]
+    Points { points: Vec<f64>, size: f64, colour: Paint },
     #[serde(rename = "t")]
     Text { at: [f64; 2], text: String, size: f64, weight: u16, colour: Paint, anchor: u8, edge: f64 },
 }
@@ -69,6 +71,7 @@ pub fn small(list: &DisplayList, least_line: f64, least_disc: f64) -> DisplayLis
             // Hatches would close up if they were drawn as heavy as paths.
             Shape::Segments { stroke, .. } => stroke.width = stroke.width.max(least_line / 2.0),
             Shape::Disc { radius, .. } => *radius = radius.max(least_disc),
+            Shape::Points { size, .. } => *size = size.max(least_line / 2.0),
             Shape::Area { .. } | Shape::Text { .. } => {}
         }
         item
@@ -78,8 +81,19 @@ pub fn small(list: &DisplayList, least_line: f64, least_disc: f64) -> DisplayLis
 }
 
 const fn keeps_when_small(tag: Tag) -> bool {
-    matches!(tag, Tag::Body(BodyId(_)) | Tag::Tail(_) | Tag::Line(_) | Tag::Sector(_, _) | Tag::Arrow(_))
+    matches!(
+        tag,
+        Tag::Body(BodyId(_))
+            | Tag::Tail(_)
+            | Tag::Line(_)
+            | Tag::Sector(_, _)
+            | Tag::Arrow(_)
+            | Tag::Swarm(_)
+    )
 }
+
+/// Most points of a swarm in a kept picture: enough to see how it lies.
+const MOST_POINTS: usize = 3000;
 
 fn tenth(value: f64) -> f64 {
     (value * 10.0).round() / 10.0
@@ -132,6 +146,12 @@ fn keep(shape: &Shape) -> Kept {
         Shape::Disc { at, radius, fill, rim } => {
             Kept::Disc { at: *at, radius: *radius, fill: fill.map(paint), rim: rim.as_ref().map(keep_stroke) }
         }
+        Shape::Points { points, size, colour } => {
+            let step = points.len().div_ceil(MOST_POINTS).max(1);
+            let few = points.iter().step_by(step);
+            let points = few.flatten().map(|value| tenth(*value)).collect();
+            Kept::Points { points, size: *size, colour: paint(*colour) }
+        }
         Shape::Text { at, text, size, weight, colour, anchor, edge } => Kept::Text {
             at: *at,
             text: text.clone(),
@@ -164,6 +184,9 @@ fn unkeep(kept: &Kept) -> Shape {
             fill: fill.map(colour),
             rim: rim.as_ref().map(unkeep_stroke),
         },
+        Kept::Points { points, size, colour: ink } => {
+            Shape::Points { points: unflatten(points), size: *size, colour: colour(*ink) }
+        }
         Kept::Text { at, text, size, weight, colour: ink, anchor, edge } => Shape::Text {
             at: *at,
             text: text.clone(),

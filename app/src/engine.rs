@@ -26,7 +26,7 @@ const SMALL_AT: f64 = 0.85;
 pub struct Answer {
     /// The message.
     pub message: FromWorker,
-    /// An ephemeris, or nothing.
+    /// The paths of a show, or nothing.
     pub numbers: Vec<f64>,
 }
 

@@ -47,6 +47,36 @@ fn a_show_arrives_whole_and_its_progress_never_goes_back() {
 }
 
 #[test]
+fn swarms_travel_with_their_show() {
+    let text = SHIPPED.replacen(
+        "[[beat]]",
+        "[[body]]\nname = \"Belt\"\nswarm = { belt = \"Orla\", from = \"2 au\", to = \"3 au\", count = 30 }\n\n[[beat]]",
+        1,
+    );
+    let show = Rehearsal::whole(&text).unwrap();
+    let numbers = carry::pack(&show);
+    let carried = carry::unpack(&text, &numbers).unwrap();
+    assert_eq!(carried.swarms, show.swarms);
+    assert_eq!(Fingerprint::of(&text, &carried), Fingerprint::of(&text, &show));
+    assert!(carry::unpack(&text, &numbers[..numbers.len() - 1]).is_err(), "cut off");
+    assert!(carry::unpack(SHIPPED, &numbers).is_err(), "a swarm of another text");
+    let without = carry::pack(&Rehearsal::whole(SHIPPED).unwrap());
+    assert!(carry::unpack(&text, &without).is_err(), "a swarm is missing");
+}
+
+#[test]
+fn changes_that_wait_for_an_event_travel_with_their_times() {
+    let changes = "[[change]]\nat = { event = \"periapsis of Fenn\" }\nkick = \"Fenn\"\nspeed = \"10 m/s\"\n\n\
+        [[change]]\nat = \"5 d\"\nkick = \"Fenn\"\nspeed = \"1 m/s\"\n\n[[beat]]";
+    let text = SHIPPED.replacen("[[beat]]", changes, 1);
+    let show = Rehearsal::whole(&text).unwrap();
+    assert_eq!(show.initial.changes.len(), 2);
+    let carried = carry::unpack(&text, &carry::pack(&show)).unwrap();
+    assert_eq!(carried.initial, show.initial);
+    assert_eq!(carried.plan, show.plan);
+}
+
+#[test]
 fn stop_is_heard_between_turns() {
     let mut engine = Engine::default();
     engine.handle(ToWorker::Rehearse { run: 1, text: SHIPPED.into() });

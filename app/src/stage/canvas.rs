@@ -84,7 +84,7 @@ fn still(canvas: &HtmlCanvasElement, list: &DisplayList) {
     super::house::set_size(canvas, width_px, height_px);
     // Setting the size has reset the canvas, so this is the whole transform; a canvas with a size takes it.
     drop(ctx.scale(width_px / list.width, height_px / list.height));
-    paint::paint(&ctx, list, 0.0);
+    paint::paint(&ctx, list, 0.0, None);
 }
 
 fn context(canvas: &HtmlCanvasElement) -> Option<CanvasRenderingContext2d> {

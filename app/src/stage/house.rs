@@ -1,6 +1,7 @@
 //! One running show: its clock, its pictures, and the blackout over them.
 
 use super::paint;
+use super::points::Pixels;
 use super::readout::{self, Readout};
 use crate::dom;
 use crate::drawing::Drawing;
@@ -18,6 +19,8 @@ const BLACKOUT_S: f64 = 0.4;
 const FRAME_MOST_S: f64 = 0.5;
 /// Show time into a beat after which the next one is prepared, seconds.
 const PREPARE_AFTER_S: f64 = 2.0;
+/// Steps of tracers in a frame: several times what 10,000 of them need at ordinary paces.
+const FRAME_STEPS: usize = 200_000;
 /// The picture that is kept for the start page, px.
 const KEPT_PX: [f64; 2] = [1120.0, 628.0];
 
@@ -38,11 +41,14 @@ pub struct House {
     language: usize,
     last_ms: Option<f64>,
     composer: Option<(Screen, Composer)>,
+    /// Whether options have changed since the composer was made.
+    stale: bool,
     /// The beat whose successor has been prepared.
     prepared: Option<usize>,
     list: DisplayList,
     moment: Option<Moment>,
     painted: Option<f64>,
+    pixels: Pixels,
 }
 
 impl House {
@@ -68,10 +74,12 @@ impl House {
             language,
             last_ms: None,
             composer: None,
+            stale: false,
             prepared: None,
             list: DisplayList::default(),
             moment: None,
             painted: None,
+            pixels: Pixels::default(),
         }
     }
 
@@ -117,7 +125,7 @@ impl House {
         let more = self.language_after().is_some();
         if more {
             self.language = (self.language + 1) % self.languages.len();
-            self.composer = None;
+            self.stale = true;
         }
         more
     }
@@ -132,7 +140,7 @@ impl House {
         if self.reduced_motion != reduced {
             self.reduced_motion = reduced;
             self.clock.set_calm(reduced);
-            self.composer = None;
+            self.stale = true;
         }
     }
 
@@ -170,7 +178,7 @@ impl House {
         self.list = list;
         self.moment = Some(moment);
         if !same {
-            paint::paint(ctx, &self.list, self.dark);
+            paint::paint(ctx, &self.list, self.dark, Some(&mut self.pixels));
             self.painted = Some(self.dark);
         }
     }
@@ -178,10 +186,16 @@ impl House {
     fn compose(&mut self, screen: Screen, moment: &Moment) -> DisplayList {
         let options = Options { language: self.language().to_owned(), reduced_motion: self.reduced_motion };
         let show = &self.show;
-        let stale = self.composer.as_ref().is_none_or(|(made_for, _)| *made_for != screen);
-        if stale {
+        let fits = |made_for: &Screen| *made_for == screen && !self.stale;
+        if !self.composer.as_ref().is_some_and(|(made_for, _)| fits(made_for)) {
             self.prepared = None;
-            self.composer = Some((screen, Composer::new(show, screen, options)));
+            let mut composer = match &self.composer {
+                Some((_, other)) => other.for_other(show, screen, options),
+                None => Composer::new(show, screen, options),
+            };
+            composer.work_at_most(FRAME_STEPS);
+            self.composer = Some((screen, composer));
+            self.stale = false;
         }
         let Some((_, composer)) = &mut self.composer else { return DisplayList::default() };
         let list = composer.compose(show, moment);
@@ -220,7 +234,11 @@ impl House {
         let screen = Screen { width_px: KEPT_PX[0], height_px: KEPT_PX[1], density: 1.0 };
         let options = Options { language: self.language().to_owned(), reduced_motion: true };
         let moment = self.clock.moment(&self.show.plan);
-        Drawing::of(&Composer::new(&self.show, screen, options).compose(&self.show, &moment))
+        let mut composer = match &self.composer {
+            Some((_, other)) => other.for_other(&self.show, screen, options),
+            None => Composer::new(&self.show, screen, options),
+        };
+        Drawing::of(&composer.compose(&self.show, &moment))
     }
 
     /// The last composed picture as JSON: where the clock is, and for every body drawn its centre on the canvas (px) and

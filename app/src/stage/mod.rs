@@ -7,6 +7,7 @@ pub mod canvas;
 pub mod frame_loop;
 pub mod house;
 pub mod paint;
+mod points;
 pub mod readout;
 
 pub use canvas::{Picture, StageCanvas};

@@ -3,20 +3,26 @@
 //! It knows nothing of orbits. Lines of about one device pixel are drawn at exactly one: without a graphics
 //! processor those are many times cheaper than slightly wider ones.
 
+use super::points::Pixels;
 use fallaround_core::picture::{Anchor, Colour, DisplayList, Shape, Stroke};
 use web_sys::CanvasRenderingContext2d;
 
 /// The sans, as `tokens.css` names it.
 const FACE: &str = "\"Atkinson Next\", system-ui, sans-serif";
 
-/// Paints a picture at the canvas's own pixels, then darkens it: `dark` 0 leaves it, 1 is black.
-pub fn paint(ctx: &CanvasRenderingContext2d, list: &DisplayList, dark: f64) {
+/// Paints a picture at the canvas's own pixels, then darkens it: `dark` 0 leaves it, 1 is black. With `pixels`, the points that
+/// come first are written there; without, or on a canvas that is scaled, they are drawn as the rest is.
+pub fn paint(ctx: &CanvasRenderingContext2d, list: &DisplayList, dark: f64, pixels: Option<&mut Pixels>) {
     ctx.set_global_alpha(1.0);
     if dark < 1.0 {
         ctx.set_line_join("round");
-        ctx.set_fill_style_str(&css(list.ground));
-        ctx.fill_rect(0.0, 0.0, list.width, list.height);
-        for item in &list.items {
+        let size = [list.width, list.height];
+        let done = pixels.map_or(0, |pixels| pixels.paint(ctx, size, list.ground, &list.items));
+        if done == 0 {
+            ctx.set_fill_style_str(&css(list.ground));
+            ctx.fill_rect(0.0, 0.0, list.width, list.height);
+        }
+        for item in list.items.iter().skip(done) {
             shape(ctx, &item.shape, list.ground);
         }
     }
@@ -63,6 +69,14 @@ fn shape(ctx: &CanvasRenderingContext2d, shape: &Shape, ground: Colour) {
                     stroke(ctx, rim);
                 }
             }
+        }
+        Shape::Points { points, size, colour } => {
+            ctx.begin_path();
+            for [x, y] in points {
+                ctx.rect(x - 0.5 * size, y - 0.5 * size, *size, *size);
+            }
+            ctx.set_fill_style_str(&css(*colour));
+            ctx.fill();
         }
         Shape::Text { at, text, size, weight, colour, anchor, edge } => {
             ctx.set_font(&format!("{weight} {size}px {FACE}"));

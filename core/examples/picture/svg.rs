@@ -44,6 +44,14 @@ fn shape(shape: &Shape, ground: Colour) -> String {
             let rim = rim.as_ref().map(stroked).unwrap_or_default();
             format!("<circle cx=\"{:.2}\" cy=\"{:.2}\" r=\"{radius:.2}\" {fill} {rim}/>", at[0], at[1])
         }
+        Shape::Points { points, size, colour } => {
+            let half = 0.5 * size;
+            let square = |p: &[f64; 2]| {
+                format!("M{:.2},{:.2}h{size:.2}v{size:.2}h-{size:.2}z", p[0] - half, p[1] - half)
+            };
+            let d: String = points.iter().map(square).collect();
+            format!("<path d=\"{d}\" fill=\"{}\" fill-opacity=\"{:.3}\"/>", hex(*colour), opacity(*colour))
+        }
         Shape::Text { at, text, size, weight, colour, anchor, edge } => {
             let anchor = match anchor {
                 Anchor::Start => "start",

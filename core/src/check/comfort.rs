@@ -55,7 +55,7 @@ struct Moves {
 
 impl Comfort {
     pub(super) fn new(show: &Show) -> Self {
-        let composer = Composer::new(show, SMALL, Options::default());
+        let composer = Composer::new(show, SMALL, Options::default()).without_swarms();
         Self { clock: Player::new(&show.plan), composer, meter: None, hammered: None }
     }
 

@@ -165,7 +165,7 @@ impl Checking {
         let todo = Todo::Second(Second::new(&show));
         let report = Report {
             beats: vec![BeatReport::default(); show.plan.beats.len()],
-            bytes: show.ephemeris.bytes(),
+            bytes: show.ephemeris.bytes() + show.swarms.iter().map(|path| path.bytes()).sum::<usize>(),
             most_bytes: SHOW_BYTES,
             ..Report::default()
         };

@@ -19,6 +19,10 @@ const PIXEL_MS: f64 = 0.5e-6;
 /// A line of text with its edge, ms.
 const TEXT_MS: f64 = 0.02;
 
+/// An image of the whole picture for the points of swarms, and each of them, ms.
+const IMAGE_MS: f64 = 1.0;
+const DOT_MS: f64 = 2e-5;
+
 /// Time to paint a picture, ms.
 pub(super) fn paint_ms(list: &DisplayList) -> f64 {
     list.items.iter().map(|item| shape_ms(&item.shape, list)).fold(CLEAR_MS, |sum, one| sum + one)
@@ -37,6 +41,7 @@ fn shape_ms(shape: &Shape, list: &DisplayList) -> f64 {
         Shape::Disc { radius, .. } => {
             DISC_MS + (std::f64::consts::PI * radius * radius).min(whole) * PIXEL_MS
         }
+        Shape::Points { points, .. } => IMAGE_MS + count(points.len()) * DOT_MS,
         Shape::Text { .. } => TEXT_MS,
     }
 }

@@ -8,8 +8,10 @@ use super::marks::area::AreaLabel;
 use super::marks::arrow::{self, Kind};
 use super::marks::foot::Foot;
 use super::marks::sector::{self, Sectors};
+use super::marks::swarm::Tracers;
 use super::marks::{self, apsides, body, conic, foot, path, tail, trail};
 use super::scene::{House, Scene, Spot, Words, stroke};
+use super::scouts::Scouts;
 use super::words::Language;
 use super::{Options, Screen, labels, look, passage};
 use crate::scenario::Mark;
@@ -22,6 +24,8 @@ pub struct Composer {
     house: House,
     options: Options,
     layouts: Vec<Layout>,
+    tracers: Tracers,
+    scouts: Scouts,
 }
 
 /// Layouts kept: the beat on show, the one to come, and those whose captions are on their way out.
@@ -30,9 +34,27 @@ const LAYOUTS_KEPT: usize = 6;
 impl Composer {
     /// For a show that is ready (or still being integrated: what isn't covered yet stands at its start).
     pub fn new(show: &Show, screen: Screen, options: Options) -> Self {
-        let own = options.language.is_empty();
-        let language = Language::of(if own { &show.scenario.language } else { &options.language });
-        Self { house: House { frame: Frame::new(screen), language }, options, layouts: Vec::new() }
+        let house = house(show, screen, &options);
+        Self { house, options, layouts: Vec::new(), tracers: Tracers::new(show), scouts: Scouts::new(show) }
+    }
+
+    /// For another window or other options of the same show; what this one has worked out of swarms goes along.
+    pub fn for_other(&self, show: &Show, screen: Screen, options: Options) -> Self {
+        let (tracers, scouts) = (self.tracers.clone(), self.scouts.clone());
+        Self { house: house(show, screen, &options), options, layouts: Vec::new(), tracers, scouts }
+    }
+
+    /// The same without the points of swarms, for whom they don't matter.
+    #[must_use]
+    pub fn without_swarms(mut self) -> Self {
+        self.tracers.leave();
+        self
+    }
+
+    /// Lets a picture take about so many steps of tracers, of all swarms together. Those of a swarm that are not where they should
+    /// be by then are not drawn in that picture. Without this, all are always drawn.
+    pub const fn work_at_most(&mut self, tracer_steps: usize) {
+        self.tracers.work_at_most(tracer_steps);
     }
 
     /// Decides what a beat entered so will need, so that its first frame costs no more than the others.
@@ -46,7 +68,7 @@ impl Composer {
             Some(index) => index,
             None => {
                 let beat = show.scenario.beats.get(key.beat)?;
-                let layout = Layout::new(show, beat, key, self.house, &self.options);
+                let layout = Layout::new(show, beat, key, self.house, &self.options, &self.scouts);
                 if self.layouts.len() >= LAYOUTS_KEPT {
                     self.layouts.remove(0);
                 }
@@ -92,6 +114,7 @@ impl Composer {
             scene.camera = camera;
         }
         let spots = draw_marks(&mut scene, &layout.foot);
+        let words_from = scene.items.len();
         if frame.has_text {
             let areas = layout.area_labels(&scene);
             draw_areas(&mut scene, &areas);
@@ -105,6 +128,7 @@ impl Composer {
             }
             foot::draw(&mut scene, &layout.foot, moment.pace, moment.held);
         }
+        self.tracers.draw(&mut scene, &spots, words_from);
         scene.items
     }
 
@@ -133,6 +157,12 @@ impl Composer {
         let seen = wanted.into_iter().filter(|w| w.1 > 0.0);
         seen.filter_map(|(key, opacity)| Some((self.layout(show, key)?.caption.clone()?, opacity))).collect()
     }
+}
+
+fn house(show: &Show, screen: Screen, options: &Options) -> House {
+    let own = options.language.is_empty();
+    let language = Language::of(if own { &show.scenario.language } else { &options.language });
+    House { frame: Frame::new(screen), language }
 }
 
 /// Show time in which the words of the beat before go, seconds.
@@ -201,7 +231,7 @@ fn draw_areas(scene: &mut Scene<'_>, labels: &[AreaLabel]) {
 fn is_finite(shape: &Shape) -> bool {
     let all = |points: &[[f64; 2]]| points.iter().flatten().all(|v| v.is_finite());
     match shape {
-        Shape::Line { points, .. } | Shape::Area { points, .. } => all(points),
+        Shape::Line { points, .. } | Shape::Area { points, .. } | Shape::Points { points, .. } => all(points),
         Shape::Segments { segments, .. } => segments.iter().all(|s| all(s)),
         Shape::Disc { at, radius, .. } => all(&[*at]) && radius.is_finite(),
         Shape::Text { at, size, .. } => all(&[*at]) && size.is_finite(),
@@ -211,3 +241,7 @@ fn is_finite(shape: &Shape) -> bool {
 #[cfg(test)]
 #[path = "compose_tests.rs"]
 mod tests;
+
+#[cfg(test)]
+#[path = "swarm_tests.rs"]
+mod swarm_tests;

@@ -84,6 +84,13 @@ impl Emptiness {
         }
     }
 
+    /// Counts the cells of points: as lines do.
+    pub fn mark_points(&mut self, points: &[Px]) {
+        for point in points {
+            self.mark(*point, 1.0);
+        }
+    }
+
     /// Counts what an item covers. Words weigh most, then bodies, arrows and hatches, then lines.
     pub fn mark_item(&mut self, item: &Item) {
         match &item.shape {
@@ -104,6 +111,7 @@ impl Emptiness {
                 }
             }
             Shape::Disc { at, radius, .. } => self.mark_disc(*at, *radius),
+            Shape::Points { points, .. } => self.mark_points(points),
             Shape::Text { at, text, size, weight, anchor, .. } => {
                 let width = type_metrics::width(text, *size, *weight);
                 let left = match anchor {

@@ -216,6 +216,7 @@ pub(crate) fn show(
         },
         ephemeris: ephemeris(gms, &paths, covers_s[0], covers_s[1], step_s),
         initial,
+        swarms: Vec::new(),
         plan: Plan { beats: planned, covers_from_s: covers_s[0], covers_until_s: covers_s[1] },
     }
 }

@@ -34,6 +34,8 @@ pub enum Key {
     Body(usize),
     /// The n-th apsis of a body.
     Apsis(usize, usize),
+    /// A swarm, by index.
+    Swarm(usize),
 }
 
 /// A label to be placed.

@@ -10,8 +10,9 @@ use super::marks::area::{self, AreaLabel, Areas};
 use super::marks::arrow::{self, Kind};
 use super::marks::foot::Foot;
 use super::marks::readout::{self, Reading};
-use super::marks::{apsides, body, foot, tail};
+use super::marks::{apsides, body, foot, swarm, tail};
 use super::scene::{House, Scene, Spot};
+use super::scouts::Scouts;
 use super::view::Camera;
 use super::wording::Grain;
 use super::{Options, compose, look};
@@ -22,6 +23,8 @@ use crate::show::{Left, Moment, Show};
 const BODY_LOOKS: u32 = 120;
 /// Instants at which all of its marks are.
 const MARK_LOOKS: u32 = 4;
+/// Every so many of them, tracers are too.
+const SCOUTS_EVERY: u32 = 6;
 /// The most steps in which labels are placed; later instants have the last one's places.
 const MOST_STEPS: usize = 6000;
 /// How many steps past the planned end, or past the last one decided, are decided at once.
@@ -96,7 +99,14 @@ pub fn scene_at<'a>(show: &'a Show, beat: &'a Beat, key: LayoutKey, house: House
 
 impl Layout {
     /// Decides what can be decided once.
-    pub fn new(show: &Show, beat: &Beat, key: LayoutKey, house: House, options: &Options) -> Self {
+    pub fn new(
+        show: &Show,
+        beat: &Beat,
+        key: LayoutKey,
+        house: House,
+        options: &Options,
+        scouts: &Scouts,
+    ) -> Self {
         let frame = house.frame;
         let mut scene = scene_at(show, beat, key, house, key.beat_from_s);
         let (mut areas, area_words) =
@@ -130,7 +140,7 @@ impl Layout {
         }
         if frame.has_text {
             let text = caption::text_of(beat, &options.language, &show.scenario.language);
-            let empty = layout.look_round(show, beat, house);
+            let empty = layout.look_round(show, beat, house, scouts);
             layout.caption = text.map(|text| Caption::in_emptiness(&empty, text, &frame));
         }
         layout
@@ -142,7 +152,7 @@ impl Layout {
     }
 
     /// Looks at all that the beat will draw.
-    fn look_round(&mut self, show: &Show, beat: &Beat, house: House) -> Emptiness {
+    fn look_round(&mut self, show: &Show, beat: &Beat, house: House, scouts: &Scouts) -> Emptiness {
         let frame = house.frame;
         let mut empty = Emptiness::new(&frame);
         let first = scene_at(show, beat, self.key, house, self.key.beat_from_s);
@@ -151,6 +161,9 @@ impl Layout {
         for look in 0..=(if stretch > 0.0 { BODY_LOOKS } else { 0 }) {
             let scene = scene_at(show, beat, self.key, house, at(look, BODY_LOOKS));
             let spots = scene.spots();
+            if look % SCOUTS_EVERY == 0 {
+                empty.mark_points(&scouts.points(&scene));
+            }
             // Arrows and tails, which turn quickly.
             for [a, b] in self.obstacles(&scene, &spots, &[]).pieces {
                 empty.mark_piece(a, b, 2.0);
@@ -182,6 +195,7 @@ impl Layout {
             }
             if look == looks {
                 self.clutter = clutter(&scene, &frame);
+                self.clutter.extend(scouts.points(&scene));
             }
             for item in &scene.items {
                 empty.mark_item(item);
@@ -246,6 +260,7 @@ impl Layout {
                 }
             }
         }
+        blocks.extend(swarm::names(scene));
         blocks
     }
 

@@ -2,7 +2,7 @@
 //!
 //! Pixels are device pixels of the picture; y grows downwards. A painter needs no knowledge of orbits.
 
-use crate::scenario::BodyId;
+use crate::scenario::{BodyId, SwarmId};
 
 /// A whole picture.
 #[derive(Debug, Clone, PartialEq, Default)]
@@ -56,6 +56,8 @@ pub enum Tag {
     Arrow(BodyId),
     /// A number that belongs to a body.
     Number(BodyId),
+    /// The points of a swarm, or its name.
+    Swarm(SwarmId),
     /// The caption.
     Caption,
     /// Scale bar, date, pace.
@@ -113,6 +115,16 @@ pub enum Shape {
         fill: Option<Colour>,
         /// Rim.
         rim: Option<Stroke>,
+    },
+    /// Many small squares of one size and colour, with edges that may lie within pixels. They come first in a list, but for
+    /// those in front of something large.
+    Points {
+        /// The middle of each, px.
+        points: Vec<[f64; 2]>,
+        /// Length of a side, px.
+        size: f64,
+        /// Colour.
+        colour: Colour,
     },
     /// One line of text.
     Text {

@@ -15,6 +15,7 @@ pub mod marks;
 pub mod passage;
 pub mod sample;
 pub mod scene;
+pub mod scouts;
 pub mod type_metrics;
 pub mod view;
 pub mod wording;

@@ -2,6 +2,7 @@
 
 use super::Show;
 use crate::ephemeris::{Outcome, Track};
+use crate::swarm;
 use sha2::{Digest, Sha256};
 use std::fmt;
 
@@ -44,6 +45,11 @@ impl Fingerprint {
             };
             put_count(&mut hash, outcome);
             put(&mut hash, &[contact.t_s, contact.speed_m_s, contact.onto_gm_m3_s2]);
+        }
+        for swarm in &show.swarms {
+            let numbers = swarm.chunk_since(swarm::Mark::default()).into_numbers();
+            put_count(&mut hash, numbers.len());
+            put(&mut hash, &numbers);
         }
         Self(hash.finalize().into())
     }

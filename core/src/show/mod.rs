@@ -3,6 +3,7 @@
 use crate::ephemeris::Ephemeris;
 use crate::initial::InitialState;
 use crate::scenario::Scenario;
+use crate::swarm::SwarmPath;
 
 pub mod clock;
 pub mod fingerprint;
@@ -30,6 +31,8 @@ pub struct Show {
     pub initial: InitialState,
     /// How everything moves.
     pub ephemeris: Ephemeris,
+    /// How the tracers of each swarm move, as far as the plan covers.
+    pub swarms: Vec<SwarmPath>,
     /// When each beat starts, in show time and model time.
     pub plan: Plan,
 }

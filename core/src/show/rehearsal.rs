@@ -3,10 +3,16 @@
 use super::Show;
 use super::plan::Plan;
 use super::planner::{self, Limits, Need};
-use crate::ephemeris::{Ephemeris, Propagation};
+use crate::ephemeris::{Ephemeris, Propagation, SHOW_BYTES};
 use crate::initial::InitialState;
 use crate::resolve;
 use crate::scenario::{self, ChangeTime, Place, Problem, Scenario};
+use crate::swarm::{SNAPSHOT_BYTES, SwarmPath, SwarmRun};
+
+/// Steps of tracers that take about as long as one of the integrator.
+const TRACER_STEPS: usize = 400;
+/// Share of the work that swarms are taken for, where there are some.
+const SWARMS_SHARE: f64 = 0.5;
 
 /// A show being integrated.
 #[derive(Debug)]
@@ -24,6 +30,7 @@ pub struct Rehearsal {
     /// The largest share of the work reported so far.
     fraction: f64,
     plan: Option<Plan>,
+    swarms: Vec<SwarmRun>,
 }
 
 /// What a look at the ephemeris gave.
@@ -58,7 +65,7 @@ impl Rehearsal {
         let parsed = scenario::parse(text);
         let Some(scenario) = parsed.scenario else { return Err(parsed.problems) };
         let initial = resolve::resolve(&scenario)?;
-        let propagation = Propagation::new(&initial);
+        let propagation = propagation(&initial);
         Ok(Self {
             found_s: vec![None; scenario.changes.len()],
             scenario,
@@ -71,6 +78,7 @@ impl Rehearsal {
             from_s: 0.0,
             fraction: 0.0,
             plan: None,
+            swarms: Vec::new(),
         })
     }
 
@@ -105,7 +113,9 @@ impl Rehearsal {
     }
 
     fn step(&mut self, max_steps: usize) -> Result<(), Vec<Problem>> {
-        if self.plan.is_some() {
+        if let Some(plan) = &self.plan {
+            let (from_s, until_s) = (plan.covers_from_s, plan.covers_until_s);
+            self.grow_swarms(from_s, until_s, max_steps);
             return Ok(());
         }
         if let Some((t_s, _)) = self.want {
@@ -137,6 +147,8 @@ impl Rehearsal {
             Ok(Made::Plan(plan)) => {
                 self.check_changes(&plan)?;
                 self.plan = Some(plan);
+                let all = 0..self.initial.swarms.len();
+                self.swarms = all.map(|index| SwarmRun::new(&self.initial, index)).collect();
             }
             Ok(Made::Change(t_s)) => self.make_change(next.unwrap_or_default(), t_s)?,
             Err(Need::Until { t_s, beat }) => {
@@ -178,7 +190,7 @@ impl Rehearsal {
             *found = Some(t_s);
         }
         self.initial.changes = resolve::timed(&self.scenario, &self.found_s);
-        self.propagation = Propagation::new(&self.initial);
+        self.propagation = propagation(&self.initial);
         self.limits = Limits::NONE;
         Ok(())
     }
@@ -201,6 +213,27 @@ impl Rehearsal {
         Ok(())
     }
 
+    /// Tracers follow once it is known how far, in the field of an ephemeris that grows no more.
+    fn grow_swarms(&mut self, from_s: f64, until_s: f64, max_steps: usize) {
+        let eph = self.propagation.ephemeris();
+        let most = max_steps.saturating_mul(TRACER_STEPS);
+        for run in &mut self.swarms {
+            for t_s in [until_s, from_s] {
+                if !reaches(run.path(), t_s) {
+                    run.advance(eph, t_s, most);
+                    return;
+                }
+            }
+        }
+    }
+
+    /// Model time of all swarms that has been covered and that is to be, s.
+    fn swarm_times(&self, plan: &Plan) -> (f64, f64) {
+        let each = plan.covers_until_s - plan.covers_from_s;
+        let covered = self.swarms.iter().map(|run| run.path().until_s() - run.path().from_s());
+        (covered.sum(), each * self.swarms.iter().map(|_| 1.0).sum::<f64>())
+    }
+
     /// How far it has come.
     pub fn progress(&self) -> Progress {
         let beats = self.scenario.beats.len();
@@ -214,9 +247,21 @@ impl Rehearsal {
             }
             None => (0, 0.0, self.ephemeris().until_s()),
         };
-        let done = self.plan.is_some();
+        let done = self.plan.as_ref().is_some_and(|plan| {
+            self.swarms.iter().all(|run| {
+                [plan.covers_until_s, plan.covers_from_s].into_iter().all(|t_s| reaches(run.path(), t_s))
+            })
+        });
         let share = |count: usize| u32::try_from(count).map_or(0.0, f64::from);
-        let estimate = if done { 1.0 } else { (share(beat) + within) / (share(beats) + 1.0) };
+        let of_bodies = if self.initial.swarms.is_empty() { 1.0 } else { 1.0 - SWARMS_SHARE };
+        let estimate = match &self.plan {
+            _ if done => 1.0,
+            Some(plan) => {
+                let (covered_s, all_s) = self.swarm_times(plan);
+                of_bodies + (1.0 - of_bodies) * (covered_s / all_s).clamp(0.0, 1.0)
+            }
+            None => of_bodies * (share(beat) + within) / (share(beats) + 1.0),
+        };
         let fraction = estimate.max(self.fraction);
         Progress { done, fraction, beat, beats, model_s }
     }
@@ -239,6 +284,7 @@ impl Rehearsal {
             scenario: self.scenario,
             initial: self.initial,
             ephemeris: self.propagation.into_ephemeris(),
+            swarms: self.swarms.into_iter().map(SwarmRun::into_path).collect(),
             plan: self.plan?,
         })
     }
@@ -261,6 +307,17 @@ impl Rehearsal {
             "shorten the beat, or change the motion so that it can go on",
         )
     }
+}
+
+/// With its swarms an ephemeris stays within what a show may take.
+fn propagation(initial: &InitialState) -> Propagation {
+    let of_swarms = if initial.swarms.is_empty() { 0 } else { SNAPSHOT_BYTES };
+    Propagation::with_most_bytes(initial, SHOW_BYTES - of_swarms)
+}
+
+/// Whether a path covers an instant.
+fn reaches(path: &SwarmPath, t_s: f64) -> bool {
+    if t_s < 0.0 { path.from_s() <= t_s } else { path.until_s() >= t_s }
 }
 
 #[cfg(test)]

@@ -96,6 +96,35 @@ fn small_steps_and_one_big_one_make_the_same_show() {
 }
 
 #[test]
+fn swarms_come_as_far_as_the_plan_goes_in_any_steps_with_the_same_bits() {
+    let swarm = "[[body]]\nname = \"Belt\"\nswarm = { belt = \"Orla\", from = \"2 au\", to = \"3 au\", eccentricity = 0.1, count = 20 }\n";
+    let beats = format!(
+        "[[beat]]\ntitle = \"B\"\nstart = {{ time = \"-50 d\" }}\nclock = {{ span = \"2 yr\", lasts = \"60 s\" }}\n{swarm}"
+    );
+    let text = text(&beats);
+    let whole = Rehearsal::whole(&text).expect("a show");
+    let path = &whole.swarms[0];
+    assert_eq!(path.tracers(), 20);
+    assert!(path.from_s() <= whole.plan.covers_from_s && path.until_s() >= whole.plan.covers_until_s);
+    let mut rehearsal = Rehearsal::start(&text).expect("a rehearsal");
+    let (mut last, mut works) = (0.0, 0);
+    loop {
+        let progress = rehearsal.work(1).expect("progress");
+        assert!(progress.fraction >= last && (progress.done || progress.fraction < 1.0), "{progress:?}");
+        (last, works) = (progress.fraction, works + 1);
+        if progress.done {
+            break;
+        }
+    }
+    assert!(works > 10, "{works} turns");
+    let mut piecewise = rehearsal.finish().expect("a show");
+    let print = Fingerprint::of(&text, &whole);
+    assert_eq!(print, Fingerprint::of(&text, &piecewise));
+    piecewise.swarms.clear();
+    assert_ne!(print, Fingerprint::of(&text, &piecewise), "a fingerprint minds the tracers");
+}
+
+#[test]
 fn a_fingerprint_minds_every_word_but_not_how_lines_end() {
     let text = text("");
     let show = Rehearsal::whole(&text).expect("a show");

@@ -43,6 +43,11 @@ impl SwarmRun {
         &self.path
     }
 
+    /// What is known.
+    pub fn into_path(self) -> SwarmPath {
+        self.path
+    }
+
     /// Goes on towards `until_s` (seconds from the start; back in time when negative), by about `most_tracer_steps`. True once that
     /// instant is covered; false also where the ephemeris doesn't cover it yet.
     ///

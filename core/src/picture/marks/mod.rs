@@ -10,6 +10,7 @@ pub mod line;
 pub mod path;
 pub mod readout;
 pub mod sector;
+pub mod swarm;
 pub mod tail;
 pub mod trail;
 
