@@ -67,7 +67,7 @@ pub struct Contact {
 /// The paths of all bodies over an interval that contains time 0.
 ///
 /// A body that rests on another, or became part of it, goes on with that other body.
-#[derive(Debug, Clone, PartialEq, Default)]
+#[derive(Debug, Clone, PartialEq)]
 pub struct Ephemeris {
     gms: Vec<f64>,
     forward: Track,
@@ -194,7 +194,8 @@ impl Ephemeris {
 
     /// How far at most its paths lie from the integrated ones.
     pub const fn tolerance(&self) -> Tolerance {
-        Tolerance::ROUNDING
+        let (forward, backward) = (self.forward.tolerance(), self.backward.tolerance());
+        if backward.velocity > forward.velocity { backward } else { forward }
     }
 
     /// Memory held, bytes.

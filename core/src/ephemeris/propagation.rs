@@ -1,7 +1,7 @@
 //! Growing an ephemeris: from an initial state, both ways in time, a few steps at a time.
 
 use super::run::Run;
-use super::thin::{Thinner, Tolerance};
+use super::thin::Thinner;
 use super::track::evaluate;
 use super::{Ephemeris, State};
 use crate::initial::InitialState;
@@ -76,14 +76,15 @@ pub struct Propagation {
 }
 
 impl Propagation {
-    /// Nothing integrated yet; time starts at 0. It may grow to [`SHOW_BYTES`].
+    /// Nothing integrated yet; time starts at 0. It may grow to [`SHOW_BYTES`]: three quarters of it for the time from 0 on, a
+    /// quarter for the time before. Paths that would outgrow this are thinned to the next of [`super::Tolerance::ALL`].
     pub fn new(initial: &InitialState) -> Self {
         Self::with_most_bytes(initial, SHOW_BYTES)
     }
 
     /// The same, with another bound on its memory, bytes.
     pub fn with_most_bytes(initial: &InitialState, most_bytes: usize) -> Self {
-        let thinner = Thinner::new(initial.bodies.len(), Tolerance::ROUNDING);
+        let thinner = Thinner::new(initial);
         Self {
             most_bytes,
             ephemeris: Ephemeris::new(initial.bodies.iter().map(|body| body.gm_m3_s2).collect()),
@@ -144,7 +145,10 @@ impl Propagation {
         if let Some(stopped) = stopped {
             return Err(stopped.clone());
         }
-        if self.ephemeris.bytes() > self.most_bytes {
+        let before_0_bytes = self.most_bytes / 4;
+        let most_bytes = if backward { before_0_bytes } else { self.most_bytes - before_0_bytes };
+        let track = if backward { self.ephemeris.backward() } else { self.ephemeris.forward() };
+        if track.bytes() > most_bytes {
             let why = Why::TooLong { most_bytes: self.most_bytes };
             return Err(Stopped { bodies: Vec::new(), names: Vec::new(), t_s: run.t_s(), why });
         }
@@ -159,8 +163,9 @@ impl Propagation {
             thinner.grow(track);
         }
         if step.cut {
-            thinner.close(track, run.hosts());
+            thinner.close(track, run.t_s(), run.hosts());
         }
+        while track.bytes() > most_bytes && thinner.coarsen(track) {}
         if let Some(contact) = step.contact {
             self.ephemeris.push_contact(contact);
         }

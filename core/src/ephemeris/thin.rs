@@ -3,15 +3,19 @@
 //! All bodies make the steps of the one that turns fastest: a year of the Sun and its planets has 392, because of the Moon, though one
 //! piece would do for Neptune. So the pieces of a body are joined while a polynomial of the same form keeps within a
 //! [`Tolerance`] of them. What is joined depends on the steps alone, not on how they were asked for.
+//!
+//! Where paths would outgrow their memory at one tolerance, all that is there is joined again to the next one, and so what follows.
 
 use super::Track;
 use super::track::{VELOCITY, evaluate};
+use crate::initial::{InitialBody, InitialState};
 use crate::integrate::PER_BODY;
 
 /// How far a path may lie from the integrated one.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Tolerance {
-    /// Distance, as a part of the body's distance from the origin.
+    /// Distance, as a part of the body's distance from the origin, or, beyond [`Tolerance::ROUNDING`], of that from the nearest
+    /// body with mass at the start, if that is less.
     pub place: f64,
     /// Difference of velocity, as a part of the body's speed.
     pub velocity: f64,
@@ -21,6 +25,18 @@ impl Tolerance {
     /// So near that it is the same path: a position at a distance r is rounded to about 2⁻⁵² r whenever it is worked out, and a
     /// velocity by as much of itself in each of the several steps of a piece. 1 au: 0.3 mm; 30 km/s: 0.1 nm/s.
     pub const ROUNDING: Self = Self { place: 8.0 * f64::EPSILON, velocity: 16.0 * f64::EPSILON };
+
+    /// The tolerances, each to be used where paths don't fit into their memory at those before it.
+    ///
+    /// The last one is 7 km at 1 au, and 20 m for Earth and Moon: a ten-thousandth of a pixel where that distance is 2,000 of
+    /// them. Each factor of 100 makes pieces about 1.6 times as long.
+    pub const ALL: [Self; 5] = [
+        Self::ROUNDING,
+        Self { place: 5e-14, velocity: 4e-13 },
+        Self { place: 5e-12, velocity: 4e-11 },
+        Self { place: 5e-10, velocity: 4e-9 },
+        Self { place: 5e-8, velocity: 4e-7 },
+    ];
 }
 
 /// A joined piece is kept where its checks stay below this part of the tolerance, as they are made at some instants only.
@@ -99,11 +115,23 @@ impl Open {
     }
 }
 
+/// Where the motion goes on otherwise.
+#[derive(Debug, Clone)]
+struct Cut {
+    t_s: f64,
+    /// On which body each one rests from then on; empty where that stays as it is.
+    hosts: Vec<usize>,
+}
+
 /// What thins one track while it grows.
 #[derive(Debug, Clone)]
 pub(super) struct Thinner {
-    tolerance: Tolerance,
+    /// Which of [`Tolerance::ALL`] is kept.
+    level: usize,
+    /// Distance of each body from the nearest one with mass at the start, m.
+    near_m: Vec<f64>,
     most: usize,
+    cuts: Vec<Cut>,
     open: Vec<Open>,
     /// On which body each one rests; itself where it moves freely.
     hosts: Vec<usize>,
@@ -111,10 +139,18 @@ pub(super) struct Thinner {
 
 impl Thinner {
     /// For a track of so many bodies that is empty.
-    pub(super) fn new(bodies: usize, tolerance: Tolerance) -> Self {
+    pub(super) fn new(initial: &InitialState) -> Self {
+        let bodies = initial.bodies.len();
         let step_bytes = bodies.max(1) * PER_BODY * size_of::<f64>();
+        let near_m = |body: &InitialBody| {
+            let massive = initial.bodies.iter().filter(|other| other.gm_m3_s2 > 0.0);
+            let apart_m = massive.map(|other| (other.pos - body.pos).norm()).filter(|apart_m| *apart_m > 0.0);
+            apart_m.fold(f64::INFINITY, f64::min)
+        };
         Self {
-            tolerance,
+            level: 0,
+            near_m: initial.bodies.iter().map(near_m).collect(),
+            cuts: Vec::new(),
             most: (MOST_OPEN_BYTES / step_bytes).clamp(2, MOST_JOINED),
             open: vec![Open::NOTHING; bodies],
             hosts: (0..bodies).collect(),
@@ -128,13 +164,60 @@ impl Thinner {
         }
     }
 
-    /// The motion changes at the end of the track (a contact, a kick): nothing is joined across it. From now on bodies rest on `hosts`.
-    pub(super) fn close(&mut self, track: &mut Track, hosts: impl Iterator<Item = usize>) {
+    /// The motion goes on otherwise from `t_s`, the end of the track (a contact, a kick): nothing is joined across it. From now on
+    /// bodies rest on `hosts`.
+    pub(super) fn close(&mut self, track: &mut Track, t_s: f64, hosts: impl Iterator<Item = usize>) {
+        let hosts: Vec<usize> = hosts.collect();
+        self.cut(track, Cut { t_s, hosts: if hosts == self.hosts { Vec::new() } else { hosts } });
+    }
+
+    fn cut(&mut self, track: &mut Track, cut: Cut) {
         for body in 0..self.open.len() {
             self.join(track, body, true);
         }
-        self.hosts.clear();
-        self.hosts.extend(hosts);
+        if !cut.hosts.is_empty() {
+            self.hosts.clone_from(&cut.hosts);
+        }
+        self.cuts.push(cut);
+    }
+
+    /// Joins all pieces of a track again, to the next tolerance, and keeps to that from then on. False where there is none.
+    pub(super) fn coarsen(&mut self, track: &mut Track) -> bool {
+        let Some(&tolerance) = Tolerance::ALL.get(self.level + 1) else { return false };
+        let bodies = self.open.len();
+        let mut next = Self {
+            level: self.level + 1,
+            near_m: std::mem::take(&mut self.near_m),
+            most: self.most,
+            cuts: Vec::new(),
+            open: vec![Open::NOTHING; bodies],
+            hosts: (0..bodies).collect(),
+        };
+        let old = track.start_anew(tolerance);
+        let mut done = vec![0; bodies];
+        let mut cuts = std::mem::take(&mut self.cuts).into_iter();
+        loop {
+            let cut = cuts.next();
+            let until_s = cut.as_ref().map_or(f64::INFINITY, |cut| cut.t_s.abs());
+            for host in 0..bodies {
+                if next.hosts[host] != host {
+                    continue;
+                }
+                while old.piece(host, done[host]).is_some_and(|piece| piece.start_s.abs() < until_s) {
+                    for guest in 0..bodies {
+                        if next.hosts[guest] == host {
+                            track.push_piece(guest, old.piece(guest, done[guest]));
+                            done[guest] += 1;
+                        }
+                    }
+                    next.join(track, host, false);
+                }
+            }
+            let Some(cut) = cut else { break };
+            next.cut(track, cut);
+        }
+        *self = next;
+        true
     }
 
     /// Joins pieces of a body; all of them where its path is to be closed.
@@ -143,6 +226,7 @@ impl Thinner {
         if self.hosts[body] != body {
             return;
         }
+        let measure = self.measure(body);
         loop {
             let state = &mut self.open[body];
             let settled = state.settled;
@@ -175,7 +259,7 @@ impl Thinner {
                 self.settle(track, body);
                 continue;
             }
-            let (joined, length_s, error) = join(track, body, settled, count, self.tolerance);
+            let (joined, length_s, error) = join(track, body, settled, count, measure);
             if error <= SAFE {
                 (state.good, state.joined) = (count, joined);
                 state.curve = (error - ROUNDED).max(LEAST) / ninth(length_s);
@@ -184,6 +268,12 @@ impl Thinner {
                 state.curve = if error.is_finite() { error / ninth(length_s) } else { 0.0 };
             }
         }
+    }
+
+    /// What errors of a body are measured by.
+    fn measure(&self, body: usize) -> Measure {
+        let far_m = if self.level == 0 { f64::INFINITY } else { self.near_m[body] };
+        Measure { tolerance: Tolerance::ALL[self.level], far_m }
     }
 
     /// Makes one piece of the open ones of a body that can be joined, and of those of what rests on it.
@@ -207,6 +297,14 @@ impl Thinner {
     }
 }
 
+/// What errors are measured by.
+#[derive(Debug, Clone, Copy)]
+struct Measure {
+    tolerance: Tolerance,
+    /// The largest distance that the tolerance of places counts from, m.
+    far_m: f64,
+}
+
 /// The ninth power of a length.
 fn ninth(length_s: f64) -> f64 {
     let cube = length_s * length_s * length_s;
@@ -219,7 +317,7 @@ fn join(
     body: usize,
     from: usize,
     count: usize,
-    tolerance: Tolerance,
+    measure: Measure,
 ) -> ([f64; PER_BODY], f64, f64) {
     let piece = |index: usize| track.piece(body, from + index);
     let (Some(first), Some(last)) = (piece(0), piece(count - 1)) else {
@@ -266,7 +364,7 @@ fn join(
             order += 1.0;
         }
     }
-    let error = error(track, body, from, count, (&numbers, length_s), tolerance);
+    let error = error(track, body, from, count, (&numbers, length_s), measure);
     (numbers, length_s, error)
 }
 
@@ -289,9 +387,11 @@ fn error(
     from: usize,
     count: usize,
     (numbers, length_s): (&[f64], f64),
-    tolerance: Tolerance,
+    Measure { tolerance, far_m }: Measure,
 ) -> f64 {
     let Some(first) = track.piece(body, from) else { return f64::INFINITY };
+    // At rounding, where velocities do, places do by far.
+    let places_too = tolerance.place > Tolerance::ROUNDING.place;
     let (mut place, mut off) = (0.0_f64, 0.0_f64);
     let (mut distance, mut speed) = (0.0_f64, 0.0_f64);
     let apart = |a: [f64; 3], b: [f64; 3]| square([a[0] - b[0], a[1] - b[1], a[2] - b[2]]);
@@ -306,7 +406,7 @@ fn error(
         let want = velocity(piece.numbers, piece.step_s, h);
         off = larger(off, apart(want, velocity(numbers, length_s, along)));
         speed = speed.max(square(want));
-        if check == CHECKS / 2 || check == CHECKS {
+        if places_too || check == CHECKS / 2 || check == CHECKS {
             let want = evaluate(piece.numbers, piece.step_s, h).pos;
             let got = evaluate(numbers, length_s, along).pos;
             place = larger(place, apart(want.into(), got.into()));
@@ -316,7 +416,7 @@ fn error(
     let part = |error: f64, size: f64, tolerance: f64| {
         if error == 0.0 { 0.0 } else { (error / size).sqrt() / tolerance }
     };
-    larger(part(place, distance, tolerance.place), part(off, speed, tolerance.velocity))
+    larger(part(place, distance.min(far_m * far_m), tolerance.place), part(off, speed, tolerance.velocity))
 }
 
 fn square(v: [f64; 3]) -> f64 {

@@ -1,6 +1,6 @@
 //! The paths of one direction of time: of each body its own pieces, which follow one another.
 
-use super::State;
+use super::{State, Tolerance};
 use crate::Vector3;
 use crate::integrate::PER_BODY;
 
@@ -59,6 +59,12 @@ struct Pieces {
 }
 
 impl Pieces {
+    fn push(&mut self, piece: Piece<'_>) {
+        self.starts_s.push(piece.start_s);
+        self.steps_s.push(piece.step_s);
+        self.numbers.extend_from_slice(piece.numbers);
+    }
+
     fn get(&self, index: usize) -> Option<Piece<'_>> {
         let numbers = self.numbers.get(index * PER_BODY..(index + 1) * PER_BODY)?;
         Some(Piece { start_s: *self.starts_s.get(index)?, step_s: *self.steps_s.get(index)?, numbers })
@@ -68,18 +74,20 @@ impl Pieces {
 /// Paths from time 0 in one direction.
 ///
 /// Each step of the integrator makes a piece of every body; [`Track::merge`] makes one of several.
-#[derive(Debug, Clone, PartialEq, Default)]
+#[derive(Debug, Clone, PartialEq)]
 pub struct Track {
     direction: f64,
     end_s: f64,
     steps: usize,
+    tolerance: Tolerance,
     bodies: Vec<Pieces>,
 }
 
 impl Track {
     /// Nothing yet. `direction` is 1 for time going on, -1 for time going back.
     pub fn new(bodies: usize, direction: f64) -> Self {
-        Self { direction, end_s: 0.0, steps: 0, bodies: vec![Pieces::default(); bodies] }
+        let bodies = vec![Pieces::default(); bodies];
+        Self { direction, end_s: 0.0, steps: 0, tolerance: Tolerance::ROUNDING, bodies }
     }
 
     /// Whether nothing is covered.
@@ -97,13 +105,31 @@ impl Track {
         self.end_s
     }
 
+    /// How far at most its paths lie from the integrated ones.
+    pub const fn tolerance(&self) -> Tolerance {
+        self.tolerance
+    }
+
+    /// Takes all pieces out, to be put back by [`Track::push_piece`] within another tolerance.
+    pub(super) fn start_anew(&mut self, tolerance: Tolerance) -> Self {
+        let empty = vec![Pieces::default(); self.bodies.len()];
+        let old = Self { bodies: std::mem::replace(&mut self.bodies, empty), ..*self };
+        self.tolerance = tolerance;
+        old
+    }
+
+    /// Adds a piece of one body.
+    pub(super) fn push_piece(&mut self, body: usize, piece: Option<Piece<'_>>) {
+        if let (Some(pieces), Some(piece)) = (self.bodies.get_mut(body), piece) {
+            pieces.push(piece);
+        }
+    }
+
     /// Adds a step that starts where the last one ended. `data` has [`PER_BODY`] numbers for each body.
     pub fn push(&mut self, start_s: f64, step_s: f64, data: &[f64]) {
         debug_assert_eq!(data.len(), self.bodies.len() * PER_BODY);
         for (pieces, numbers) in self.bodies.iter_mut().zip(data.chunks_exact(PER_BODY)) {
-            pieces.starts_s.push(start_s);
-            pieces.steps_s.push(step_s);
-            pieces.numbers.extend_from_slice(numbers);
+            pieces.push(Piece { start_s, step_s, numbers });
         }
         self.steps += 1;
         self.end_s = start_s + step_s;
@@ -182,12 +208,13 @@ impl Track {
 
     /// How many numbers [`Track::write`] writes.
     pub(super) fn written(&self) -> usize {
-        2 + self.bodies.iter().map(|pieces| 1 + pieces.starts_s.len() * (2 + PER_BODY)).sum::<usize>()
+        4 + self.bodies.iter().map(|pieces| 1 + pieces.starts_s.len() * (2 + PER_BODY)).sum::<usize>()
     }
 
-    /// Writes it: how many steps, the end, and for each body how many pieces, all starts, all lengths, all polynomials.
+    /// Writes it: how many steps, the end, both tolerances, and for each body how many pieces, all starts, all lengths, all polynomials.
     pub(super) fn write(&self, numbers: &mut Vec<f64>) {
-        numbers.extend([super::flat::number_from(self.steps), self.end_s]);
+        let Tolerance { place, velocity } = self.tolerance;
+        numbers.extend([super::flat::number_from(self.steps), self.end_s, place, velocity]);
         for pieces in &self.bodies {
             numbers.push(super::flat::number_from(pieces.starts_s.len()));
             numbers.extend_from_slice(&pieces.starts_s);
@@ -203,8 +230,14 @@ impl Track {
             *numbers = tail;
             Some(part)
         };
-        let [steps, end_s] = *take(2)? else { return None };
-        let mut track = Self { direction, end_s, steps: super::flat::count_from(steps)?, bodies: Vec::new() };
+        let [steps, end_s, place, velocity] = *take(4)? else { return None };
+        let mut track = Self {
+            direction,
+            end_s,
+            steps: super::flat::count_from(steps)?,
+            tolerance: Tolerance { place, velocity },
+            bodies: Vec::new(),
+        };
         for _ in 0..bodies {
             let count = super::flat::count_from(*take(1)?.first()?)?;
             track.bodies.push(Pieces {

@@ -136,3 +136,97 @@ fn what_rests_goes_exactly_with_what_it_rests_on() {
         near("apart", (guest.pos - host.pos).norm(), 0.1, 1e-14);
     }
 }
+
+/// The ephemeris up to two instants, within a bound of its memory.
+fn within(start: &InitialState, most_bytes: usize, ends_s: &[f64]) -> Ephemeris {
+    let mut propagation = Propagation::with_most_bytes(start, most_bytes);
+    for end_s in ends_s {
+        while !propagation.advance(*end_s, 100).unwrap() {
+            assert!(propagation.ephemeris().bytes() <= most_bytes);
+        }
+    }
+    propagation.into_ephemeris()
+}
+
+#[test]
+fn what_would_outgrow_its_memory_is_thinned_to_the_tolerance_that_it_states() {
+    let start = solar_system(&[]);
+    let until_s = 30.0 * YEAR_S;
+    let most_bytes = crate::ephemeris::SHOW_BYTES / 25;
+    let eph = within(&start, most_bytes, &[until_s]);
+    assert!(eph.bytes() <= most_bytes && eph.forward().len() > 11_000);
+    let tolerance = eph.tolerance();
+    assert!(tolerance.velocity > Tolerance::ROUNDING.velocity);
+    let steps = unjoined(&start, 1.0, until_s);
+    for t_s in instants(until_s, 5_000) {
+        for body in 0..11 {
+            let (got, want) = (at(&eph, body, t_s), steps.state(body, t_s).unwrap());
+            let near_m = (0..11)
+                .filter(|&other| other != body)
+                .map(|other| (start.bodies[other].pos - start.bodies[body].pos).norm());
+            let far_m = near_m.fold(1.02 * want.pos.norm(), f64::min);
+            near("place", (got.pos - want.pos).norm(), 0.0, far_m * tolerance.place);
+            // The Sun's speed changes along a piece.
+            let fast = want.vel.norm().max(if body == 0 { 20.0 } else { 0.0 });
+            near("velocity", (got.vel - want.vel).norm(), 0.0, 1.05 * fast * tolerance.velocity);
+        }
+    }
+}
+
+#[test]
+fn thinned_paths_are_the_same_bits_of_any_sequence_of_calls() {
+    let start = comet_and_moon();
+    let most_bytes = paths(&start, 100.0).bytes();
+    let whole = within(&start, most_bytes, &[100.0, -10.0]);
+    assert!(whole.tolerance().velocity > Tolerance::ROUNDING.velocity, "never thinned");
+    let mut parts = Propagation::with_most_bytes(&start, most_bytes);
+    for k in 0..100 {
+        parts.advance(f64::from(-k) * 0.1, 3).unwrap();
+        while !parts.advance(f64::from(k), 7).unwrap() {}
+    }
+    for end_s in [100.0, -10.0] {
+        while !parts.advance(end_s, 5).unwrap() {}
+    }
+    assert_eq!(&whole, parts.ephemeris());
+}
+
+#[test]
+fn thinned_paths_keep_their_contacts() {
+    // A ball bounces on a body that circles another, until it rests.
+    let start = initial(vec![
+        ball(1.0, 0.1, Surface::Bounce { restitution: 0.8 }, [1.0, 0.0, 0.0], [0.0, 0.5, 0.0]),
+        ball(0.0, 0.0, Surface::Stop, [1.2, 0.0, 0.0], [0.0, 0.5, 0.0]),
+        body(1.0, [-1.0, 0.0, 0.0], [0.0, -0.5, 0.0]),
+    ]);
+    let full = paths(&start, 400.0);
+    let thin = within(&start, full.bytes(), &[400.0]);
+    assert!(thin.tolerance().velocity > Tolerance::ROUNDING.velocity, "never thinned");
+    assert_eq!(full.contacts(), thin.contacts());
+    let rests_s = full.contacts().last().unwrap().t_s;
+    assert!(full.contacts().len() > 5 && rests_s < 60.0, "{rests_s}");
+    for t_s in instants(400.0, 3_000) {
+        for body in 0..3 {
+            near("place", (at(&full, body, t_s).pos - at(&thin, body, t_s).pos).norm(), 0.0, 1e-6);
+        }
+        if t_s > rests_s {
+            assert_eq!(at(&thin, 0, t_s).vel, at(&thin, 1, t_s).vel, "{t_s}");
+        }
+    }
+    for contact in thin.contacts() {
+        near(
+            "on the surface",
+            (at(&thin, 1, contact.t_s).pos - at(&thin, 0, contact.t_s).pos).norm(),
+            0.1,
+            1e-12,
+        );
+    }
+}
+
+#[test]
+fn what_fits_at_no_tolerance_is_said() {
+    let mut propagation = Propagation::with_most_bytes(&comet_and_moon(), 200_000);
+    let stopped = propagation.advance(1e6, usize::MAX).unwrap_err();
+    assert_eq!(stopped.why, crate::ephemeris::Why::TooLong { most_bytes: 200_000 });
+    assert!(stopped.t_s > 10.0);
+    near("the end", propagation.ephemeris().until_s(), stopped.t_s, 1e-12);
+}

@@ -12,7 +12,7 @@ const LEVERS: usize = 5;
 
 /// The keys of a report, by the alphabet.
 #[cfg(test)]
-pub(super) const KEYS: [&str; 19] = [
+pub(super) const KEYS: [&str; 20] = [
     "beats",
     "bodies",
     "bytes",
@@ -27,6 +27,7 @@ pub(super) const KEYS: [&str; 19] = [
     "lasts_s",
     "most_bytes",
     "numbers",
+    "path_tolerance",
     "problems",
     "ready",
     "steps",
@@ -88,6 +89,10 @@ pub(super) fn of(file: &str, shown: &Shown) -> Value {
         "from_s": show.ephemeris.from_s(),
         "until_s": show.ephemeris.until_s(),
         "steps": show.ephemeris.forward().len() + show.ephemeris.backward().len(),
+        "path_tolerance": {
+            "place": show.ephemeris.tolerance().place,
+            "velocity": show.ephemeris.tolerance().velocity,
+        },
         "bytes": report.bytes,
         "most_bytes": report.most_bytes,
         "energy_error": shown.energy_error,

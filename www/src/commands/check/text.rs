@@ -71,6 +71,11 @@ fn whole(shown: &Shown, line: &mut impl FnMut(String)) {
         time(show.ephemeris.until_s()),
         show.ephemeris.forward().len() + show.ephemeris.backward().len()
     ));
+    let tolerance = show.ephemeris.tolerance();
+    line(format!(
+        "  paths        thinned to {:.0e} of distances and {:.0e} of speeds",
+        tolerance.place, tolerance.velocity
+    ));
     line(match shown.energy_error {
         Some(error) => format!("  energy       kept to {error:.1e} of it"),
         None => "  energy       not a measure here (contact, change, relativity, oblateness, drag, or nothing massive moves)".to_owned(),
