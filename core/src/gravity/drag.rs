@@ -5,7 +5,7 @@ use crate::initial::{Atmosphere, Drag};
 
 /// A body that the air of another slows.
 #[derive(Debug, Clone, PartialEq)]
-pub(super) struct Drags {
+pub(crate) struct Drags {
     body: usize,
     host: usize,
     /// Half of the coefficient times area over mass, m²/kg.
@@ -25,7 +25,7 @@ struct Passing {
 }
 
 impl Drags {
-    pub(super) fn new(body: usize, drag: &Drag, host: usize, atmosphere: &Atmosphere) -> Self {
+    pub(crate) fn new(body: usize, drag: &Drag, host: usize, atmosphere: &Atmosphere) -> Self {
         Self {
             body,
             host,
@@ -40,7 +40,7 @@ impl Drags {
     ///
     /// # Source
     /// I. Newton, Principia (1687), book II, section VII: drag by density and the square of speed.
-    pub(super) fn add(&self, gms: &[f64], pos: &[f64], vel: &[f64], out: &mut [f64]) {
+    pub(crate) fn add(&self, gms: &[f64], pos: &[f64], vel: &[f64], out: &mut [f64]) {
         let passing = self.passing(pos, vel);
         if passing.height_m > self.air.top_m() {
             return;
@@ -57,7 +57,7 @@ impl Drags {
 
     /// The longest step, s, in which the polynomials of a step follow the air: it may not go so far up or down that density
     /// changes much, nor take so long that drag stops what it acts on, for which iterating a step would not converge.
-    pub(super) fn longest_step_s(&self, gms: &[f64], pos: &[f64], vel: &[f64]) -> f64 {
+    pub(crate) fn longest_step_s(&self, gms: &[f64], pos: &[f64], vel: &[f64]) -> f64 {
         /// Part of the time in which drag halves a speed.
         const PART: f64 = 0.5;
         let Passing { distance_m, height_m, speed_m_s, outwards_m_s, .. } = self.passing(pos, vel);

@@ -13,7 +13,7 @@ mod post_newtonian;
 mod resting;
 mod softening;
 
-use drag::Drags;
+pub(crate) use drag::Drags;
 use newton::Newton;
 use oblateness::Bulge;
 use post_newtonian::PostNewtonian;

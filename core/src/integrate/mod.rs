@@ -3,7 +3,7 @@
 pub mod drift;
 pub mod long_run;
 pub mod radau;
-mod spacings;
+pub(crate) mod spacings;
 pub mod wisdom_holman;
 
 pub use long_run::LongRun;

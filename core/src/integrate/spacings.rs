@@ -10,7 +10,7 @@
 //! MNRAS 446 (2015), 1424, section 2.
 
 /// The spacings: 0 and the zeros of (P7(x) + P8(x)) / (1 + x), x = 2h - 1, P being Legendre's polynomials.
-pub(super) const SPACINGS: [f64; 8] = [
+pub(crate) const SPACINGS: [f64; 8] = [
     0.0,
     0.056_262_560_536_922_146_465_65,
     0.180_240_691_736_892_364_987_58,
@@ -22,7 +22,7 @@ pub(super) const SPACINGS: [f64; 8] = [
 ];
 
 /// `INVERSE[n][j]`: 1 / (h_n - h_j) for j < n.
-pub(super) const INVERSE: [[f64; 8]; 8] = {
+pub(crate) const INVERSE: [[f64; 8]; 8] = {
     let mut inverse = [[0.0; 8]; 8];
     let mut n = 1;
     while n < 8 {
@@ -37,7 +37,7 @@ pub(super) const INVERSE: [[f64; 8]; 8] = {
 };
 
 /// b from g: b_k = Σ over j ≥ k of `B_FROM_G[j][k]` g_j; the powers of h in h (h - h1) … (h - h_j).
-pub(super) const B_FROM_G: [[f64; 7]; 7] = {
+pub(crate) const B_FROM_G: [[f64; 7]; 7] = {
     let mut c = [[0.0; 7]; 7];
     c[0][0] = 1.0;
     let mut j = 1;
@@ -55,7 +55,7 @@ pub(super) const B_FROM_G: [[f64; 7]; 7] = {
 };
 
 /// g from b: g_k = Σ over j ≥ k of `G_FROM_B[j][k]` b_j.
-pub(super) const G_FROM_B: [[f64; 7]; 7] = {
+pub(crate) const G_FROM_B: [[f64; 7]; 7] = {
     let mut d = [[0.0; 7]; 7];
     d[0][0] = 1.0;
     let mut j = 1;
@@ -74,7 +74,7 @@ pub(super) const G_FROM_B: [[f64; 7]; 7] = {
 
 /// Weights of a0, b0, … b6 in the change of velocity over the first h of a step, in units of the step:
 /// h, h²/2, h³/3, …
-pub(super) const fn velocity_weights(h: f64) -> [f64; 8] {
+pub(crate) const fn velocity_weights(h: f64) -> [f64; 8] {
     let mut weights = [0.0; 8];
     let mut power = h;
     let mut k = 0;
@@ -90,7 +90,7 @@ pub(super) const fn velocity_weights(h: f64) -> [f64; 8] {
 
 /// Weights of a0, b0, … b6 in the change of position over the first h of a step beyond h v0, in units of the step
 /// squared: h²/2, h³/6, h⁴/12, …
-pub(super) const fn position_weights(h: f64) -> [f64; 8] {
+pub(crate) const fn position_weights(h: f64) -> [f64; 8] {
     let mut weights = [0.0; 8];
     let mut power = h * h;
     let mut k = 0;
@@ -105,7 +105,7 @@ pub(super) const fn position_weights(h: f64) -> [f64; 8] {
 }
 
 /// [`velocity_weights`] at each spacing.
-const VELOCITY: [[f64; 8]; 8] = {
+pub(crate) const VELOCITY: [[f64; 8]; 8] = {
     let mut table = [[0.0; 8]; 8];
     let mut n = 0;
     while n < 8 {
@@ -116,7 +116,7 @@ const VELOCITY: [[f64; 8]; 8] = {
 };
 
 /// [`position_weights`] at each spacing.
-const POSITION: [[f64; 8]; 8] = {
+pub(crate) const POSITION: [[f64; 8]; 8] = {
     let mut table = [[0.0; 8]; 8];
     let mut n = 0;
     while n < 8 {
@@ -154,7 +154,7 @@ const fn from_g(from_b: &[[f64; 8]; 8]) -> [[f64; 8]; 8] {
 }
 
 /// Binomial coefficients: `BINOMIAL[j][k]` = C(j + 1, k + 1), which move the polynomial of a step on to the next.
-pub(super) const BINOMIAL: [[f64; 7]; 7] = {
+pub(crate) const BINOMIAL: [[f64; 7]; 7] = {
     let mut c = [[0.0; 7]; 7];
     let mut j = 0;
     while j < 7 {

@@ -5,13 +5,16 @@
 //! Differential Equations I (2nd ed. 1993), III.10, eq. 10.29).
 
 use super::field::{Field, Node};
+use super::lone::{Cells, Lone};
+use super::watch::{Moving, Watch};
 use super::weights::{KEPT, SPEED, STEP, Weights, between};
+use crate::ephemeris::Ephemeris;
 
 /// Tracers in a block. The numbers of that many just fit where the processor reaches them fastest, and share the cost of a node.
 pub(super) const ABREAST: usize = 128;
 
 /// Tracers worked on together. Four fill the vector registers of every target twice over.
-const LANES: usize = 4;
+pub(super) const LANES: usize = 4;
 
 /// Where tracers are put that are no more: so far that nothing pulls there, and near enough to stay a number.
 const PARKED_M: f64 = 1e30;
@@ -19,8 +22,21 @@ const PARKED_M: f64 = 1e30;
 /// Most rounds in which the accelerations of a start are found.
 const MOST_ROUNDS: usize = 30;
 
-/// Relative change of accelerations in a round that is made of roundings.
-const CONVERGED: f64 = 4e-16;
+/// Relative change of accelerations in a further round that would be lost in roundings.
+const CONVERGED: f64 = 1e-15;
+
+/// Every so many nodes a block looks which of its tracers have to go by themselves, or no longer.
+const WATCHED: u32 = 4;
+
+/// One step more than the next look is away: places and velocities are those of the last node.
+const AHEAD: f64 = 5.0;
+
+/// That much ahead of a start.
+const AHEAD_OF_START: f64 = 16.0;
+
+/// Nodes after which no accelerations are kept from where a tracer had to go by itself.
+#[expect(clippy::cast_possible_truncation, reason = "a few")]
+const CLEAN: u32 = KEPT as u32;
 
 pub(super) type Row = [f64; ABREAST];
 
@@ -39,6 +55,20 @@ pub(super) struct Block {
     acc: [[Row; 3]; KEPT],
     /// Which accelerations are those of the newest node.
     newest: usize,
+    watch: Watch,
+    /// Those that go by themselves, and which lanes they are in.
+    lones: Vec<Lone>,
+    alone: [bool; ABREAST],
+}
+
+/// What the way of a block goes through.
+#[derive(Debug)]
+pub(super) struct Way<'a> {
+    pub(super) field: &'a Field,
+    pub(super) eph: &'a Ephemeris,
+    pub(super) cells: &'a mut Cells,
+    /// Tracers that were lost: when, which, and onto which source.
+    pub(super) lost: &'a mut Vec<(f64, usize, usize)>,
 }
 
 /// Position and velocity of each tracer, as many as the block holds.
@@ -57,41 +87,94 @@ impl Default for States {
 impl Block {
     /// Tracers `ids`, at the first of the nodes, which are `step_s` apart: finds their way through all of these, [`KEPT`] of them, and stands
     /// at the last.
-    ///
-    /// Each round takes the accelerations at the places that those of the last round lead to, until they no longer change (É. Picard,
-    /// J. Math. Pures Appl. 6 (1890), 145).
     pub(super) fn start(
-        field: &Field,
+        way: &mut Way<'_>,
         nodes: &[Node],
         step_s: f64,
         ids: Vec<usize>,
-        state: impl Fn(usize) -> ([f64; 3], [f64; 3], bool),
-    ) -> Box<Self> {
+        state: impl Fn(usize) -> Option<Moving>,
+    ) -> Self {
         let width = ids.len().div_ceil(LANES) * LANES;
-        let mut block = Box::new(Self {
+        let first = ids.iter().find_map(|id| state(*id)).unwrap_or_default();
+        let mut block = Self {
             lives: vec![true; ids.len()],
             width,
             pos: [[PARKED_M; ABREAST]; 3],
             step: [[0.0; ABREAST]; 3],
             acc: [[[0.0; ABREAST]; 3]; KEPT],
             newest: KEPT - 1,
+            watch: Watch::new(way.field, &nodes[0], step_s, first),
+            lones: Vec::new(),
+            alone: [false; ABREAST],
             ids,
-        });
-        let mut from = Box::new(States { pos: block.pos, vel: block.step });
+        };
+        let mut from = States { pos: block.pos, vel: block.step };
         for (lane, &id) in block.ids.iter().enumerate() {
-            let (pos, vel, lives) = state(id);
-            block.lives[lane] = lives;
-            if lives {
+            let Some((pos, vel)) = state(id) else {
+                block.lives[lane] = false;
+                continue;
+            };
+            if block.watch.near(&nodes[0], (pos, vel), step_s, AHEAD_OF_START) {
+                block.lones.push(Lone::new(lane, pos, vel));
+                block.alone[lane] = true;
+                continue;
+            }
+            for axis in 0..3 {
+                from.pos[axis][lane] = pos[axis];
+                from.vel[axis][lane] = vel[axis];
+            }
+        }
+        block.iterate(way.field, nodes, step_s, &from);
+        for (slot, node) in nodes.iter().enumerate() {
+            if slot > 0 {
+                block.go_alone(way, &nodes[slot - 1], node, step_s, true);
+            }
+            for n in 0..block.lones.len() {
+                let (lane, (pos, vel)) = (block.lones[n].lane, block.lones[n].state());
+                let acc = way.field.pull_at(node, pos, vel);
                 for axis in 0..3 {
-                    from.pos[axis][lane] = pos[axis];
-                    from.vel[axis][lane] = vel[axis];
+                    block.acc[slot][axis][lane] = acc[axis];
                 }
             }
         }
-        block.iterate(field, nodes, step_s, &from);
         block
     }
 
+    /// Takes those that go by themselves from one node to the next.
+    fn go_alone(&mut self, way: &mut Way<'_>, from: &Node, to: &Node, step_s: f64, starting: bool) {
+        let mut n = 0;
+        while n < self.lones.len() {
+            let lone = &mut self.lones[n];
+            let lane = lone.lane;
+            lone.look(way.field, way.eph, way.cells, from.t_s, step_s, to.t_s);
+            if let Some((t_s, source)) = lone.step(starting) {
+                way.lost.push((t_s, self.ids[lane], source));
+                self.take_out(lane);
+                self.lones.remove(n);
+                continue;
+            }
+            let (pos, _) = lone.state();
+            for axis in 0..3 {
+                self.pos[axis][lane] = pos[axis];
+            }
+            n += 1;
+        }
+    }
+
+    fn take_out(&mut self, lane: usize) {
+        self.lives[lane] = false;
+        self.alone[lane] = false;
+        for axis in 0..3 {
+            self.pos[axis][lane] = PARKED_M;
+            self.step[axis][lane] = 0.0;
+            for acc in &mut self.acc {
+                acc[axis][lane] = 0.0;
+            }
+        }
+    }
+
+    /// Finds the places of the start's nodes. Each round takes the accelerations at the places that those of the last round lead to, until they
+    /// no longer change (É. Picard, J. Math. Pures Appl. 6 (1890), 145).
     fn iterate(&mut self, field: &Field, nodes: &[Node], step_s: f64, from: &States) {
         #[expect(clippy::cast_precision_loss, reason = "a few")]
         let along = |node: usize| (node as f64, node as f64 - (KEPT - 1) as f64);
@@ -101,19 +184,20 @@ impl Block {
         for slot in 1..KEPT {
             self.acc[slot] = self.acc[0];
         }
+        let places: [Weights; KEPT] = std::array::from_fn(|node| between(first, along(node).1).0);
         let mut last = f64::INFINITY;
         for round in 0..MOST_ROUNDS {
             let mut changed = 0.0_f64;
             for node in 1..KEPT {
-                let (steps, at) = along(node);
-                let (places, _) = between(first, at);
-                self.place(&places, from, steps * step_s, step_s * step_s);
+                self.place(&places[node], from, along(node).0 * step_s, step_s * step_s);
                 let before = self.acc[node];
                 self.pull(field, &nodes[node], node);
                 changed = changed.max(self.largest_change(&before, node));
             }
-            // When it no longer shrinks, it is made of roundings; a tracer too near to a body for its steps may never settle.
-            if changed <= CONVERGED || round > 3 && changed >= last {
+            // Each round shrinks the change by about the same factor, so this is what the next one would still change. When it no longer
+            // shrinks, it is made of roundings.
+            let next = changed * (changed / last);
+            if round > 3 && (next <= CONVERGED || changed >= last) {
                 break;
             }
             last = changed;
@@ -161,9 +245,18 @@ impl Block {
         most
     }
 
-    /// One step, to a node.
-    pub(super) fn step(&mut self, field: &Field, node: &Node, step_s: f64) {
-        let step2 = step_s * step_s;
+    /// One step, to the `k`-th node from the start.
+    pub(super) fn step(&mut self, way: &mut Way<'_>, from: &Node, node: &Node, k: u32, step_s: f64) {
+        self.predict(step_s * step_s);
+        self.go_alone(way, from, node, step_s, false);
+        self.newest = (self.newest + 1) % KEPT;
+        self.pull(way.field, node, self.newest);
+        if k.is_multiple_of(WATCHED) {
+            self.look_round(node, step_s);
+        }
+    }
+
+    fn predict(&mut self, step2: f64) {
         let mut weights = [0.0; KEPT];
         for (age, weight) in STEP.iter().enumerate() {
             weights[(self.newest + KEPT - age) % KEPT] = step2 * weight;
@@ -178,8 +271,67 @@ impl Block {
                 self.pos[axis][l] += self.step[axis][l];
             }
         }
-        self.newest = (self.newest + 1) % KEPT;
-        self.pull(field, node, self.newest);
+    }
+
+    /// Looks which tracers have to go by themselves from here, and which no longer.
+    fn look_round(&mut self, node: &Node, step_s: f64) {
+        let speeds = self.by_slot(&SPEED, step_s * step_s);
+        let mut n = 0;
+        while n < self.lones.len() {
+            let lone = &mut self.lones[n];
+            let (lane, (pos, vel)) = (lone.lane, lone.state());
+            lone.clean =
+                if self.watch.near(node, (pos, vel), step_s, AHEAD) { 0 } else { lone.clean + WATCHED };
+            if lone.clean <= CLEAN {
+                n += 1;
+                continue;
+            }
+            self.lones.remove(n);
+            self.alone[lane] = false;
+            for axis in 0..3 {
+                self.step[axis][lane] = step_s * vel[axis] - self.sum(&speeds, axis, lane);
+            }
+        }
+        let half2 = 0.5 * step_s * step_s;
+        self.watch.narrow(
+            node,
+            step_s,
+            AHEAD,
+            (0..self.ids.len()).filter(|lane| self.lives[*lane]).map(|lane| {
+                ([0, 1, 2].map(|axis| self.pos[axis][lane]), [0, 1, 2].map(|axis| self.step[axis][lane]))
+            }),
+        );
+        for from in (0..self.width).step_by(LANES) {
+            let (mut pos, mut moved) = ([[0.0; LANES]; 3], [[0.0; LANES]; 3]);
+            for axis in 0..3 {
+                pos[axis].copy_from_slice(&self.pos[axis][from..from + LANES]);
+                for l in 0..LANES {
+                    moved[axis][l] =
+                        self.step[axis][from + l] + half2 * self.acc[self.newest][axis][from + l];
+                }
+            }
+            let margins = self.watch.margins(node, &pos, &moved, step_s, AHEAD);
+            for lane in (from..self.ids.len()).take(LANES) {
+                if margins[lane - from] < 0.0 && self.lives[lane] && !self.alone[lane] {
+                    let pos = [0, 1, 2].map(|axis| self.pos[axis][lane]);
+                    let vel = [0, 1, 2]
+                        .map(|axis| (self.step[axis][lane] + self.sum(&speeds, axis, lane)) / step_s);
+                    self.lones.push(Lone::new(lane, pos, vel));
+                    self.alone[lane] = true;
+                }
+            }
+        }
+    }
+
+    fn sum(&self, weights: &Weights, axis: usize, lane: usize) -> f64 {
+        weights.iter().zip(&self.acc).map(|(weight, acc)| weight * acc[axis][lane]).sum()
+    }
+
+    /// Finds the ways of those that go by themselves as far as `to_s`, which the next node at `next_s` is not before.
+    pub(super) fn look(&mut self, way: &mut Way<'_>, from_s: f64, step_s: f64, to_s: f64) {
+        for lone in &mut self.lones {
+            lone.look(way.field, way.eph, way.cells, from_s, step_s, to_s);
+        }
     }
 
     /// Accelerations at the places of the block, into a slot.
@@ -192,7 +344,8 @@ impl Block {
             z.copy_from_slice(&self.pos[2][from..from + LANES]);
             let (mut ax, mut ay, mut az) =
                 ([-node.shift[0]; LANES], [-node.shift[1]; LANES], [-node.shift[2]; LANES]);
-            for (source, at) in field.sources[..field.massive].iter().zip(&node.at) {
+            let (sources, at) = (&field.sources[..field.massive], &node.at[..field.massive]);
+            for (source, at) in sources.iter().zip(at) {
                 for l in 0..LANES {
                     let d = [at[0] - x[l], at[1] - y[l], at[2] - z[l]];
                     let r2 = d[0] * d[0] + d[1] * d[1] + d[2] * d[2];
@@ -213,30 +366,6 @@ impl Block {
             acc[0][from..from + LANES].copy_from_slice(&ax);
             acc[1][from..from + LANES].copy_from_slice(&ay);
             acc[2][from..from + LANES].copy_from_slice(&az);
-        }
-    }
-
-    /// Finds the tracers that are within the radius of a source at a node, hands them to `lost` with it, and takes them out.
-    pub(super) fn contacts(&mut self, field: &Field, node: &Node, mut lost: impl FnMut(usize, usize)) {
-        for (n, (source, at)) in field.sources.iter().zip(&node.at).enumerate() {
-            if source.radius_m <= 0.0 {
-                continue;
-            }
-            for lane in 0..self.ids.len() {
-                let d = [self.pos[0][lane] - at[0], self.pos[1][lane] - at[1], self.pos[2][lane] - at[2]];
-                let r2 = d[0] * d[0] + d[1] * d[1] + d[2] * d[2];
-                if r2 < source.radius_m * source.radius_m && self.lives[lane] {
-                    self.lives[lane] = false;
-                    lost(self.ids[lane], n);
-                    for axis in 0..3 {
-                        self.pos[axis][lane] = PARKED_M;
-                        self.step[axis][lane] = 0.0;
-                        for acc in &mut self.acc {
-                            acc[axis][lane] = 0.0;
-                        }
-                    }
-                }
-            }
         }
     }
 
@@ -266,6 +395,19 @@ impl Block {
                 }
             }
         }
+    }
+
+    /// The states of those that go by themselves, at an instant that was looked at; `None` for those that are gone by then.
+    pub(super) fn lone_states(&self, t_s: f64) -> impl Iterator<Item = (usize, Option<Moving>)> {
+        self.lones.iter().map(move |lone| (lone.lane, lone.at(t_s)))
+    }
+
+    /// Those that go by themselves and are lost on the way that was looked at, until an instant.
+    pub(super) fn losses_between(&self, from_s: f64, to_s: f64) -> impl Iterator<Item = (f64, usize, usize)> {
+        let lost = self.lones.iter().filter_map(|lone| Some((lone.lost_ahead()?, self.ids[lone.lane])));
+        let forward = to_s >= from_s;
+        lost.filter(move |((t_s, _), _)| if forward { *t_s <= to_s } else { *t_s >= to_s })
+            .map(|((t_s, source), id)| (t_s, id, source))
     }
 
     fn by_slot(&self, by_age: &Weights, times: f64) -> Weights {

@@ -8,7 +8,7 @@ use crate::initial::InitialState;
 /// Where all tracers are at one instant.
 #[derive(Debug, Clone, Copy)]
 pub struct Positions<'a> {
-    /// Places relative to the body that the swarm is about, m, along each axis. Of tracers that are gone they mean nothing.
+    /// Places relative to the body that the swarm is about, m, along each axis. Of tracers that are gone: 0.
     pub x: &'a [f64],
     /// As `x`.
     pub y: &'a [f64],
@@ -112,6 +112,7 @@ impl Cursor {
                     at.stretch += 1;
                 }
                 None => {
+                    at.flock.look(eph, t_s);
                     self.show(eph, &at.flock, t_s);
                     self.t_s = Some(t_s);
                     self.at = Some(at);
@@ -150,9 +151,10 @@ impl Cursor {
     fn show(&mut self, eph: &Ephemeris, flock: &Flock, t_s: f64) {
         let Self { setting, x, y, z, gone, .. } = self;
         let by = flock.origin_from_body(setting, eph, t_s);
-        flock.states(t_s, false, |id, lives, pos, _| {
-            gone[id] = !lives;
-            (x[id], y[id], z[id]) = (pos[0] + by.x, pos[1] + by.y, pos[2] + by.z);
+        flock.states(t_s, false, |id, state| {
+            gone[id] = state.is_none();
+            (x[id], y[id], z[id]) =
+                state.map_or((0.0, 0.0, 0.0), |(pos, _)| (pos[0] + by.x, pos[1] + by.y, pos[2] + by.z));
         });
     }
 }

@@ -6,8 +6,9 @@
 //! for them (relativity) is left out for it, and tracers near it fall with it.
 
 use crate::Vector3;
-use crate::ephemeris::Ephemeris;
-use crate::initial::InitialState;
+use crate::ephemeris::{Ephemeris, State};
+use crate::gravity::Drags;
+use crate::initial::{Drag, InitialState};
 use crate::scenario::BodyId;
 
 /// A body that pulls on tracers, or stops them.
@@ -38,6 +39,16 @@ pub(super) struct Field {
     pub(super) sources: Vec<Source>,
     pub(super) massive: usize,
     bulges: Vec<Bulge>,
+    airs: Vec<Air>,
+}
+
+/// The air around one of the sources, and how it slows a tracer.
+#[derive(Debug, Clone)]
+struct Air {
+    source: usize,
+    reach_m: f64,
+    /// For a tracer and the source, in this order.
+    drags: Drags,
 }
 
 /// The bodies at one instant.
@@ -46,6 +57,8 @@ pub(super) struct Node {
     pub(super) t_s: f64,
     /// Places of the sources relative to the origin.
     pub(super) at: Vec<[f64; 3]>,
+    /// Their velocities relative to it.
+    pub(super) moving: Vec<[f64; 3]>,
     /// Acceleration of the origin.
     pub(super) shift: [f64; 3],
 }
@@ -55,6 +68,7 @@ impl Field {
     pub(super) fn new(
         initial: &InitialState,
         about: BodyId,
+        area_m2_kg: f64,
         inertial: bool,
         eph: &Ephemeris,
         t_s: f64,
@@ -103,7 +117,21 @@ impl Field {
                 })
             })
             .collect();
-        Self { about, inertial, sources, massive, bulges }
+        let slowed = Drag { body: about, area_m2_kg };
+        let airs = initial
+            .forces
+            .atmospheres
+            .iter()
+            .filter(|_| area_m2_kg > 0.0)
+            .filter_map(|air| {
+                Some(Air {
+                    source: sources.iter().position(|source| source.body == air.body)?,
+                    reach_m: air.radius_m + air.air.top_m(),
+                    drags: Drags::new(0, &slowed, 1, air),
+                })
+            })
+            .collect();
+        Self { about, inertial, sources, massive, bulges, airs }
     }
 
     /// Where the origin is, barycentric, and how it moves.
@@ -114,21 +142,91 @@ impl Field {
 
     /// The bodies at an instant, into a node.
     pub(super) fn fill(&self, eph: &Ephemeris, t_s: f64, node: &mut Node) {
-        let (origin, _) = self.origin(eph, t_s);
+        let (origin, drift) = self.origin(eph, t_s);
         node.t_s = t_s;
         node.at.clear();
+        node.moving.clear();
         for source in &self.sources {
-            let pos = eph.state(source.body, t_s).map_or(Vector3::zeros(), |state| state.pos);
-            node.at.push((pos - origin).into());
+            let still = State { pos: origin, vel: drift };
+            let state = eph.state(source.body, t_s).unwrap_or(still);
+            node.at.push((state.pos - origin).into());
+            node.moving.push((state.vel - drift).into());
         }
         node.shift = if self.inertial { [0.0; 3] } else { self.shift(&node.at) };
     }
 
-    /// How the sources move relative to the origin.
-    pub(super) fn speeds(&self, eph: &Ephemeris, t_s: f64) -> Vec<[f64; 3]> {
-        let (_, origin) = self.origin(eph, t_s);
-        let speed = |source: &Source| eph.state(source.body, t_s).map_or(Vector3::zeros(), |state| state.vel);
-        self.sources.iter().map(|source| (speed(source) - origin).into()).collect()
+    /// Where a source is at an instant.
+    pub(super) fn place(&self, eph: &Ephemeris, source: usize, t_s: f64) -> [f64; 3] {
+        let (origin, _) = self.origin(eph, t_s);
+        eph.state(self.sources[source].body, t_s).map_or([0.0; 3], |state| (state.pos - origin).into())
+    }
+
+    /// Acceleration of a tracer by all that acts on it.
+    pub(super) fn pull_at(&self, node: &Node, pos: [f64; 3], vel: [f64; 3]) -> [f64; 3] {
+        let mut acc = node.shift.map(|a| -a);
+        for (source, at) in self.sources[..self.massive].iter().zip(&node.at) {
+            let d = [at[0] - pos[0], at[1] - pos[1], at[2] - pos[2]];
+            let r2 = d[0] * d[0] + d[1] * d[1] + d[2] * d[2];
+            let w = source.gm / (r2 * r2.sqrt());
+            for axis in 0..3 {
+                acc[axis] += w * d[axis];
+            }
+        }
+        if self.bulging() {
+            let bulges = self.bulge_pull(node, pos);
+            for axis in 0..3 {
+                acc[axis] += bulges[axis];
+            }
+        }
+        for air in &self.airs {
+            let mut both = [0.0; 6];
+            let (pos, vel) = both_of(node, air.source, pos, vel);
+            air.drags.add(&[0.0, self.sources[air.source].gm], &pos, &vel, &mut both);
+            for axis in 0..3 {
+                acc[axis] += both[axis];
+            }
+        }
+        acc
+    }
+
+    /// Whether there is air that slows tracers.
+    pub(super) fn airy(&self) -> bool {
+        !self.airs.is_empty()
+    }
+
+    /// The longest step that air allows, s.
+    pub(super) fn longest_step_s(&self, node: &Node, pos: [f64; 3], vel: [f64; 3]) -> f64 {
+        self.airs.iter().fold(f64::INFINITY, |least, air| {
+            let (pos, vel) = both_of(node, air.source, pos, vel);
+            // What is not a number is no limit.
+            least.min(air.drags.longest_step_s(&[0.0, self.sources[air.source].gm], &pos, &vel))
+        })
+    }
+
+    /// The sources that can be touched, with their radii.
+    pub(super) fn solids(&self) -> impl Iterator<Item = (usize, f64)> {
+        let radii = self.sources.iter().map(|source| source.radius_m).enumerate();
+        radii.filter(|(_, radius_m)| *radius_m > 0.0)
+    }
+
+    /// How far out the surface of a source reaches, or its air.
+    pub(super) fn reach_m(&self, source: usize) -> f64 {
+        let airs = self.airs.iter().filter(|air| air.source == source);
+        airs.fold(self.sources[source].radius_m, |reach_m, air| reach_m.max(air.reach_m))
+    }
+
+    /// The source that pulls most at a place.
+    pub(super) fn strongest(&self, node: &Node, pos: [f64; 3]) -> Option<usize> {
+        (0..self.massive).max_by(|&a, &b| {
+            let pull = |n: usize| self.sources[n].gm / square_apart(node.at[n], pos);
+            pull(a).total_cmp(&pull(b))
+        })
+    }
+
+    /// The source nearest to a place.
+    pub(super) fn nearest(&self, node: &Node, pos: [f64; 3]) -> usize {
+        let square = |n: usize| square_apart(node.at[n], pos);
+        (0..node.at.len()).min_by(|&a, &b| square(a).total_cmp(&square(b))).unwrap_or_default()
     }
 
     /// Acceleration of the body that the swarm is about, and all that moves as one with it.
@@ -181,6 +279,17 @@ impl Field {
         }
         sum
     }
+}
+
+/// Places and velocities of a tracer and a source, one after the other.
+fn both_of(node: &Node, source: usize, pos: [f64; 3], vel: [f64; 3]) -> ([f64; 6], [f64; 6]) {
+    let (at, moving) = (node.at[source], node.moving[source]);
+    ([pos[0], pos[1], pos[2], at[0], at[1], at[2]], [vel[0], vel[1], vel[2], moving[0], moving[1], moving[2]])
+}
+
+fn square_apart(a: [f64; 3], b: [f64; 3]) -> f64 {
+    let d = [a[0] - b[0], a[1] - b[1], a[2] - b[2]];
+    d[0] * d[0] + d[1] * d[1] + d[2] * d[2]
 }
 
 impl Bulge {

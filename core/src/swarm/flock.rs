@@ -3,9 +3,11 @@
 //! Each tracer has a step of 2^k seconds by its own time scale, and shares blocks with others of the same step. The nodes lie at whole steps
 //! from the stretch's start.
 
-use super::block::{ABREAST, Block, States};
+use super::block::{ABREAST, Block, States, Way};
 use super::field::{Field, Node};
+use super::lone::Cells;
 use super::scale;
+use super::watch::Moving;
 use super::weights::KEPT;
 use super::{Loss, Start};
 use crate::Vector3;
@@ -21,7 +23,7 @@ const STRIP: u32 = 32;
 
 /// Steps that a tracer takes in a stretch, in the mean. Going back to a start costs that many; finding the first nodes of a start costs the
 /// work of two hundred.
-const STEPS: f64 = 1024.0;
+const STEPS: f64 = 2048.0;
 
 /// The longest step of a stretch fits into it this many times at least.
 const FEWEST_STEPS: f64 = 32.0;
@@ -31,6 +33,10 @@ const DIGESTED: u32 = 8;
 
 /// Work of a start, in steps.
 const START_STEPS: usize = 200;
+
+/// The first node from which steps are taken: the last of a start's own.
+#[expect(clippy::cast_possible_truncation, reason = "a few")]
+const FIRST: u32 = KEPT as u32 - 1;
 
 /// What doesn't change on the way.
 #[derive(Debug, Clone)]
@@ -109,6 +115,8 @@ pub(super) struct Flock {
     field: Field,
     levels: Vec<Level>,
     nodes: Vec<Node>,
+    cells: Cells,
+    lost: Vec<(f64, usize, usize)>,
     /// Tracers lost since this was last emptied.
     pub(super) losses: Vec<Loss>,
     pub(super) digest: u64,
@@ -127,25 +135,28 @@ impl Flock {
         let t_s = start.t_s;
         // Going back, what happens at time 0 itself lies outside.
         let inside_s = if direction < 0.0 && t_s >= 0.0 { -f64::MIN_POSITIVE } else { t_s };
-        let field = Field::new(&setting.initial, setting.about, setting.inertial, eph, inside_s);
+        let area_m2_kg = setting.initial.swarms[setting.index].area_m2_kg;
+        let field = Field::new(&setting.initial, setting.about, area_m2_kg, setting.inertial, eph, inside_s);
         let mut node = Node::default();
         field.fill(eph, t_s, &mut node);
-        let speeds = field.speeds(eph, t_s);
-        let mut order: Vec<(i32, usize)> = states
+        let motions = scale::motions(&field, &node);
+        let circled = |state: &[f64]| field.strongest(&node, [state[0], state[1], state[2]]);
+        // Those in one block have one step, and circle one body.
+        let mut order: Vec<(i32, Option<usize>, usize)> = states
             .chunks_exact(PER_TRACER)
             .enumerate()
-            .map(|(id, state)| (scale::exponent(&field, &node, &speeds, state), id))
+            .map(|(id, state)| (scale::exponent(&field, &motions, &node, state), circled(state), id))
             .collect();
-        let longest = order.iter().map(|(exponent, _)| *exponent).max().unwrap_or_default();
+        let longest = order.iter().map(|(exponent, ..)| *exponent).max().unwrap_or_default();
         if start.most_exponent >= longest {
             start.most_exponent = i32::MAX;
         }
-        for (exponent, _) in &mut order {
+        for (exponent, ..) in &mut order {
             *exponent = (*exponent).min(start.most_exponent);
         }
         order.sort_unstable();
-        let longest_s = order.last().map_or(1.0, |(exponent, _)| scale::seconds(*exponent));
-        let rate: f64 = order.iter().map(|(exponent, _)| 1.0 / scale::seconds(*exponent)).sum();
+        let longest_s = order.last().map_or(1.0, |(exponent, ..)| scale::seconds(*exponent));
+        let rate: f64 = order.iter().map(|(exponent, ..)| 1.0 / scale::seconds(*exponent)).sum();
         #[expect(clippy::cast_precision_loss, reason = "a count")]
         let mean_s = STEPS * (order.len() as f64) / rate;
         let lasts_s = if mean_s.is_finite() { mean_s.max(FEWEST_STEPS * longest_s) } else { longest_s };
@@ -155,7 +166,9 @@ impl Flock {
             direction,
             field,
             levels: Vec::new(),
-            nodes: vec![Node::default(); KEPT.max(STRIP as usize)],
+            nodes: vec![Node::default(); STRIP as usize + 1],
+            cells: Cells::default(),
+            lost: Vec::new(),
             losses: Vec::new(),
             digest: 0,
         };
@@ -166,25 +179,36 @@ impl Flock {
         flock
     }
 
-    fn add_level(&mut self, eph: &Ephemeris, group: &[(i32, usize)], states: &[f64]) {
-        let Some((exponent, _)) = group.first() else { return };
+    fn add_level(&mut self, eph: &Ephemeris, group: &[(i32, Option<usize>, usize)], states: &[f64]) {
+        let Some((exponent, ..)) = group.first() else { return };
         let step_s = self.direction * scale::seconds(*exponent);
         for (n, node) in (0..).zip(&mut self.nodes[..KEPT]) {
             self.field.fill(eph, self.start_s + f64::from(n) * step_s, node);
         }
-        let mut level = Level { step_s, node: 0, blocks: Vec::new() };
-        for ids in group.chunks(ABREAST) {
-            let ids = ids.iter().map(|(_, id)| *id).collect();
-            let block = Block::start(&self.field, &self.nodes[..KEPT], step_s, ids, |id| {
-                let s = &states[id * PER_TRACER..][..PER_TRACER];
-                ([s[0], s[1], s[2]], [s[3], s[4], s[5]], !s[0].is_nan())
-            });
-            level.blocks.push(*block);
+        let mut way = Way { field: &self.field, eph, cells: &mut self.cells, lost: &mut self.lost };
+        let mut blocks = Vec::new();
+        for kin in group.chunk_by(|a, b| a.1 == b.1) {
+            for ids in kin.chunks(ABREAST) {
+                let ids = ids.iter().map(|(.., id)| *id).collect();
+                blocks.push(Block::start(&mut way, &self.nodes[..KEPT], step_s, ids, |id| {
+                    let s = &states[id * PER_TRACER..][..PER_TRACER];
+                    (!s[0].is_nan()).then_some(([s[0], s[1], s[2]], [s[3], s[4], s[5]]))
+                }));
+            }
         }
-        #[expect(clippy::cast_possible_truncation, reason = "a few")]
-        let last = (KEPT - 1) as u32;
-        level.node = last;
-        self.levels.push(level);
+        self.levels.push(Level { step_s, node: FIRST, blocks });
+        self.tell();
+    }
+
+    /// Turns what was lost into losses.
+    fn tell(&mut self) {
+        let Self { field, lost, losses, .. } = self;
+        let loss = |(t_s, tracer, source): (f64, usize, usize)| Loss {
+            t_s,
+            tracer,
+            onto: field.sources[source].body,
+        };
+        losses.extend(lost.drain(..).map(loss));
     }
 
     /// Steps on to the last nodes before `until_s`, by about `most` tracer-steps less what `work` already counts. True when there.
@@ -195,29 +219,51 @@ impl Flock {
                 if *work >= most {
                     return false;
                 }
-                let level = &mut self.levels[n];
-                // Strips end at whole multiples, so that what was asked for before makes no difference.
-                let last = ((level.node / STRIP + 1) * STRIP).min(until);
-                for (node, k) in self.nodes.iter_mut().zip(level.node + 1..=last) {
-                    self.field.fill(eph, self.start_s + f64::from(k) * level.step_s, node);
-                }
-                for block in &mut level.blocks {
-                    for (node, k) in self.nodes.iter().zip(level.node + 1..=last) {
-                        block.step(&self.field, node, level.step_s);
-                        block.contacts(&self.field, node, |tracer, source| {
-                            let onto = self.field.sources[source].body;
-                            self.losses.push(Loss { t_s: node.t_s, tracer, onto });
-                        });
-                        if k % DIGESTED == 0 {
-                            self.digest = self.digest.wrapping_add(block.digest(u64::from(k)));
-                        }
-                    }
-                    *work += block.ids.len() * (last - level.node) as usize;
-                }
-                level.node = last;
+                self.strip(eph, n, until, work);
             }
         }
+        self.tell();
         true
+    }
+
+    /// Some steps of a level, up to a node.
+    fn strip(&mut self, eph: &Ephemeris, n: usize, until: u32, work: &mut usize) {
+        let Self { start_s, field, levels, nodes, cells, lost, digest, .. } = self;
+        let level = &mut levels[n];
+        let first = level.node;
+        // Strips end at whole multiples: the bodies are found for as many nodes as there is room for.
+        let last = ((first / STRIP + 1) * STRIP).min(until);
+        for (node, k) in nodes.iter_mut().zip(first..=last) {
+            field.fill(eph, level.time(*start_s, k), node);
+        }
+        let mut way = Way { field, eph, cells, lost };
+        for block in &mut level.blocks {
+            for (pair, k) in nodes.windows(2).zip(first + 1..=last) {
+                block.step(&mut way, &pair[0], &pair[1], k, level.step_s);
+                if k.is_multiple_of(DIGESTED) {
+                    *digest = digest.wrapping_add(block.digest(u64::from(k)));
+                }
+            }
+            *work += block.ids.len() * (last - first) as usize;
+        }
+        level.node = last;
+    }
+
+    /// Finds what frames at an instant need beyond the newest nodes.
+    pub(super) fn look(&mut self, eph: &Ephemeris, t_s: f64) {
+        let known_s = if self.direction > 0.0 { eph.until_s() } else { eph.from_s() };
+        let mut way = Way { field: &self.field, eph, cells: &mut self.cells, lost: &mut self.lost };
+        for level in &mut self.levels {
+            let (from_s, next_s) =
+                (level.time(self.start_s, level.node), level.time(self.start_s, level.node + 1));
+            if (t_s - from_s) * self.direction > 0.0 {
+                // Not beyond what is known of the bodies.
+                let to_s = if (next_s - known_s) * self.direction <= 0.0 { next_s } else { t_s };
+                for block in &mut level.blocks {
+                    block.look(&mut way, from_s, level.step_s, to_s);
+                }
+            }
+        }
     }
 
     /// Whether an instant can still be looked at: it doesn't lie before the nodes of any tracer.
@@ -225,28 +271,28 @@ impl Flock {
         self.levels.iter().all(|level| level.node_before(self.start_s, t_s) >= level.node)
     }
 
-    /// Hands out positions, and velocities if asked for, at an instant up to a step from the newest nodes: relative to the origin.
-    pub(super) fn states(
-        &self,
-        t_s: f64,
-        velocities: bool,
-        mut out: impl FnMut(usize, bool, [f64; 3], [f64; 3]),
-    ) {
-        let mut states = Box::new(States::default());
+    /// Hands out the positions, and the velocities if asked for, relative to the origin, at an instant up to a step from the newest nodes that
+    /// was looked at; `None` of tracers that are gone.
+    pub(super) fn states(&self, t_s: f64, velocities: bool, mut out: impl FnMut(usize, Option<Moving>)) {
+        let mut states = States::default();
         for level in &self.levels {
             let steps = (t_s - self.start_s) / level.step_s - f64::from(level.node);
             for block in &level.blocks {
                 block.states(steps, level.step_s, &mut states, velocities);
-                let States { pos: [x, y, z], vel: [u, v, w] } = &*states;
+                let States { pos: [x, y, z], vel: [u, v, w] } = &states;
                 for (lane, &id) in block.ids.iter().enumerate() {
-                    out(id, block.lives[lane], [x[lane], y[lane], z[lane]], [u[lane], v[lane], w[lane]]);
+                    let state = ([x[lane], y[lane], z[lane]], [u[lane], v[lane], w[lane]]);
+                    out(id, block.lives[lane].then_some(state));
+                }
+                for (lane, state) in block.lone_states(t_s) {
+                    out(block.ids[lane], state);
                 }
             }
         }
     }
 
     /// States at the stretch's end, as the next start takes them.
-    pub(super) fn finish(&self, setting: &Setting, eph: &Ephemeris, end_s: f64) -> Vec<f64> {
+    pub(super) fn finish(&mut self, setting: &Setting, eph: &Ephemeris, end_s: f64) -> Vec<f64> {
         // The step's end counts as after a kick, and the instant before as before it.
         let before_s = if self.direction > 0.0 { end_s.next_down() } else { end_s.next_up() };
         let jump = self.field.origin(eph, end_s).1 - self.field.origin(eph, before_s).1;
@@ -255,15 +301,23 @@ impl Flock {
             .is_some_and(|at_s| at_s.to_bits() == end_s.to_bits());
         let jump = if breaks { jump } else { Vector3::zeros() };
         let mut numbers = vec![f64::NAN; setting.tracers() * PER_TRACER];
-        self.states(end_s, true, |id, lives, pos, vel| {
-            if lives {
-                let row = &mut numbers[id * PER_TRACER..][..PER_TRACER];
+        self.look(eph, end_s);
+        self.states(end_s, true, |id, state| {
+            let row = &mut numbers[id * PER_TRACER..][..PER_TRACER];
+            row.fill(f64::NAN);
+            if let Some((pos, vel)) = state {
                 row[..3].copy_from_slice(&pos);
                 for axis in 0..3 {
                     row[3 + axis] = vel[axis] - jump[axis];
                 }
             }
         });
+        for (level, t_s) in self.levels.iter().map(|level| (level, level.time(self.start_s, level.node))) {
+            // The last step, which nobody takes any more, may have lost some.
+            let ends = level.blocks.iter().flat_map(|block| block.losses_between(t_s, end_s));
+            self.lost.extend(ends);
+        }
+        self.tell();
         numbers
     }
 
@@ -283,10 +337,14 @@ impl Flock {
 }
 
 impl Level {
+    fn time(&self, start_s: f64, node: u32) -> f64 {
+        start_s + f64::from(node) * self.step_s
+    }
+
     /// The last node not after an instant, from where frames are drawn: the last of the start's own for what comes earlier.
     #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "clamped")]
     fn node_before(&self, start_s: f64, t_s: f64) -> u32 {
         let steps = ((t_s - start_s) / self.step_s).floor();
-        steps.clamp((KEPT - 1) as f64, f64::from(u32::MAX)) as u32
+        steps.clamp(f64::from(FIRST), f64::from(u32::MAX)) as u32
     }
 }

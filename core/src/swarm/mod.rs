@@ -4,19 +4,25 @@
 //! is little: states at sparse instants, from which every other is integrated again, always by the same steps. So where a tracer is
 //! at an instant is a function of that instant alone, to the bit, whatever was looked at before.
 //!
-//! They feel Newton's attraction of all bodies and the bulges of oblate ones. Relativity is left out for them: in ten years it turns the orbit of a
-//! tracer at 2 au by less than a thousandth of a degree.
+//! They feel Newton's attraction of all bodies, the bulges of oblate ones and air. Relativity is left out for them: in ten years it turns the orbit
+//! of a tracer at 2 au by less than a thousandth of a degree. Tracers that touch a body are gone.
+//!
+//! Most go in blocks, by a multistep method with one evaluation of the pulls a step (`block`). Those that come near to a body, or into air, leave
+//! their block and go by themselves until they are clear of it (`watch`, `lone`). Ten years of a belt among the planets are off by 1e-9 of its
+//! size in the middle, and by a few times 1e-8 for tracers that a planet passes.
 
 mod block;
 mod chunk;
 mod cursor;
 mod field;
 mod flock;
+mod lone;
 mod path;
 mod run;
 mod scale;
 #[cfg(test)]
 mod tests;
+mod watch;
 mod weights;
 
 pub use chunk::{Chunk, Mark};

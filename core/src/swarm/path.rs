@@ -112,7 +112,7 @@ impl Way {
     /// Drops what is not afforded any more.
     pub(super) fn thin(&mut self, afforded: usize) {
         let spacing = Self::spacing(self.starts.len(), afforded);
-        self.snapshots.retain(|snapshot| snapshot.start % spacing == 0);
+        self.snapshots.retain(|snapshot| snapshot.start.is_multiple_of(spacing));
     }
 
     fn bytes(&self) -> usize {

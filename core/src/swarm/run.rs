@@ -101,6 +101,7 @@ impl SwarmRun {
             way.end_s = to_s;
             if ends {
                 hand.next = Some((end_s, flock.finish(setting, eph, end_s)));
+                way.losses.append(&mut flock.losses);
                 hand.flock = None;
             }
         }
