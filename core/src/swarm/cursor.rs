@@ -5,6 +5,15 @@ use super::path::SwarmPath;
 use crate::ephemeris::Ephemeris;
 use crate::initial::InitialState;
 
+/// Most memory for going back, bytes.
+const KEPT_BYTES: usize = 32 << 20;
+
+/// Parts of a stretch after which its flock is kept, going on.
+const PARTS: f64 = 8.0;
+
+/// Going back, flocks are kept as near as this part of a stretch behind.
+const NEAREST: f64 = 1.0 / 256.0;
+
 /// Where all tracers are at one instant.
 #[derive(Debug, Clone, Copy)]
 pub struct Positions<'a> {
@@ -23,6 +32,8 @@ pub struct Positions<'a> {
 pub struct Cursor {
     setting: Setting,
     at: Option<At>,
+    /// The flock as it was at instants of its stretch, in their order, for going back.
+    kept: Vec<(f64, Flock)>,
     t_s: Option<f64>,
     x: Vec<f64>,
     y: Vec<f64>,
@@ -36,6 +47,10 @@ struct At {
     direction: f64,
     stretch: usize,
     flock: Flock,
+    /// Until when the flock has come at least.
+    done_s: f64,
+    /// Whether it is on its way to an instant before the one shown last.
+    back: bool,
 }
 
 impl Cursor {
@@ -49,6 +64,7 @@ impl Cursor {
             y: row.clone(),
             z: row,
             at: None,
+            kept: Vec::new(),
             t_s: None,
             setting,
         }
@@ -76,52 +92,97 @@ impl Cursor {
         let snapshot = way.snapshot_before(target);
         let from = snapshot.map_or(0, |snapshot| snapshot.start);
         let mut work = 0;
-        let mut at = match self.at.take() {
+        let (at, back) = match self.at.take() {
+            Some(at) if at.direction.to_bits() == direction.to_bits() && at.stretch == target => {
+                if at.flock.reaches_back_to(t_s) {
+                    (Some(at), false)
+                } else {
+                    self.kept.retain(|(kept_s, _)| (t_s - kept_s) * direction >= 0.0);
+                    let kept = self.kept.last();
+                    let at = kept.map(|(done_s, flock)| At {
+                        flock: flock.clone(),
+                        done_s: *done_s,
+                        back: true,
+                        ..at
+                    });
+                    (at, true)
+                }
+            }
             Some(at)
-                if at.direction.to_bits() == direction.to_bits()
-                    && (from..=target).contains(&at.stretch)
-                    && (at.stretch < target || at.flock.reaches_back_to(t_s)) =>
+                if at.direction.to_bits() == direction.to_bits() && (from..target).contains(&at.stretch) =>
             {
-                at
+                (Some(at), false)
             }
-            _ => {
-                let mut start = way.starts[from];
-                let first;
-                let states = match snapshot {
-                    Some(snapshot) => &snapshot.numbers,
-                    None => {
-                        first = self.setting.first(eph, direction);
-                        &first
-                    }
-                };
-                let flock = Flock::new(&self.setting, eph, &mut start, direction, states, &mut work);
-                At { direction, stretch: from, flock }
-            }
+            _ => (None, self.t_s.is_some_and(|now_s| (now_s - t_s) * direction > 0.0)),
         };
-        loop {
-            let next = way.starts.get(at.stretch + 1).filter(|_| at.stretch < target);
-            let there =
-                at.flock.advance(eph, next.map_or(t_s, |next| next.t_s), most_tracer_steps, &mut work);
-            at.flock.losses.clear();
-            match next {
-                _ if !there => break,
-                Some(next) => {
-                    let states = at.flock.finish(&self.setting, eph, next.t_s);
-                    let mut start = *next;
-                    at.flock = Flock::new(&self.setting, eph, &mut start, direction, &states, &mut work);
-                    at.stretch += 1;
-                }
+        let mut at = at.unwrap_or_else(|| {
+            let mut start = way.starts[from];
+            let first;
+            let states = match snapshot {
+                Some(snapshot) => &snapshot.numbers,
                 None => {
-                    at.flock.look(eph, t_s);
-                    self.show(eph, &at.flock, t_s);
-                    self.t_s = Some(t_s);
-                    self.at = Some(at);
-                    return true;
+                    first = self.setting.first(eph, direction);
+                    &first
                 }
+            };
+            self.kept.clear();
+            let flock = Flock::new(&self.setting, eph, &mut start, direction, states, &mut work);
+            At { direction, stretch: from, done_s: flock.start_s, flock, back }
+        });
+        let there = loop {
+            let Some(next) = way.starts.get(at.stretch + 1).filter(|_| at.stretch < target) else {
+                break self.go(&mut at, eph, t_s, most_tracer_steps, &mut work);
+            };
+            let there = at.flock.advance(eph, next.t_s, most_tracer_steps, &mut work);
+            at.flock.losses.clear();
+            if !there {
+                break false;
             }
+            let states = at.flock.finish(&self.setting, eph, next.t_s);
+            let mut start = *next;
+            at.flock = Flock::new(&self.setting, eph, &mut start, direction, &states, &mut work);
+            at.done_s = at.flock.start_s;
+            at.stretch += 1;
+            self.kept.clear();
+        };
+        if there {
+            at.back = false;
+            at.flock.look(eph, t_s);
+            self.show(eph, &at.flock, t_s);
+            self.t_s = Some(t_s);
         }
         self.at = Some(at);
-        false
+        there
+    }
+
+    /// Goes on in the stretch, and keeps the flock here and there: every so often, or halfway, three quarters of the way and so on, so that
+    /// going back one frame after another costs a few steps each.
+    fn go(&mut self, at: &mut At, eph: &Ephemeris, t_s: f64, most: usize, work: &mut usize) -> bool {
+        let lasts_s = (at.flock.ends_s - at.flock.start_s).abs();
+        let room = (KEPT_BYTES / at.flock.bytes().max(1)).max(1);
+        loop {
+            let left_s = (t_s - at.done_s).abs();
+            let last_s = self.kept.last().map_or(at.flock.start_s, |(kept_s, _)| *kept_s);
+            let keep_s = if at.back && left_s > NEAREST * lasts_s {
+                at.done_s + 0.5 * (t_s - at.done_s)
+            } else {
+                last_s + at.direction * lasts_s / PARTS
+            };
+            let keeps = self.kept.len() < room
+                && (t_s - keep_s) * at.direction > 0.0
+                && (keep_s - at.done_s) * at.direction > 0.0;
+            let to_s = if keeps { keep_s } else { t_s };
+            let there = at.flock.advance(eph, to_s, most, work);
+            at.flock.losses.clear();
+            if !there {
+                return false;
+            }
+            at.done_s = to_s;
+            if !keeps {
+                return true;
+            }
+            self.kept.push((to_s, at.flock.clone()));
+        }
     }
 
     /// The instant at which [`Cursor::positions`] are, seconds from the scenario's start; `None` before any was found.
@@ -136,8 +197,9 @@ impl Cursor {
 
     /// Memory held, bytes.
     pub fn bytes(&self) -> usize {
+        let kept: usize = self.kept.iter().map(|(_, flock)| flock.bytes()).sum();
         let flock = self.at.as_ref().map_or(0, |at| at.flock.bytes());
-        flock + size_of_val(&*self.x) * 3 + self.gone.len()
+        kept + flock + size_of_val(&*self.x) * 3 + self.gone.len()
     }
 
     fn show_first(&mut self) {

@@ -3,11 +3,13 @@ use crate::Vector3;
 use crate::air::Air;
 use crate::conic::universal;
 use crate::ephemeris::{Ephemeris, Propagation};
-use crate::initial::{Atmosphere, Drag, Forces, InitialBody, InitialState, InitialSwarm, Oblate};
+use crate::initial::{
+    Atmosphere, Drag, Forces, InitialBody, InitialState, InitialSwarm, Oblate, TimedChange,
+};
 use crate::math::float::sin_cos;
-use crate::scenario::{Change, ChangeKind, Kick, Place, Surface};
+use crate::scenario::{ChangeKind, Kick, Surface};
 use crate::solar_system::{PLANETS, solar_system};
-use crate::units::{Span, Speed};
+use crate::units::Speed;
 
 const GM: f64 = 1.327e20;
 const AU: f64 = 1.496e11;
@@ -144,6 +146,26 @@ fn an_instant_has_the_same_bits_whatever_was_asked_before() {
         while !fresh.seek(once.path(), &eph, t_s, 20_000) {}
         assert_eq!(bits(&used), bits(&fresh), "at {t_s} s");
     }
+}
+
+#[test]
+fn going_back_frame_by_frame_takes_little_work() {
+    let initial = with_planet();
+    let eph = ephemeris(&initial, 0.0, 40.0 * YEAR_S);
+    let run = whole(&initial, &eph, 0.0, 40.0 * YEAR_S);
+    let mut cursor = Cursor::new(&initial, 0);
+    let end_s = 0.95 * run.path().forward.starts[1].t_s;
+    assert!(cursor.seek(run.path(), &eph, end_s, usize::MAX));
+    // Going back takes eighths of a stretch first, and then less and less: on the whole, less than a stretch for each eighth.
+    let stretch = 2048 * 150;
+    let mut calls = 0;
+    for k in 1..=200 {
+        calls += 1;
+        while !cursor.seek(run.path(), &eph, end_s - 4e5 * f64::from(k), stretch / 64) {
+            calls += 1;
+        }
+    }
+    assert!(calls < 600, "{calls} calls of a 64th of a stretch for 200 frames");
 }
 
 #[test]
@@ -285,11 +307,10 @@ fn kicks_and_switches_on_the_way_act_on_tracers() {
     let swarm = &mut initial.swarms[0];
     swarm.pos.truncate(12);
     swarm.vel.truncate(12);
-    let change = |days: f64, body: usize, what: ChangeKind| Change {
-        at: Span::from_s(days * 86_400.0),
+    let change = |days: f64, body: usize, what: ChangeKind| TimedChange {
+        t_s: days * 86_400.0,
         body: BodyId(body),
         what,
-        place: Place::default(),
     };
     let aside = Kick::By([Speed::from_m_s(0.0), Speed::from_m_s(900.0), Speed::from_m_s(-200.0)]);
     initial.changes = vec![
