@@ -1,8 +1,8 @@
 //! Aiming: numbers of a scenario that lead to a stated outcome.
 //!
 //! `[[aim]]` in a file says what is wanted and which numbers may be changed within which limits. The numbers are written into the
-//! text itself, so that what is found is what the file says; comments and order stay. First the whole range is sampled, then
-//! the best points are refined by least squares. When none of them gets there, the answer is how near the nearest came.
+//! text itself, so that what is found is what the file says; comments and order stay. First the whole range is sampled, and with it the
+//! paths of two bodies that lead there, where a velocity is free; then the best points are refined by least squares. When none of them gets there, the answer is how near the nearest came.
 //!
 //! ```
 //! let text = r#"
@@ -27,6 +27,7 @@
 //! ```
 
 mod fit;
+mod guess;
 #[cfg(test)]
 mod tests;
 mod trial;
@@ -144,15 +145,16 @@ type Tried = (Vec<f64>, Vec<f64>);
 
 #[derive(Debug)]
 enum Stage {
-    /// Points are sampled: how many so far, those that could be compared, and why the first of the others couldn't.
-    Sampling { next: usize, tried: Vec<Tried>, why: Option<String> },
+    /// Points are sampled: the guesses that are left, how many others so far, those that could be compared, and why the first of the rest
+    /// couldn't.
+    Sampling { guesses: Option<Vec<Vec<f64>>>, next: usize, tried: Vec<Tried>, why: Option<String> },
     /// The starts that are left, nearest last; the one that is refined; and the nearest so far.
     Refining { starts: Vec<Tried>, fit: Fit, nearest: Tried },
 }
 
 impl Stage {
     const fn start() -> Self {
-        Self::Sampling { next: 0, tried: Vec::new(), why: None }
+        Self::Sampling { guesses: None, next: 0, tried: Vec::new(), why: None }
     }
 }
 
@@ -233,13 +235,21 @@ impl Stage {
     /// Works on; gives the point that meets the aim once there is one.
     fn work(&mut self, trial: &Trial<'_>, trials: &mut usize) -> Result<Option<Vec<f64>>, AimFailure> {
         match self {
-            Self::Sampling { next, tried, why } => {
-                // The first point is what the file states.
-                let point = match *next {
-                    0 => trial.stated(),
-                    index => Some(scattered(index, trial.aim.free.len())),
+            Self::Sampling { guesses, next, tried, why } => {
+                // The first point is what the file states; then come the guesses.
+                let guess = match *next {
+                    0 => None,
+                    _ => guesses.get_or_insert_with(|| guess::points(trial)).pop(),
                 };
-                *next += 1;
+                let point = if guess.is_some() {
+                    guess
+                } else {
+                    *next += 1;
+                    match *next - 1 {
+                        0 => trial.stated(),
+                        index => Some(scattered(index, trial.aim.free.len())),
+                    }
+                };
                 if let Some(point) = point {
                     *trials += 1;
                     match trial.misses(&point, None) {

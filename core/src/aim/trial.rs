@@ -77,16 +77,18 @@ impl Trial<'_> {
 
     /// The point at which the numbers stand in the text, where all are stated and within their ranges.
     pub(super) fn stated(&self) -> Option<Vec<f64>> {
-        let share = |free: &Free| {
-            let path = Path { root: Root::BodyAt(free.section), keys: &free.keys };
-            let si = match free.measure {
-                Measure::Number => self.document.get(path)?.trim().parse().ok()?,
-                _ => read(free.measure, &self.document.get_text(path)?).ok()?,
-            };
-            let share = (si - free.from) / (free.to - free.from);
-            (0.0..=1.0).contains(&share).then_some(share)
+        self.aim.free.iter().map(|free| self.stated_share(free)).collect()
+    }
+
+    /// Where in its range a number stands in the text, where it is stated and within it.
+    pub(super) fn stated_share(&self, free: &Free) -> Option<f64> {
+        let path = Path { root: Root::BodyAt(free.section), keys: &free.keys };
+        let si = match free.measure {
+            Measure::Number => self.document.get(path)?.trim().parse().ok()?,
+            _ => read(free.measure, &self.document.get_text(path)?).ok()?,
         };
-        self.aim.free.iter().map(share).collect()
+        let share = (si - free.from) / (free.to - free.from);
+        (0.0..=1.0).contains(&share).then_some(share)
     }
 
     /// What the numbers at a point lead to.
@@ -137,7 +139,7 @@ fn first_error(problems: &[Problem]) -> String {
     error.map(ToString::to_string).unwrap_or_default()
 }
 
-fn horizon_s(want: &Want) -> f64 {
+pub(super) fn horizon_s(want: &Want) -> f64 {
     match want.of {
         Wanted::Event { until, .. } => until.s(),
         Wanted::Instant { at, .. } => at.s(),
@@ -163,13 +165,16 @@ impl View<'_> {
                 };
                 let state = self.relative(body, about, at.s())?;
                 for outcome in &want.outcomes {
+                    let allowed = allowed(want, *outcome);
                     let ratio = || self.period_s(body, at.s()).zip(self.period_s(about?, at.s()));
                     match *outcome {
                         Outcome::PeriodRatio(wanted) => {
                             let (a, b) = ratio().ok_or_else(|| format!("{of} have not both a period"))?;
-                            misses.push(plain(format!("period-ratio of {of}"), a / b, wanted, PART * wanted));
+                            misses.push(plain(format!("period-ratio of {of}"), a / b, wanted, allowed));
                         }
-                        other => misses.extend(self.state_miss(other, &format!("of {of}"), state, None)),
+                        other => {
+                            misses.extend(self.state_miss(other, allowed, &format!("of {of}"), state, None))
+                        }
                     }
                 }
                 Ok(())
@@ -188,8 +193,8 @@ impl View<'_> {
         found.retain(|e| e.t_s > START_S);
         let of = self.event_name(&event);
         if let [Outcome::Count(wanted)] = want.outcomes[..] {
-            // Half an event is allowed: whole numbers are met or not.
-            misses.push(plain(format!("count of {of}"), count(found.len()), count(wanted), 0.5));
+            let allowed = allowed(want, Outcome::Count(wanted));
+            misses.push(plain(format!("count of {of}"), count(found.len()), count(wanted), allowed));
             return Ok(());
         }
         let at_s = want.outcomes.iter().find_map(|outcome| match outcome {
@@ -208,23 +213,31 @@ impl View<'_> {
         // What has touched may rest by then: its speed is that of the contact.
         let speed = (event.kind == EventKind::Contact).then_some(meant.value);
         for outcome in &want.outcomes {
+            let allowed = allowed(want, *outcome);
             match *outcome {
                 Outcome::At(at) => misses.push(Miss {
                     what: format!("time of {of}"),
                     wanted: time_text(at.s()),
                     got: time_text(meant.t_s),
                     off: time_text((meant.t_s - at.s()).abs()),
-                    share: (meant.t_s - at.s()) / TIME_S,
+                    share: (meant.t_s - at.s()) / allowed,
                     residual: vec![(meant.t_s - at.s()) / at.s()],
                 }),
-                other => misses.extend(self.state_miss(other, &format!("at {of}"), state, speed)),
+                other => misses.extend(self.state_miss(other, allowed, &format!("at {of}"), state, speed)),
             }
         }
         Ok(())
     }
 
     /// By how much an outcome of position and velocity is missed; `speed` stands for the state's where it is known better.
-    fn state_miss(&self, outcome: Outcome, of: &str, state: State, speed: Option<f64>) -> Option<Miss> {
+    fn state_miss(
+        &self,
+        outcome: Outcome,
+        allowed: f64,
+        of: &str,
+        state: State,
+        speed: Option<f64>,
+    ) -> Option<Miss> {
         Some(match outcome {
             Outcome::Distance(wanted) => {
                 let (got, wanted) = (state.pos.norm(), wanted.m());
@@ -233,28 +246,27 @@ impl View<'_> {
                     wanted: length_text(wanted),
                     got: length_text(got),
                     off: length_text((got - wanted).abs()),
-                    share: (got - wanted) / (PART * wanted).max(LENGTH_M),
+                    share: (got - wanted) / allowed,
                     residual: (state.pos * ((got - wanted) / got / self.scene_m)).iter().copied().collect(),
                 }
             }
             Outcome::Speed(wanted) => {
                 let (got, wanted) = (speed.unwrap_or_else(|| state.vel.norm()), wanted.m_s());
-                let allowed = (PART * wanted).max(SPEED_M_S);
                 Miss {
                     what: format!("speed {of}"),
                     wanted: speed_text(wanted),
                     got: speed_text(got),
                     off: speed_text((got - wanted).abs()),
                     share: (got - wanted) / allowed,
-                    residual: vec![(got - wanted) / (allowed / PART)],
+                    residual: vec![(got - wanted) / wanted.max(SPEED_M_S / PART)],
                 }
             }
             Outcome::Longitude(wanted) => {
-                angle_miss(format!("longitude {of}"), atan2(state.pos.y, state.pos.x), wanted)
+                angle_miss(format!("longitude {of}"), atan2(state.pos.y, state.pos.x), wanted, allowed)
             }
             Outcome::Latitude(wanted) => {
                 let sine = (state.pos.z / state.pos.norm()).clamp(-1.0, 1.0);
-                angle_miss(format!("latitude {of}"), asin(sine), wanted)
+                angle_miss(format!("latitude {of}"), asin(sine), wanted, allowed)
             }
             Outcome::At(_) | Outcome::PeriodRatio(_) | Outcome::Count(_) => return None,
         })
@@ -287,7 +299,20 @@ impl View<'_> {
     }
 }
 
-fn angle_miss(what: String, got_rad: f64, wanted: Angle) -> Miss {
+/// How far off an outcome may be, SI: as stated, or so little that nobody sees it.
+fn allowed(want: &Want, outcome: Outcome) -> f64 {
+    want.within.unwrap_or(match outcome {
+        Outcome::At(_) => TIME_S,
+        Outcome::Distance(wanted) => (PART * wanted.m()).max(LENGTH_M),
+        Outcome::Speed(wanted) => (PART * wanted.m_s()).max(SPEED_M_S),
+        Outcome::Longitude(_) | Outcome::Latitude(_) => ANGLE_RAD,
+        Outcome::PeriodRatio(wanted) => PART * wanted,
+        // Half an event: whole numbers are met or not.
+        Outcome::Count(_) => 0.5,
+    })
+}
+
+fn angle_miss(what: String, got_rad: f64, wanted: Angle, allowed: f64) -> Miss {
     // The shorter way round.
     let off = (got_rad - wanted.rad() + PI).rem_euclid(2.0 * PI) - PI;
     Miss {
@@ -295,7 +320,7 @@ fn angle_miss(what: String, got_rad: f64, wanted: Angle) -> Miss {
         wanted: angle_text(wanted.rad()),
         got: angle_text(wanted.rad() + off),
         off: angle_text(off.abs()),
-        share: off / ANGLE_RAD,
+        share: off / allowed,
         residual: vec![off],
     }
 }

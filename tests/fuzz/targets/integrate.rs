@@ -1,4 +1,4 @@
-//! Resolving any scenario, integrating it one second both ways, and planning its beats as far as some hundred steps reach.
+//! Resolving any scenario, integrating it and its swarms one second, and planning its beats as far as some hundred steps reach.
 
 #![no_main]
 
@@ -6,10 +6,15 @@ use fallaround_core::ephemeris::Propagation;
 use fallaround_core::resolve::resolve;
 use fallaround_core::scenario::{BodyId, parse};
 use fallaround_core::show::Rehearsal;
+use fallaround_core::swarm::SwarmRun;
 use libfuzzer_sys::fuzz_target;
 
 /// Steps after which an integration may go on for ever: that is slow, and no fault.
 const MOST_STEPS: usize = 300;
+
+/// Tracers with which it is, and steps of them.
+const MOST_TRACERS: usize = 300;
+const TRACER_STEPS: usize = 3000;
 
 /// Bodies with which a step is still quick enough to be tried often.
 const MOST_BODIES: usize = 24;
@@ -17,7 +22,8 @@ const MOST_BODIES: usize = 24;
 fuzz_target!(|text: &str| {
     let Some(scenario) = parse(text).scenario else { return };
     let Ok(initial) = resolve(&scenario) else { return };
-    if initial.bodies.len() > MOST_BODIES {
+    let tracers: usize = initial.swarms.iter().map(|swarm| swarm.pos.len()).sum();
+    if initial.bodies.len() > MOST_BODIES || tracers > MOST_TRACERS {
         return;
     }
     let mut propagation = Propagation::new(&initial);
@@ -34,6 +40,9 @@ fuzz_target!(|text: &str| {
                 assert!(state.pos.iter().chain(&state.vel).all(|x| x.is_finite()), "body {body}: {state:?}");
             }
         }
+    }
+    for swarm in 0..initial.swarms.len() {
+        SwarmRun::new(&initial, swarm).advance(propagation.ephemeris(), 1.0, TRACER_STEPS);
     }
     let Ok(mut rehearsal) = Rehearsal::start(text) else { return };
     for _ in 0..4 {

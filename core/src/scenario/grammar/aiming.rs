@@ -46,6 +46,12 @@ pub const WANT: Section = Section {
             "3",
             "with event: how many of them are wanted until the end of the search",
         ),
+        key(
+            "within",
+            "quantity of what is wanted",
+            r#""1 h""#,
+            "how far off what is wanted may be, where a want has one outcome; 1 s, a millionth, or 0.04 arcsec unless stated",
+        ),
     ],
 };
 

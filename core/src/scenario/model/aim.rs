@@ -22,6 +22,8 @@ pub struct Want {
     pub of: Wanted,
     /// The outcomes, at least one.
     pub outcomes: Vec<Outcome>,
+    /// How far off its one outcome may be, SI; `None`: a millionth or so, as the trial has it.
+    pub within: Option<f64>,
 }
 
 /// What an outcome is wanted of.

@@ -116,7 +116,35 @@ fn want_of(table: &Reading<'_>, names: &Names) -> Option<Want> {
         table.error("a count stands beside other outcomes", "write a want of its own for each");
         return None;
     }
-    Some(Want { of, outcomes })
+    let within = match table.get("within") {
+        Some(field) => Some(within(&field, &outcomes)?),
+        None => None,
+    };
+    Some(Want { of, outcomes, within })
+}
+
+/// How far off the one outcome of a want may be, SI.
+fn within(field: &Field<'_>, outcomes: &[Outcome]) -> Option<f64> {
+    match outcomes {
+        [Outcome::At(_)] => field.positive::<Span>().map(Span::s),
+        [Outcome::Distance(_)] => field.positive::<Length>().map(Length::m),
+        [Outcome::Speed(_)] => field.positive::<Speed>().map(Speed::m_s),
+        [Outcome::Longitude(_) | Outcome::Latitude(_)] => field.positive::<Angle>().map(Angle::rad),
+        [Outcome::PeriodRatio(_)] => field.number().and_then(|within| {
+            if within <= 0.0 {
+                field.error(format!("within is {within}"), "it must be more than 0");
+            }
+            (within > 0.0).then_some(within)
+        }),
+        [Outcome::Count(_)] => {
+            field.error("within means nothing beside count", "leave it out: a count is met or it isn't");
+            None
+        }
+        _ => {
+            field.error("within doesn't say of which outcome", "write a want of its own for each outcome");
+            None
+        }
+    }
 }
 
 fn event_of(main: &Field<'_>, table: &Reading<'_>, names: &Names) -> Option<Wanted> {
@@ -311,6 +339,22 @@ mod tests {
                 "{ event = \"periapsis of Pell\", at = \"3 d\", count = 2 }",
                 FREE,
                 "a count stands beside other outcomes",
+            ),
+            ("{ event = \"periapsis of Pell\", at = \"3 d\", within = \"3 km\" }", FREE, "km is a length"),
+            (
+                "{ event = \"periapsis of Pell\", at = \"3 d\", within = \"0 h\" }",
+                FREE,
+                "within is 0 h; it must be",
+            ),
+            (
+                "{ event = \"periapsis of Pell\", at = \"3 d\", distance = \"1 au\", within = \"3 km\" }",
+                FREE,
+                "within doesn't say of which outcome",
+            ),
+            (
+                "{ event = \"periapsis of Pell\", until = \"3 yr\", count = 2, within = \"3 km\" }",
+                FREE,
+                "within means nothing beside count",
             ),
             ("{ event = \"perihel of Pell\", at = \"3 d\" }", FREE, "there is no event \"perihel\""),
             ("{ body = \"Pell\", distance = \"3 au\" }", FREE, "a want needs its at"),
