@@ -155,6 +155,7 @@ impl Layout {
     fn look_round(&mut self, show: &Show, beat: &Beat, house: House, scouts: &Scouts) -> Emptiness {
         let frame = house.frame;
         let mut empty = Emptiness::new(&frame);
+        let mut cursors = scouts.cursors();
         let first = scene_at(show, beat, self.key, house, self.key.beat_from_s);
         let stretch = first.until_s - first.beat_from_s;
         let at = |look: u32, of: u32| self.key.beat_from_s + stretch * f64::from(look) / f64::from(of);
@@ -162,7 +163,7 @@ impl Layout {
             let scene = scene_at(show, beat, self.key, house, at(look, BODY_LOOKS));
             let spots = scene.spots();
             if look % SCOUTS_EVERY == 0 {
-                empty.mark_points(&scouts.points(&scene));
+                empty.mark_points(&scouts.points(&mut cursors, &scene));
             }
             // Arrows and tails, which turn quickly.
             for [a, b] in self.obstacles(&scene, &spots, &[]).pieces {
@@ -195,7 +196,7 @@ impl Layout {
             }
             if look == looks {
                 self.clutter = clutter(&scene, &frame);
-                self.clutter.extend(scouts.points(&scene));
+                self.clutter.extend(scouts.points(&mut cursors, &scene));
             }
             for item in &scene.items {
                 empty.mark_item(item);

@@ -44,11 +44,16 @@ impl Scouts {
         Self { paths: (0..initial.swarms.len()).map(path).collect(), initial }
     }
 
+    /// Working memory for [`Scouts::points`], which is quickest from one instant to a later one.
+    pub fn cursors(&self) -> Vec<Cursor> {
+        (0..self.paths.len()).map(|index| Cursor::new(&self.initial, index)).collect()
+    }
+
     /// Those in the picture, of the swarms on stage.
-    pub fn points(&self, scene: &Scene<'_>) -> Vec<Px> {
+    pub fn points(&self, cursors: &mut [Cursor], scene: &Scene<'_>) -> Vec<Px> {
         let mut found = Vec::new();
-        for (index, (path, start)) in self.paths.iter().zip(&self.initial.swarms).enumerate() {
-            let mut cursor = Cursor::new(&self.initial, index);
+        let ways = self.paths.iter().zip(&self.initial.swarms).zip(cursors);
+        for (index, ((path, start), cursor)) in ways.enumerate() {
             if !swarm::is_on_stage(scene, SwarmId(index))
                 || !cursor.seek(path, &scene.show.ephemeris, scene.t_s, usize::MAX)
             {
