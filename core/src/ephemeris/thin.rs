@@ -42,8 +42,12 @@ impl Tolerance {
 /// A joined piece is kept where its checks stay below this part of the tolerance, as they are made at some instants only.
 const SAFE: f64 = 0.5;
 
-/// Instants at which a joined piece is checked, besides its end.
-const CHECKS: usize = 11;
+/// Instants at which a joined piece is checked, besides its end: the extremes of its error if it is made of a few equal steps;
+/// what is made of many, or is long, may err in many ways.
+const CHECKS: [usize; 2] = [6, 11];
+
+/// From here on these are many.
+const MANY: usize = 8;
 
 /// What roundings alone add to a checked error, and the least that is then taken as known, in units of the tolerance.
 const ROUNDED: f64 = 0.12;
@@ -135,6 +139,8 @@ pub(super) struct Thinner {
     open: Vec<Open>,
     /// On which body each one rests; itself where it moves freely.
     hosts: Vec<usize>,
+    /// Whether any does.
+    resting: bool,
 }
 
 impl Thinner {
@@ -154,6 +160,7 @@ impl Thinner {
             most: (MOST_OPEN_BYTES / step_bytes).clamp(2, MOST_JOINED),
             open: vec![Open::NOTHING; bodies],
             hosts: (0..bodies).collect(),
+            resting: false,
         }
     }
 
@@ -177,6 +184,7 @@ impl Thinner {
         }
         if !cut.hosts.is_empty() {
             self.hosts.clone_from(&cut.hosts);
+            self.resting = true;
         }
         self.cuts.push(cut);
     }
@@ -192,6 +200,7 @@ impl Thinner {
             cuts: Vec::new(),
             open: vec![Open::NOTHING; bodies],
             hosts: (0..bodies).collect(),
+            resting: false,
         };
         let old = track.start_anew(tolerance);
         let mut done = vec![0; bodies];
@@ -279,7 +288,8 @@ impl Thinner {
     /// Makes one piece of the open ones of a body that can be joined, and of those of what rests on it.
     fn settle(&mut self, track: &mut Track, body: usize) {
         let Open { good, joined, .. } = self.open[body];
-        for guest in 0..self.open.len() {
+        let all = if self.resting { 0..self.open.len() } else { body..body + 1 };
+        for guest in all {
             if self.hosts[guest] != body {
                 continue;
             }
@@ -395,18 +405,19 @@ fn error(
     let (mut place, mut off) = (0.0_f64, 0.0_f64);
     let (mut distance, mut speed) = (0.0_f64, 0.0_f64);
     let apart = |a: [f64; 3], b: [f64; 3]| square([a[0] - b[0], a[1] - b[1], a[2] - b[2]]);
-    for check in 0..=CHECKS {
+    let checks = CHECKS[usize::from(count >= MANY || places_too)];
+    for check in 0..=checks {
         let parts = (2 * check + 1) * count;
-        let (index, part) = (parts / (2 * CHECKS), parts % (2 * CHECKS));
+        let (index, part) = (parts / (2 * checks), parts % (2 * checks));
         #[expect(clippy::cast_precision_loss, reason = "small numbers")]
-        let inside = part as f64 / (2 * CHECKS) as f64;
-        let (index, h) = if check == CHECKS { (count - 1, 1.0) } else { (index, inside) };
+        let inside = part as f64 / (2 * checks) as f64;
+        let (index, h) = if check == checks { (count - 1, 1.0) } else { (index, inside) };
         let Some(piece) = track.piece(body, from + index) else { return f64::INFINITY };
         let along = ((piece.start_s - first.start_s) + h * piece.step_s) / length_s;
         let want = velocity(piece.numbers, piece.step_s, h);
         off = larger(off, apart(want, velocity(numbers, length_s, along)));
         speed = speed.max(square(want));
-        if places_too || check == CHECKS / 2 || check == CHECKS {
+        if places_too || check == checks / 2 || check == checks {
             let want = evaluate(piece.numbers, piece.step_s, h).pos;
             let got = evaluate(numbers, length_s, along).pos;
             place = larger(place, apart(want.into(), got.into()));
