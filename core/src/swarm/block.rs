@@ -69,6 +69,8 @@ pub(super) struct Way<'a> {
     pub(super) cells: &'a mut Cells,
     /// Tracers that were lost: when, which, and onto which source.
     pub(super) lost: &'a mut Vec<(f64, usize, usize)>,
+    /// What those that go by themselves took, in tracer-steps.
+    pub(super) work: usize,
 }
 
 /// Position and velocity of each tracer, as many as the block holds.
@@ -146,7 +148,7 @@ impl Block {
         while n < self.lones.len() {
             let lone = &mut self.lones[n];
             let lane = lone.lane;
-            lone.look(way.field, way.eph, way.cells, from.t_s, step_s, to.t_s);
+            way.work += lone.look(way.field, way.eph, way.cells, from.t_s, step_s, to.t_s);
             if let Some((t_s, source)) = lone.step(starting) {
                 way.lost.push((t_s, self.ids[lane], source));
                 self.take_out(lane);
@@ -330,7 +332,7 @@ impl Block {
     /// Finds the ways of those that go by themselves as far as `to_s`, which the next node at `next_s` is not before.
     pub(super) fn look(&mut self, way: &mut Way<'_>, from_s: f64, step_s: f64, to_s: f64) {
         for lone in &mut self.lones {
-            lone.look(way.field, way.eph, way.cells, from_s, step_s, to_s);
+            way.work += lone.look(way.field, way.eph, way.cells, from_s, step_s, to_s);
         }
     }
 

@@ -213,10 +213,19 @@ impl Cursor {
     fn show(&mut self, eph: &Ephemeris, flock: &Flock, t_s: f64) {
         let Self { setting, x, y, z, gone, .. } = self;
         let by = flock.origin_from_body(setting, eph, t_s);
+        for row in [&mut *x, &mut *y, &mut *z] {
+            row.fill(0.0);
+        }
+        gone.fill(true);
         flock.states(t_s, false, |id, state| {
-            gone[id] = state.is_none();
-            (x[id], y[id], z[id]) =
-                state.map_or((0.0, 0.0, 0.0), |(pos, _)| (pos[0] + by.x, pos[1] + by.y, pos[2] + by.z));
+            if let Some((pos, _)) = state {
+                gone[id] = false;
+                (x[id], y[id], z[id]) = (pos[0] + by.x, pos[1] + by.y, pos[2] + by.z);
+            } else {
+                // Its block may have handed it out before.
+                gone[id] = true;
+                (x[id], y[id], z[id]) = (0.0, 0.0, 0.0);
+            }
         });
     }
 }

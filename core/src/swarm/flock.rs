@@ -25,8 +25,8 @@ const STRIP: u32 = 32;
 /// work of two hundred.
 const STEPS: f64 = 2048.0;
 
-/// The longest step of a stretch fits into it this many times at least.
-const FEWEST_STEPS: f64 = 32.0;
+/// How often a stretch is halved at least to give a step, that of tracers far outside included.
+const FEWEST_HALVINGS: i32 = 5;
 
 /// Every so many nodes the places go into the digest.
 const DIGESTED: u32 = 8;
@@ -37,6 +37,19 @@ const START_STEPS: usize = 200;
 /// The first node from which steps are taken: the last of a start's own.
 #[expect(clippy::cast_possible_truncation, reason = "a few")]
 const FIRST: u32 = KEPT as u32 - 1;
+
+/// Exponent of the length of a stretch for tracers with steps of such exponents; those of steps too long for it are made less.
+fn stretch(order: &mut [(i32, Option<usize>, usize)]) -> i32 {
+    let rate: f64 = order.iter().map(|(exponent, ..)| 1.0 / scale::seconds(*exponent)).sum();
+    #[expect(clippy::cast_precision_loss, reason = "a count")]
+    let mean_s = STEPS * (order.len() as f64) / rate;
+    // Nobody is left where that isn't a number.
+    let lasts = if mean_s > 0.0 { scale::floor_log2(mean_s) } else { scale::LONGEST };
+    for (exponent, ..) in order {
+        *exponent = (*exponent).min(lasts - FEWEST_HALVINGS);
+    }
+    lasts
+}
 
 /// What doesn't change on the way.
 #[derive(Debug, Clone)]
@@ -145,24 +158,23 @@ impl Flock {
         let mut order: Vec<(i32, Option<usize>, usize)> = states
             .chunks_exact(PER_TRACER)
             .enumerate()
+            .filter(|(_, state)| !state[0].is_nan())
             .map(|(id, state)| (scale::exponent(&field, &motions, &node, state), circled(state), id))
             .collect();
+        let mut lasts = stretch(&mut order);
         let longest = order.iter().map(|(exponent, ..)| *exponent).max().unwrap_or_default();
         if start.most_exponent >= longest {
             start.most_exponent = i32::MAX;
-        }
-        for (exponent, ..) in &mut order {
-            *exponent = (*exponent).min(start.most_exponent);
+        } else {
+            for (exponent, ..) in &mut order {
+                *exponent = (*exponent).min(start.most_exponent);
+            }
+            lasts = stretch(&mut order);
         }
         order.sort_unstable();
-        let longest_s = order.last().map_or(1.0, |(exponent, ..)| scale::seconds(*exponent));
-        let rate: f64 = order.iter().map(|(exponent, ..)| 1.0 / scale::seconds(*exponent)).sum();
-        #[expect(clippy::cast_precision_loss, reason = "a count")]
-        let mean_s = STEPS * (order.len() as f64) / rate;
-        let lasts_s = if mean_s.is_finite() { mean_s.max(FEWEST_STEPS * longest_s) } else { longest_s };
         let mut flock = Self {
             start_s: t_s,
-            ends_s: t_s + direction * scale::seconds(scale::floor_log2(lasts_s)),
+            ends_s: t_s + direction * scale::seconds(lasts),
             direction,
             field,
             levels: Vec::new(),
@@ -185,7 +197,7 @@ impl Flock {
         for (n, node) in (0..).zip(&mut self.nodes[..KEPT]) {
             self.field.fill(eph, self.start_s + f64::from(n) * step_s, node);
         }
-        let mut way = Way { field: &self.field, eph, cells: &mut self.cells, lost: &mut self.lost };
+        let mut way = Way { field: &self.field, eph, cells: &mut self.cells, lost: &mut self.lost, work: 0 };
         let mut blocks = Vec::new();
         for kin in group.chunk_by(|a, b| a.1 == b.1) {
             for ids in kin.chunks(ABREAST) {
@@ -236,7 +248,7 @@ impl Flock {
         for (node, k) in nodes.iter_mut().zip(first..=last) {
             field.fill(eph, level.time(*start_s, k), node);
         }
-        let mut way = Way { field, eph, cells, lost };
+        let mut way = Way { field, eph, cells, lost, work: 0 };
         for block in &mut level.blocks {
             for (pair, k) in nodes.windows(2).zip(first + 1..=last) {
                 block.step(&mut way, &pair[0], &pair[1], k, level.step_s);
@@ -246,13 +258,14 @@ impl Flock {
             }
             *work += block.ids.len() * (last - first) as usize;
         }
+        *work += way.work;
         level.node = last;
     }
 
     /// Finds what frames at an instant need beyond the newest nodes.
     pub(super) fn look(&mut self, eph: &Ephemeris, t_s: f64) {
         let known_s = if self.direction > 0.0 { eph.until_s() } else { eph.from_s() };
-        let mut way = Way { field: &self.field, eph, cells: &mut self.cells, lost: &mut self.lost };
+        let mut way = Way { field: &self.field, eph, cells: &mut self.cells, lost: &mut self.lost, work: 0 };
         for level in &mut self.levels {
             let (from_s, next_s) =
                 (level.time(self.start_s, level.node), level.time(self.start_s, level.node + 1));
@@ -272,7 +285,7 @@ impl Flock {
     }
 
     /// Hands out the positions, and the velocities if asked for, relative to the origin, at an instant up to a step from the newest nodes that
-    /// was looked at; `None` of tracers that are gone.
+    /// was looked at; `None` of tracers that are gone, and nothing of those that were gone at the start.
     pub(super) fn states(&self, t_s: f64, velocities: bool, mut out: impl FnMut(usize, Option<Moving>)) {
         let mut states = States::default();
         for level in &self.levels {

@@ -20,6 +20,9 @@ const CONVERGED: f64 = 1e-16;
 /// How often a block's step may be halved. A tracer that would need more has fallen into a point.
 const MOST_HALVINGS: u32 = 36;
 
+/// Work of a step, in steps of a block.
+const WORK: usize = 100;
+
 /// Steps for which the bodies are kept.
 const CELLS: usize = 128;
 
@@ -275,7 +278,7 @@ impl Lone {
     }
 
     /// Finds the way from the newest node at `from_s`, in steps that are parts of `step_s`, to `to_s`, which is the next node unless what is known of
-    /// the bodies ends before.
+    /// the bodies ends before. How much work that was.
     pub(super) fn look(
         &mut self,
         field: &Field,
@@ -284,9 +287,9 @@ impl Lone {
         from_s: f64,
         step_s: f64,
         to_s: f64,
-    ) {
+    ) -> usize {
         if self.ahead_to_s.is_some_and(|there_s| there_s.to_bits() == to_s.to_bits()) {
-            return;
+            return 0;
         }
         self.ahead_to_s = Some(to_s);
         self.ahead.clear();
@@ -350,6 +353,7 @@ impl Lone {
             }
         }
         self.then = stand;
+        WORK * self.ahead.len()
     }
 
     /// To where [`Lone::look`] came, which is the next node. What lies behind is kept while asked to. When it touched which source on the way, if it did.

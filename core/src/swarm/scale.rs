@@ -10,7 +10,8 @@ const STEP_IN_TIME_SCALES: f64 = 0.07;
 const LEAST_FOR_PERIAPSIS: f64 = 1.0 / 16.0;
 
 /// Exponents of steps in seconds that are ever of use.
-const EXPONENTS: (i32, i32) = (-20, 40);
+const EXPONENTS: (i32, i32) = (-20, LONGEST);
+pub(super) const LONGEST: i32 = 40;
 
 /// Part of a tracer's acceleration that may be missed in a step for want of following how the bodies move; it comes and goes with their periods. Ten
 /// years of a belt are then off by less than 1e-9 of its size. The error of the method for an acceleration that changes as a wave is

@@ -405,6 +405,23 @@ fn a_tracer_that_falls_onto_the_star_is_gone_from_then_on() {
 }
 
 #[test]
+fn stretches_stay_as_long_when_one_is_gone_and_one_is_far_away() {
+    let mut initial = belt(vec![body(GM, 7e8, [0.0; 3], [0.0; 3])], 12);
+    let eph = ephemeris(&initial, 0.0, 150.0 * YEAR_S);
+    let starts =
+        |initial: &InitialState| whole(initial, &eph, 0.0, 150.0 * YEAR_S).path().forward.starts.clone();
+    let before = starts(&initial);
+    initial.swarms[0].vel[3] = Vector3::zeros();
+    initial.swarms[0].pos[5] *= 100.0;
+    initial.swarms[0].vel[5] *= 0.1;
+    let after = starts(&initial);
+    #[expect(clippy::cast_precision_loss, reason = "a few")]
+    let ratio = after.len() as f64 / before.len() as f64;
+    assert!(before.len() > 2 && (0.5..=2.0).contains(&ratio), "{before:?}, {after:?}");
+    assert!(after.iter().all(|start| start.most_exponent == i32::MAX), "{after:?}");
+}
+
+#[test]
 fn a_planet_takes_those_in_its_way_however_small_it_is() {
     // Twenty tracers at rest before a body without mass, 10 m across, that comes at 7 km/s.
     let mut initial = belt(
