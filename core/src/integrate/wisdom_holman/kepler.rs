@@ -89,8 +89,9 @@ fn fast<const N: usize>(
         let s = t * (1.0 - t * (0.5 * e - t * (0.5 * e * e - k * (1.0 / 6.0))));
         // Halley's step; what the series lack is far less than what the step leaves.
         let q = beta * s * s;
-        let c3 = 1.0 / 6.0 - q * (1.0 / 120.0 - q * (1.0 / 5_040.0 - q * (1.0 / 362_880.0)));
-        let c2 = 0.5 - q * (1.0 / 24.0 - q * (1.0 / 720.0 - q * (1.0 / 40_320.0)));
+        let q2 = q * q;
+        let c3 = (1.0 / 6.0 - q * (1.0 / 120.0)) + q2 * (1.0 / 5_040.0 - q * (1.0 / 362_880.0));
+        let c2 = (0.5 - q * (1.0 / 24.0)) + q2 * (1.0 / 720.0 - q * (1.0 / 40_320.0));
         let (g2, g3) = (s * s * c2, s * s * s * c3);
         let (g0, g1) = (1.0 - beta * g2, s - beta * g3);
         let late = r0 * s + eta * g2 + zeta * g3 - h;
@@ -127,25 +128,23 @@ fn fast<const N: usize>(
     held.iter().filter(|&&held| held != 0.0).count()
 }
 
-/// Stumpff's c2 for |q| <= [`LARGEST_ARGUMENT`]: the first term left out is below 1e-17 of it.
+/// Stumpff's c2 for |q| <= [`LARGEST_ARGUMENT`]: the first term left out is below 1e-17 of it. Terms are taken in pairs, which
+/// don't wait for each other.
 #[inline]
 fn c2_series(q: f64) -> f64 {
-    0.5 - q
-        * (1.0 / 24.0
-            - q * (1.0 / 720.0
-                - q * (1.0 / 40_320.0
-                    - q * (1.0 / 3_628_800.0 - q * (1.0 / 479_001_600.0 - q * (1.0 / 87_178_291_200.0))))))
+    let q2 = q * q;
+    let low = (0.5 - q * (1.0 / 24.0)) + q2 * (1.0 / 720.0 - q * (1.0 / 40_320.0));
+    let high = (1.0 / 3_628_800.0 - q * (1.0 / 479_001_600.0)) + q2 * (1.0 / 87_178_291_200.0);
+    low + (q2 * q2) * high
 }
 
 /// Stumpff's c3, likewise.
 #[inline]
 fn c3_series(q: f64) -> f64 {
-    1.0 / 6.0
-        - q * (1.0 / 120.0
-            - q * (1.0 / 5_040.0
-                - q * (1.0 / 362_880.0
-                    - q * (1.0 / 39_916_800.0
-                        - q * (1.0 / 6_227_020_800.0 - q * (1.0 / 1_307_674_368_000.0))))))
+    let q2 = q * q;
+    let low = (1.0 / 6.0 - q * (1.0 / 120.0)) + q2 * (1.0 / 5_040.0 - q * (1.0 / 362_880.0));
+    let high = (1.0 / 39_916_800.0 - q * (1.0 / 6_227_020_800.0)) + q2 * (1.0 / 1_307_674_368_000.0);
+    low + (q2 * q2) * high
 }
 
 #[cfg(test)]

@@ -343,7 +343,7 @@ impl Kick {
 }
 
 /// Adds to both bodies of each pair what the other does: `weight` times GM times `way`, there and back.
-#[inline]
+#[inline(always)]
 fn spread<const N: usize>(
     sums: &mut Sums,
     first: usize,
