@@ -11,6 +11,7 @@ pub use choice::{Choice, choose};
 use super::radau::{PER_BODY, Radau};
 use super::wisdom_holman::{Start, Trouble, WisdomHolman};
 use crate::gravity::Field;
+use crate::initial::InitialState;
 
 /// Long steps after which it is tried again whether they would do.
 const TRY_AGAIN: f64 = 4.0;
@@ -21,6 +22,13 @@ pub enum Stopped {
     /// Two points fall into each other.
     Collapse {
         /// When, s.
+        t_s: f64,
+    },
+    /// Two bodies touch, as far as that was looked for.
+    Contact {
+        /// Which ones, by their places in the list.
+        bodies: [usize; 2],
+        /// When at the latest, s: a sixteenth of a step of the exact method is not told apart.
         t_s: f64,
     },
     /// A body falls into the centre.
@@ -56,7 +64,7 @@ enum Now {
     },
 }
 
-/// Bodies on their way over a long span. Contacts are not looked for.
+/// Bodies on their way over a long span.
 ///
 /// Steps don't depend on what is asked for, so the same times asked in the same order give the same bits.
 #[derive(Debug, Clone, PartialEq)]
@@ -65,6 +73,8 @@ pub struct LongRun {
     relativity: bool,
     step_s: f64,
     gms: Vec<f64>,
+    /// Empty where contacts are not looked for.
+    radii_m: Vec<f64>,
     field: Field,
     now: Now,
     tally: Tally,
@@ -73,7 +83,27 @@ pub struct LongRun {
 }
 
 impl LongRun {
-    /// Bodies at their start. `field` is that of the same bodies in the same order, for the exact stretches. `step_s` is the length of the
+    /// The bodies of a scenario from its start on, as was chosen for it, or back from there. It stops when two of them touch.
+    pub fn of(initial: &InitialState, choice: &Choice, backward: bool) -> Self {
+        let bodies = &initial.bodies;
+        let gms: Vec<f64> = bodies.iter().map(|body| body.gm_m3_s2).collect();
+        let pos: Vec<f64> = bodies.iter().flat_map(|body| <[f64; 3]>::from(body.pos)).collect();
+        let vel: Vec<f64> = bodies.iter().flat_map(|body| <[f64; 3]>::from(body.vel)).collect();
+        let start = Start {
+            centre: choice.centre,
+            gms: &gms,
+            pos: &pos,
+            vel: &vel,
+            t_s: 0.0,
+            relativity: initial.forces.relativity,
+        };
+        let step_s = if backward { -choice.step_s } else { choice.step_s };
+        let mut run = Self::new(&start, Field::new(initial), step_s);
+        run.radii_m = bodies.iter().map(|body| body.radius_m).collect();
+        run
+    }
+
+    /// Bodies at their start; contacts are not looked for. `field` is that of the same bodies in the same order, for the exact stretches. `step_s` is the length of the
     /// long steps, negative where time goes back.
     pub fn new(start: &Start<'_>, field: Field, step_s: f64) -> Self {
         debug_assert_eq!(field.bodies(), start.gms.len());
@@ -82,6 +112,7 @@ impl LongRun {
             relativity: start.relativity,
             step_s,
             gms: start.gms.to_vec(),
+            radii_m: Vec::new(),
             field,
             now: Now::Exact {
                 radau: Radau::new(start.t_s, start.pos, start.vel, 0.05 * step_s),
@@ -172,7 +203,7 @@ impl LongRun {
                 if let Now::Exact { solved, .. } = &mut self.now {
                     *solved = true;
                 }
-                Ok(())
+                self.look_for_contact()
             }
             Now::Exact { radau, solved, again_s } => {
                 radau.finish();
@@ -186,6 +217,38 @@ impl LongRun {
                 Ok(())
             }
         }
+    }
+
+    /// Looks whether two bodies touch in the exact step that was solved. In long steps they keep apart by Hill radii.
+    fn look_for_contact(&mut self) -> Result<(), Stopped> {
+        let Now::Exact { radau, .. } = &self.now else { return Ok(()) };
+        if self.radii_m.iter().all(|radius| *radius == 0.0) {
+            return Ok(());
+        }
+        for sixteenth in 1..=16_u8 {
+            let share = f64::from(sixteenth) / 16.0;
+            let states = self.pos.chunks_exact_mut(3).zip(self.vel.chunks_exact_mut(3));
+            for (body, (pos, vel)) in states.enumerate() {
+                evaluate(&radau.numbers(body), radau.step_s(), share, pos, vel);
+            }
+            for a in 0..self.radii_m.len() {
+                for b in a + 1..self.radii_m.len() {
+                    let near_m = self.radii_m[a] + self.radii_m[b];
+                    let mut apart2 = 0.0;
+                    for axis in 0..3 {
+                        let d = self.pos[3 * b + axis] - self.pos[3 * a + axis];
+                        apart2 += d * d;
+                    }
+                    if apart2 < near_m * near_m {
+                        return Err(Stopped::Contact {
+                            bodies: [a, b],
+                            t_s: radau.t_s() + share * radau.step_s(),
+                        });
+                    }
+                }
+            }
+        }
+        Ok(())
     }
 
     fn leave_long_steps(&mut self, trouble: Trouble) -> Result<(), Stopped> {

@@ -114,6 +114,31 @@ fn a_comet_goes_by_long_steps_but_for_its_periapsis() {
 }
 
 #[test]
+fn bodies_that_touch_stop_it_when_they_do() {
+    let mut initial = about_the_sun(&[(1e-9, [1.0, 0.0], [0.0, 1.0]), (0.0, [0.0, 2.0], [0.0, 0.0])]);
+    for (body, radius_m) in initial.bodies.iter_mut().zip([7e8, 6e6, 1e3]) {
+        body.radius_m = radius_m;
+    }
+    let choice = Choice {
+        centre: 0,
+        step_s: 4.0 * DAY_S,
+        energy_error: 0.0,
+        angle_error_rad: 0.0,
+        sentences: Vec::new(),
+    };
+    for backward in [false, true] {
+        let mut run = LongRun::of(&initial, &choice, backward);
+        let end_s = if backward { -YEAR_S } else { YEAR_S };
+        let stopped = run.advance(end_s, 10_000).unwrap_err();
+        let Stopped::Contact { bodies: [0, 2], t_s } = stopped else { panic!("{stopped:?}") };
+        // From rest at 2 au the fall to a point takes 2^1.5 / (4 √2), half, of a year; the last 7e8 m, at 600 km/s, take half an hour.
+        let fall_s = 0.5 * YEAR_S;
+        assert!((t_s.abs() - fall_s).abs() < 3600.0, "{} of {fall_s} s", t_s.abs());
+        assert!(run.tally().long_steps > 20);
+    }
+}
+
+#[test]
 fn how_the_way_is_cut_into_calls_changes_no_bit() {
     let flat = Flat::of(&meeting());
     let times = [20.3, 95.1, 107.0, 111.7, 200.0].map(|days| days * DAY_S);
