@@ -35,6 +35,9 @@ pub(crate) enum Command {
     Aim(Aim),
     /// Print the digest that the app shows for the same file.
     Fingerprint(Fingerprint),
+    /// Compile a crate of the project as the app is compiled, for Node: what benches run.
+    #[command(hide = true)]
+    Module(Module),
 }
 
 /// How to serve.
@@ -54,6 +57,17 @@ pub(crate) struct Today {
     /// Take this day where a scenario says `date = "today"` [default: today's, UTC].
     #[arg(long, value_name = "YYYY-MM-DD", value_parser = day)]
     pub(crate) today: Option<f64>,
+}
+
+/// What to compile for Node.
+#[derive(Debug, Args)]
+pub(crate) struct Module {
+    /// The crate's name.
+    #[arg(value_name = "CRATE")]
+    pub(crate) package: String,
+    /// The folder that takes CRATE.js and CRATE_bg.wasm.
+    #[arg(short, long, value_name = "FOLDER")]
+    pub(crate) output: PathBuf,
 }
 
 /// What to check.

@@ -49,5 +49,6 @@ fn run(cli: Cli) -> Result<ExitCode> {
         Command::Events(options) => commands::events::command(&options),
         Command::Aim(options) => commands::aim::command(&options),
         Command::Fingerprint(options) => commands::fingerprint::command(&options),
+        Command::Module(options) => commands::module::command(&options),
     }
 }

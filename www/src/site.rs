@@ -8,7 +8,7 @@ use std::time::Instant;
 use anyhow::{Context as _, Result};
 use sha2::{Digest as _, Sha256};
 
-use crate::bundle;
+use crate::bundle::{self, Host};
 use crate::toolchain;
 
 /// The service worker in the shell; these two marks in it are filled in.
@@ -41,7 +41,7 @@ type File = (String, Vec<u8>);
 pub(crate) fn build(root: &Path) -> Result<Site> {
     let started = Instant::now();
     let toolchain = toolchain::obtain()?;
-    let module = bundle::compile(root, &toolchain)?;
+    let module = bundle::compile(root, &toolchain, bundle::APP)?;
     let folder = root.join("target").join("site");
     let stamp_file = root.join("target").join("site.stamp");
 
@@ -56,7 +56,7 @@ pub(crate) fn build(root: &Path) -> Result<Site> {
     }
 
     let bound = tempfile::tempdir_in(root.join("target")).context("no temporary folder in target")?;
-    bundle::bind(&module, bound.path())?;
+    bundle::bind(&module, bound.path(), "app", Host::Browser)?;
     inputs.extend(files_below(bound.path(), "")?);
     inputs.sort();
     let version = finish(&mut inputs);

@@ -81,11 +81,16 @@ impl Newton {
         for two in &mut self.twos {
             (two.ax, two.ay, two.az) = ([0.0; 2], [0.0; 2], [0.0; 2]);
         }
+        // All of these at once: each waits for its root and its quotient, and they needn't wait for one another.
+        for pair in self.twos[..self.massive].chunks_mut(2) {
+            match pair {
+                [one, two] => Bodies::pull_each_other(one, two),
+                one => one.iter_mut().for_each(|one| Bodies::pull_each_other(one, &mut EMPTY.clone())),
+            }
+        }
         for i in 0..self.massive {
             let (here, later) = self.twos.split_at_mut(i + 1);
-            let two = &mut here[i];
-            two.pull_each_other();
-            two.pull_later(later);
+            here[i].pull_later(later);
         }
         for (&(two, l), out) in self.places.iter().zip(out.chunks_exact_mut(3)) {
             let two = &self.twos[two];
@@ -95,14 +100,18 @@ impl Newton {
 }
 
 impl Bodies {
-    /// The pair of the two themselves.
+    /// The pairs that two twos are themselves.
     #[inline]
-    fn pull_each_other(&mut self) {
-        let (x, y, z) = (self.x[1] - self.x[0], self.y[1] - self.y[0], self.z[1] - self.z[0]);
+    fn pull_each_other(one: &mut Self, two: &mut Self) {
+        let x = f64x2::new([one.x[1] - one.x[0], two.x[1] - two.x[0]]);
+        let y = f64x2::new([one.y[1] - one.y[0], two.y[1] - two.y[0]]);
+        let z = f64x2::new([one.z[1] - one.z[0], two.z[1] - two.z[0]]);
         let r2 = x * x + y * y + z * z;
-        let w = 1.0 / (r2 * r2.sqrt());
-        let by = f64x2::new([self.gm[1] * w, -(self.gm[0] * w)]);
-        self.add(by * x, by * y, by * z);
+        let w = (f64x2::ONE / (r2 * r2.sqrt())).to_array();
+        for (l, bodies) in [one, two].into_iter().enumerate() {
+            let by = f64x2::new([bodies.gm[1], -bodies.gm[0]]) * w[l];
+            bodies.add(by * x.to_array()[l], by * y.to_array()[l], by * z.to_array()[l]);
+        }
     }
 
     /// Adds to the accelerations. As whole vectors, as they are read elsewhere: processors wait where a number was written in

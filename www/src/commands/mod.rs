@@ -4,5 +4,6 @@ pub(crate) mod aim;
 pub(crate) mod check;
 pub(crate) mod events;
 pub(crate) mod fingerprint;
+pub(crate) mod module;
 pub(crate) mod test;
 pub(crate) mod trace;
