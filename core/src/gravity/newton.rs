@@ -114,8 +114,7 @@ impl Bodies {
         }
     }
 
-    /// Adds to the accelerations. As whole vectors, as they are read elsewhere: processors wait where a number was written in
-    /// other parts than it is read.
+    /// Adds to the accelerations, as whole vectors, as they are read elsewhere.
     #[inline]
     fn add(&mut self, ax: f64x2, ay: f64x2, az: f64x2) {
         self.ax = (f64x2::new(self.ax) + ax).to_array();
