@@ -73,7 +73,7 @@ impl Pieces {
 
 /// Paths from time 0 in one direction.
 ///
-/// Each step of the integrator makes a piece of every body; [`Track::merge`] makes one of several.
+/// Each step of the integrator makes a piece of every body; thinning makes one of several.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Track {
     direction: f64,
