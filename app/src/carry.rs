@@ -3,12 +3,13 @@
 //! Reading, resolving and planning are exact functions of the text and the ephemeris, and quick; only the
 //! ephemeris and the paths of swarms take long to make. So they alone travel.
 
-use fallaround_core::ephemeris::{ChunkError, Ephemeris};
+use fallaround_core::ephemeris::{Ephemeris, Malformed};
 use fallaround_core::initial::TimedChange;
+use fallaround_core::math::counts::{count_from, number_from, take};
 use fallaround_core::resolve;
 use fallaround_core::scenario::{self, ChangeTime, Scenario};
 use fallaround_core::show::{Limits, Need, Show, planner};
-use fallaround_core::swarm::{self, SwarmPath};
+use fallaround_core::swarm::SwarmPath;
 
 /// Why a show couldn't be put together again.
 #[derive(Debug, Clone, PartialEq)]
@@ -16,7 +17,7 @@ pub enum CarryError {
     /// The text or what it states isn't what the ephemeris was made from.
     OtherText,
     /// The numbers are no ephemeris.
-    Numbers(ChunkError),
+    Numbers(Malformed),
     /// The ephemeris doesn't reach as far as the beats need.
     TooShort,
 }
@@ -37,7 +38,7 @@ impl std::error::Error for CarryError {}
 /// swarm.
 pub fn pack(show: &Show) -> Vec<f64> {
     let ephemeris = show.ephemeris.to_numbers();
-    let swarms = show.swarms.iter().map(|path| path.chunk_since(swarm::Mark::default()).into_numbers());
+    let swarms = show.swarms.iter().map(SwarmPath::to_numbers);
     let mut numbers = Vec::new();
     let changes = show.initial.changes.iter().map(|change| change.t_s).collect();
     for part in [ephemeris, changes].into_iter().chain(swarms) {
@@ -48,18 +49,18 @@ pub fn pack(show: &Show) -> Vec<f64> {
 }
 
 /// The parts of what was packed; `None` where it isn't whole.
-fn parts(mut rest: &[f64]) -> Option<Vec<Vec<f64>>> {
+fn parts(mut rest: &[f64]) -> Option<Vec<&[f64]>> {
     let mut parts = Vec::new();
-    while let [count, tail @ ..] = rest {
-        let (part, after) = tail.split_at_checked(count_from(*count)?)?;
-        parts.push(part.to_vec());
-        rest = after;
+    while !rest.is_empty() {
+        let count = count_from(*take(&mut rest, 1)?.first()?)?;
+        parts.push(take(&mut rest, count)?);
     }
     Some(parts)
 }
 
 /// The changes of a scenario from the times of all, in order.
-fn changes(scenario: &Scenario, mut times_s: Vec<f64>) -> Option<Vec<TimedChange>> {
+fn changes(scenario: &Scenario, times_s: &[f64]) -> Option<Vec<TimedChange>> {
+    let mut times_s = times_s.to_vec();
     for change in &scenario.changes {
         if let ChangeTime::Time(at) = change.at {
             let index = times_s.iter().position(|t_s| t_s.to_bits() == at.s().to_bits())?;
@@ -76,20 +77,6 @@ fn changes(scenario: &Scenario, mut times_s: Vec<f64>) -> Option<Vec<TimedChange
     Some(resolve::timed(scenario, &found_s))
 }
 
-#[expect(clippy::cast_precision_loss, reason = "counts of things in memory are exact in f64")]
-fn number_from(count: usize) -> f64 {
-    count as f64
-}
-
-#[expect(
-    clippy::cast_possible_truncation,
-    clippy::cast_sign_loss,
-    reason = "checked to be a whole number that fits"
-)]
-fn count_from(number: f64) -> Option<usize> {
-    (number >= 0.0 && number <= f64::from(u32::MAX) && number.fract() == 0.0).then_some(number as usize)
-}
-
 /// The show of a text and of the paths that were made from it.
 ///
 /// # Errors
@@ -97,20 +84,18 @@ fn count_from(number: f64) -> Option<usize> {
 pub fn unpack(text: &str, numbers: &[f64]) -> Result<Show, CarryError> {
     let scenario = scenario::parse(text).scenario.ok_or(CarryError::OtherText)?;
     let Ok(mut initial) = resolve::resolve(&scenario) else { return Err(CarryError::OtherText) };
-    let parts = parts(numbers).ok_or(CarryError::Numbers(ChunkError::Malformed))?;
+    let parts = parts(numbers).ok_or(CarryError::Numbers(Malformed))?;
     if parts.len() != 2 + initial.swarms.len() {
         return Err(CarryError::OtherText);
     }
     let mut parts = parts.into_iter();
     let of_bodies = parts.next().unwrap_or_default();
-    let ephemeris = Ephemeris::from_numbers(&of_bodies).map_err(CarryError::Numbers)?;
+    let ephemeris = Ephemeris::from_numbers(of_bodies).map_err(CarryError::Numbers)?;
     let times_s = parts.next().unwrap_or_default();
     initial.changes = changes(&scenario, times_s).ok_or(CarryError::OtherText)?;
     let mut swarms = Vec::new();
     for (part, start) in parts.zip(&initial.swarms) {
-        let chunk = swarm::Chunk::from_numbers(part).map_err(CarryError::Numbers)?;
-        let mut path = SwarmPath::default();
-        path.append(&chunk).map_err(CarryError::Numbers)?;
+        let path = SwarmPath::from_numbers(part).map_err(CarryError::Numbers)?;
         if path.tracers() != start.pos.len() {
             return Err(CarryError::OtherText);
         }

@@ -2,6 +2,7 @@
 
 use super::track::Track;
 use super::{Contact, Ephemeris, Outcome, Switch};
+use crate::math::counts::{count_from, number_from, take};
 use crate::scenario::BodyId;
 
 /// Numbers before the GMs: how many bodies, contacts and switches.
@@ -11,16 +12,10 @@ const PER_CONTACT: usize = 6;
 /// Numbers of a switch.
 const PER_SWITCH: usize = 3;
 
-/// Numbers that were sent are not what they should be, or not what comes next.
+/// Numbers that were sent don't fit together.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, thiserror::Error)]
-pub enum ChunkError {
-    /// They don't fit together.
-    #[error("these numbers are no part of an ephemeris")]
-    Malformed,
-    /// A part of something else, or one before it is missing.
-    #[error("this part of an ephemeris doesn't follow what is there")]
-    OutOfOrder,
-}
+#[error("these numbers are no part of an ephemeris")]
+pub struct Malformed;
 
 impl Ephemeris {
     /// All of it, bit for bit: how many bodies, contacts and switches; GM of each body at time 0; the forward and then the backward
@@ -59,23 +54,20 @@ impl Ephemeris {
     /// From numbers that [`Ephemeris::to_numbers`] wrote.
     ///
     /// # Errors
-    /// [`ChunkError::Malformed`] when they don't fit together.
-    pub fn from_numbers(numbers: &[f64]) -> Result<Self, ChunkError> {
-        read(numbers).ok_or(ChunkError::Malformed)
+    /// [`Malformed`] when they don't fit together.
+    pub fn from_numbers(numbers: &[f64]) -> Result<Self, Malformed> {
+        read(numbers).ok_or(Malformed)
     }
 }
 
-fn read(numbers: &[f64]) -> Option<Ephemeris> {
-    let (header, rest) = numbers.split_at_checked(HEADER)?;
-    let [bodies, contacts, switches] = header else { return None };
-    let bodies = count_from(*bodies)?;
-    let (gms, mut rest) = rest.split_at_checked(bodies)?;
-    let mut ephemeris = Ephemeris::new(gms.to_vec());
+fn read(mut rest: &[f64]) -> Option<Ephemeris> {
+    let [bodies, contacts, switches] = *take(&mut rest, HEADER)? else { return None };
+    let bodies = count_from(bodies)?;
+    let mut ephemeris = Ephemeris::new(take(&mut rest, bodies)?.to_vec());
     ephemeris.forward = Track::read(bodies, 1.0, &mut rest)?;
     ephemeris.backward = Track::read(bodies, -1.0, &mut rest)?;
     let body = |number: f64| count_from(number).filter(|&body| body < bodies).map(BodyId);
-    let (rows, rest) = rest.split_at_checked(count_from(*contacts)?.checked_mul(PER_CONTACT)?)?;
-    for row in rows.chunks_exact(PER_CONTACT) {
+    for row in take(&mut rest, count_from(contacts)?.checked_mul(PER_CONTACT)?)?.chunks_exact(PER_CONTACT) {
         ephemeris.contacts.push(Contact {
             t_s: row[0],
             body: body(row[1])?,
@@ -90,26 +82,10 @@ fn read(numbers: &[f64]) -> Option<Ephemeris> {
             onto_gm_m3_s2: row[5],
         });
     }
-    let (rows, rest) = rest.split_at_checked(count_from(*switches)?.checked_mul(PER_SWITCH)?)?;
-    for row in rows.chunks_exact(PER_SWITCH) {
+    for row in take(&mut rest, count_from(switches)?.checked_mul(PER_SWITCH)?)?.chunks_exact(PER_SWITCH) {
         ephemeris.switches.push(Switch { t_s: row[0], body: body(row[1])?, on: row[2] > 0.0 });
     }
     rest.is_empty().then_some(ephemeris)
-}
-
-/// Counts stay far below 2⁵³, where f64 is exact.
-#[expect(clippy::cast_precision_loss, reason = "counts of things in memory are exact in f64")]
-pub(super) fn number_from(count: usize) -> f64 {
-    count as f64
-}
-
-#[expect(
-    clippy::cast_possible_truncation,
-    clippy::cast_sign_loss,
-    reason = "checked to be a whole number that fits"
-)]
-pub(super) fn count_from(number: f64) -> Option<usize> {
-    (number >= 0.0 && number <= f64::from(u32::MAX) && number.fract() == 0.0).then_some(number as usize)
 }
 
 #[cfg(test)]
@@ -160,12 +136,12 @@ mod tests {
     fn numbers_that_do_not_fit_together_are_refused() {
         let good = grown().to_numbers();
         for cut in [0, 2, HEADER, good.len() - 1] {
-            assert_eq!(Ephemeris::from_numbers(&good[..cut]), Err(ChunkError::Malformed), "cut at {cut}");
+            assert_eq!(Ephemeris::from_numbers(&good[..cut]), Err(Malformed), "cut at {cut}");
         }
         for (at, wrong) in [(0, -1.0), (0, 3.0), (1, f64::NAN), (2, 0.5), (5, 1e10), (9, 1e9)] {
             let mut numbers = good.clone();
             numbers[at] = wrong;
-            assert_eq!(Ephemeris::from_numbers(&numbers), Err(ChunkError::Malformed), "{wrong} at {at}");
+            assert_eq!(Ephemeris::from_numbers(&numbers), Err(Malformed), "{wrong} at {at}");
         }
     }
 }

@@ -22,7 +22,7 @@ pub mod track;
 
 pub use crate::integrate::PER_BODY;
 pub use changes::Switch;
-pub use flat::ChunkError;
+pub use flat::Malformed;
 pub use propagation::{Propagation, SHOW_BYTES, Stopped, Why, states_at};
 pub use thin::Tolerance;
 pub use track::{Piece, Track};

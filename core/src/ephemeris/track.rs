@@ -3,6 +3,7 @@
 use super::{State, Tolerance};
 use crate::Vector3;
 use crate::integrate::PER_BODY;
+use crate::math::counts::{count_from, number_from, take};
 
 /// A part of the path of one body: the acceleration as a polynomial of the fraction of it.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -214,9 +215,9 @@ impl Track {
     /// Writes it: how many steps, the end, both tolerances, and for each body how many pieces, all starts, all lengths, all polynomials.
     pub(super) fn write(&self, numbers: &mut Vec<f64>) {
         let Tolerance { place, velocity } = self.tolerance;
-        numbers.extend([super::flat::number_from(self.steps), self.end_s, place, velocity]);
+        numbers.extend([number_from(self.steps), self.end_s, place, velocity]);
         for pieces in &self.bodies {
-            numbers.push(super::flat::number_from(pieces.starts_s.len()));
+            numbers.push(number_from(pieces.starts_s.len()));
             numbers.extend_from_slice(&pieces.starts_s);
             numbers.extend_from_slice(&pieces.steps_s);
             numbers.extend_from_slice(&pieces.numbers);
@@ -225,21 +226,17 @@ impl Track {
 
     /// As [`Track::write`] wrote it, taken off the front of `numbers`; `None` where they don't fit.
     pub(super) fn read(bodies: usize, direction: f64, numbers: &mut &[f64]) -> Option<Self> {
-        let mut take = |count: usize| {
-            let (part, tail) = numbers.split_at_checked(count)?;
-            *numbers = tail;
-            Some(part)
-        };
+        let mut take = |count: usize| take(numbers, count);
         let [steps, end_s, place, velocity] = *take(4)? else { return None };
         let mut track = Self {
             direction,
             end_s,
-            steps: super::flat::count_from(steps)?,
+            steps: count_from(steps)?,
             tolerance: Tolerance { place, velocity },
             bodies: Vec::new(),
         };
         for _ in 0..bodies {
-            let count = super::flat::count_from(*take(1)?.first()?)?;
+            let count = count_from(*take(1)?.first()?)?;
             track.bodies.push(Pieces {
                 starts_s: take(count)?.to_vec(),
                 steps_s: take(count)?.to_vec(),

@@ -2,7 +2,6 @@
 
 use super::Show;
 use crate::ephemeris::{Outcome, Track};
-use crate::swarm;
 use sha2::{Digest, Sha256};
 use std::fmt;
 
@@ -47,7 +46,7 @@ impl Fingerprint {
             put(&mut hash, &[contact.t_s, contact.speed_m_s, contact.onto_gm_m3_s2]);
         }
         for swarm in &show.swarms {
-            let numbers = swarm.chunk_since(swarm::Mark::default()).into_numbers();
+            let numbers = swarm.to_numbers();
             put_count(&mut hash, numbers.len());
             put(&mut hash, &numbers);
         }

@@ -12,9 +12,9 @@
 //! size in the middle, and by a few times 1e-8 for tracers that a planet passes.
 
 mod block;
-mod chunk;
 mod cursor;
 mod field;
+mod flat;
 mod flock;
 mod lone;
 mod path;
@@ -25,7 +25,6 @@ mod tests;
 mod watch;
 mod weights;
 
-pub use chunk::{Chunk, Mark};
 pub use cursor::{Cursor, Positions};
 pub use path::{SNAPSHOT_BYTES, SwarmPath};
 pub use run::SwarmRun;
