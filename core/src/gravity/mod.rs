@@ -15,7 +15,7 @@ mod softening;
 
 pub(crate) use drag::Drags;
 use newton::Newton;
-use oblateness::Bulge;
+pub(crate) use oblateness::Bulge;
 use post_newtonian::PostNewtonian;
 use resting::Resting;
 
@@ -193,7 +193,7 @@ mod tests {
             let pos: Vec<f64> = bodies.iter().flat_map(|b| b.pos.as_slice().to_vec()).collect();
             let vel: Vec<f64> = bodies.iter().flat_map(|b| b.vel.as_slice().to_vec()).collect();
             let listed = bodies.len();
-            let mut field = Field::new(&InitialState { bodies, listed, forces, changes: Vec::new(), swarms: Vec::new() });
+            let mut field = Field::new(&InitialState { forces, ..InitialState::of(bodies) });
             field.rest(0, [1e6, 2e6, -3e6], 3e13);
             field.rest(1, [0.0, 2e5, 0.0], 3e11);
             let mut out = vec![0.0; pos.len()];

@@ -4,29 +4,41 @@ use crate::initial::Oblate;
 
 /// A body whose equator bulges, by its second zonal harmonic.
 #[derive(Debug, Clone, PartialEq)]
-pub(super) struct Bulge {
-    body: usize,
+pub(crate) struct Bulge {
+    /// Whose place among the bodies it is.
+    pub(crate) body: usize,
     /// 3/2 J2 R², m².
     strength_m2: f64,
     pole: [f64; 3],
 }
 
 impl Bulge {
-    pub(super) fn new(body: usize, oblate: &Oblate) -> Self {
+    pub(crate) fn new(body: usize, oblate: &Oblate) -> Self {
         let strength_m2 = 1.5 * oblate.j2 * oblate.radius_m * oblate.radius_m;
         Self { body, strength_m2, pole: oblate.pole.into() }
     }
 
-    /// Adds what the bulge gives to all other bodies, and the reaction of the massive ones on its own body.
+    /// What it adds to the acceleration at `r` from its body, for GM 1.
     ///
-    /// With r from the body, p its pole and s = r·p / r: -3/2 GM J2 R² / r⁵ [(1 - 5 s²) r + 2 (r·p) p], the gradient of
-    /// the potential GM J2 R² P2(s) / r³. The pole keeps its direction.
+    /// With p its pole and s = r·p / r: -3/2 J2 R² / r⁵ [(1 - 5 s²) r + 2 (r·p) p], the gradient of the potential
+    /// J2 R² P2(s) / r³. The pole keeps its direction.
     ///
     /// # Source
     /// W. M. Kaula, Theory of Satellite Geodesy (1966), ch. 1, eq. 1.31 for l = 2, m = 0.
+    #[inline]
+    pub(crate) fn pull(&self, r: [f64; 3]) -> [f64; 3] {
+        let p = self.pole;
+        let r2 = r[0] * r[0] + r[1] * r[1] + r[2] * r[2];
+        let rp = r[0] * p[0] + r[1] * p[1] + r[2] * p[2];
+        let w = -self.strength_m2 / (r2 * r2 * r2.sqrt());
+        let along_r = w * (1.0 - 5.0 * rp * rp / r2);
+        let along_p = w * 2.0 * rp;
+        [along_r * r[0] + along_p * p[0], along_r * r[1] + along_p * p[1], along_r * r[2] + along_p * p[2]]
+    }
+
+    /// Adds what the bulge gives to all other bodies, and the reaction of the massive ones on its own body.
     pub(super) fn add(&self, gms: &[f64], pos: &[f64], out: &mut [f64]) {
         let c = 3 * self.body;
-        let p = self.pole;
         let gm = gms[self.body];
         let mut reaction = [0.0; 3];
         for (i, &gm_i) in gms.iter().enumerate() {
@@ -34,16 +46,10 @@ impl Bulge {
                 continue;
             }
             let k = 3 * i;
-            let r = [pos[k] - pos[c], pos[k + 1] - pos[c + 1], pos[k + 2] - pos[c + 2]];
-            let r2 = r[0] * r[0] + r[1] * r[1] + r[2] * r[2];
-            let rp = r[0] * p[0] + r[1] * p[1] + r[2] * p[2];
-            let w = -self.strength_m2 / (r2 * r2 * r2.sqrt());
-            let along_r = w * (1.0 - 5.0 * rp * rp / r2);
-            let along_p = w * 2.0 * rp;
+            let a = self.pull([pos[k] - pos[c], pos[k + 1] - pos[c + 1], pos[k + 2] - pos[c + 2]]);
             for axis in 0..3 {
-                let a = along_r * r[axis] + along_p * p[axis];
-                out[k + axis] += gm * a;
-                reaction[axis] += gm_i * a;
+                out[k + axis] += gm * a[axis];
+                reaction[axis] += gm_i * a[axis];
             }
         }
         for axis in 0..3 {

@@ -40,13 +40,7 @@ impl Scene {
             drags: vec![Drag { body: slowed, area_m2_kg: 1e-2 }],
             softening_m: self.softening_m,
         };
-        let initial = InitialState {
-            bodies: (0..self.gms.len()).map(body).collect(),
-            listed: self.gms.len(),
-            forces,
-            changes: Vec::new(),
-            swarms: Vec::new(),
-        };
+        let initial = InitialState { forces, ..InitialState::of((0..self.gms.len()).map(body).collect()) };
         let flat =
             |of: &[Vector3<f64>]| -> Vec<f64> { of.iter().flat_map(|v| <[f64; 3]>::from(*v)).collect() };
         let mut out = vec![0.0; 3 * self.gms.len()];

@@ -1,6 +1,8 @@
 //! Integration of the equations of motion.
 
 pub mod drift;
+#[cfg(test)]
+mod exactly;
 pub mod long_run;
 pub mod radau;
 pub(crate) mod spacings;

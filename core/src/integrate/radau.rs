@@ -396,11 +396,11 @@ impl Radau {
         let largest = bodies().map(|axes| square(axes, 0)).fold(0.0, f64::max);
         let mut least = f64::INFINITY;
         for axes in bodies() {
-            let [a, jerk, snap, crackle] = [0, 1, 2, 3].map(|order| square(axes, order));
-            if a.max(jerk).max(snap) <= NOISE * NOISE * largest {
+            let squares = [0, 1, 2, 3].map(|order| square(axes, order));
+            if squares[0].max(squares[1]).max(squares[2]) <= NOISE * NOISE * largest {
                 continue;
             }
-            let square = ((a * snap).sqrt() + jerk) / ((jerk * crackle).sqrt() + snap);
+            let square = time_scale_square(squares);
             // Not finite where nothing changes: no limit.
             if square < least {
                 least = square;
@@ -408,6 +408,13 @@ impl Radau {
         }
         least.sqrt()
     }
+}
+
+/// Square of the time scale of a body, in units of the step, from the squares of its acceleration and the first three derivatives of that by
+/// the fraction of the step. Not a number where nothing changes.
+#[inline]
+pub(crate) fn time_scale_square([a, jerk, snap, crackle]: [f64; 4]) -> f64 {
+    ((a * snap).sqrt() + jerk) / ((jerk * crackle).sqrt() + snap)
 }
 
 /// A table, to be read from where it lies: as constants in the code, its numbers would be made anew for each use in wasm,

@@ -7,7 +7,7 @@
 
 use crate::Vector3;
 use crate::ephemeris::{Ephemeris, State};
-use crate::gravity::Drags;
+use crate::gravity::{Bulge, Drags};
 use crate::initial::{Drag, InitialState};
 use crate::scenario::BodyId;
 
@@ -21,15 +21,6 @@ pub(super) struct Source {
     share: f64,
 }
 
-/// A bulge of one of the sources.
-#[derive(Debug, Clone)]
-struct Bulge {
-    source: usize,
-    /// 3/2 J2 R², m².
-    strength_m2: f64,
-    pole: [f64; 3],
-}
-
 /// What pulls on tracers, from one break of the forces to the next.
 #[derive(Debug, Clone)]
 pub(super) struct Field {
@@ -38,6 +29,7 @@ pub(super) struct Field {
     /// Those with mass first.
     pub(super) sources: Vec<Source>,
     pub(super) massive: usize,
+    /// Of sources, by their places among them.
     bulges: Vec<Bulge>,
     airs: Vec<Air>,
 }
@@ -110,11 +102,8 @@ impl Field {
             .oblate
             .iter()
             .filter_map(|oblate| {
-                Some(Bulge {
-                    source: sources.iter().position(|s| s.body == oblate.body && s.gm > 0.0)?,
-                    strength_m2: 1.5 * oblate.j2 * oblate.radius_m * oblate.radius_m,
-                    pole: oblate.pole.into(),
-                })
+                let source = sources.iter().position(|s| s.body == oblate.body && s.gm > 0.0)?;
+                Some(Bulge::new(source, oblate))
             })
             .collect();
         let slowed = Drag { body: about, area_m2_kg };
@@ -234,7 +223,7 @@ impl Field {
         let mut shift = [0.0; 3];
         for (member, place) in self.sources.iter().zip(at).filter(|(member, _)| member.share > 0.0) {
             for (source, from) in self.sources.iter().zip(at).filter(|(source, _)| source.share <= 0.0) {
-                let r = [place[0] - from[0], place[1] - from[1], place[2] - from[2]];
+                let r = apart(*place, *from);
                 let r2 = r[0] * r[0] + r[1] * r[1] + r[2] * r[2];
                 let w = member.share * source.gm / (r2 * r2.sqrt());
                 for axis in 0..3 {
@@ -243,17 +232,17 @@ impl Field {
             }
         }
         for bulge in &self.bulges {
-            let own = self.sources[bulge.source].share;
+            let own = self.sources[bulge.body].share;
             for (source, place) in self.sources.iter().zip(at) {
                 // On a member by a bulge elsewhere, or the reaction on a member by what its bulge acts on.
                 let weight = if own > 0.0 && source.share <= 0.0 {
                     -own * source.gm
                 } else if own <= 0.0 && source.share > 0.0 {
-                    source.share * self.sources[bulge.source].gm
+                    source.share * self.sources[bulge.body].gm
                 } else {
                     continue;
                 };
-                let a = bulge.pull(at[bulge.source], *place);
+                let a = bulge.pull(apart(*place, at[bulge.body]));
                 for axis in 0..3 {
                     shift[axis] += weight * a[axis];
                 }
@@ -271,8 +260,8 @@ impl Field {
     pub(super) fn bulge_pull(&self, node: &Node, place: [f64; 3]) -> [f64; 3] {
         let mut sum = [0.0; 3];
         for bulge in &self.bulges {
-            let gm = self.sources[bulge.source].gm;
-            let a = bulge.pull(node.at[bulge.source], place);
+            let gm = self.sources[bulge.body].gm;
+            let a = bulge.pull(apart(place, node.at[bulge.body]));
             for axis in 0..3 {
                 sum[axis] += gm * a[axis];
             }
@@ -287,25 +276,11 @@ fn both_of(node: &Node, source: usize, pos: [f64; 3], vel: [f64; 3]) -> ([f64; 6
     ([pos[0], pos[1], pos[2], at[0], at[1], at[2]], [vel[0], vel[1], vel[2], moving[0], moving[1], moving[2]])
 }
 
-fn square_apart(a: [f64; 3], b: [f64; 3]) -> f64 {
-    let d = [a[0] - b[0], a[1] - b[1], a[2] - b[2]];
-    d[0] * d[0] + d[1] * d[1] + d[2] * d[2]
+pub(super) fn apart(a: [f64; 3], b: [f64; 3]) -> [f64; 3] {
+    [a[0] - b[0], a[1] - b[1], a[2] - b[2]]
 }
 
-impl Bulge {
-    /// What it adds to the acceleration at a place, for GM 1. As for bodies (`gravity`).
-    ///
-    /// # Source
-    /// W. M. Kaula, Theory of Satellite Geodesy (1966), ch. 1, eq. 1.31 for l = 2, m = 0.
-    #[inline]
-    fn pull(&self, from: [f64; 3], place: [f64; 3]) -> [f64; 3] {
-        let p = self.pole;
-        let r = [place[0] - from[0], place[1] - from[1], place[2] - from[2]];
-        let r2 = r[0] * r[0] + r[1] * r[1] + r[2] * r[2];
-        let rp = r[0] * p[0] + r[1] * p[1] + r[2] * p[2];
-        let w = -self.strength_m2 / (r2 * r2 * r2.sqrt());
-        let along_r = w * (1.0 - 5.0 * rp * rp / r2);
-        let along_p = w * 2.0 * rp;
-        [along_r * r[0] + along_p * p[0], along_r * r[1] + along_p * p[1], along_r * r[2] + along_p * p[2]]
-    }
+fn square_apart(a: [f64; 3], b: [f64; 3]) -> f64 {
+    let d = apart(a, b);
+    d[0] * d[0] + d[1] * d[1] + d[2] * d[2]
 }

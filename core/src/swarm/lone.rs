@@ -4,9 +4,10 @@
 //! lies at a whole multiple of itself, so that tracers in one neighbourhood find the bodies at the same instants, and it comes out at the
 //! block's nodes.
 
-use super::field::{Field, Node};
+use super::field::{Field, Node, apart};
 use super::scale::floor_log2;
 use crate::ephemeris::Ephemeris;
+use crate::integrate::radau::time_scale_square;
 use crate::integrate::spacings::{
     B_FROM_G, BINOMIAL, G_FROM_B, INVERSE, POSITION, SPACINGS, VELOCITY, position_weights, velocity_weights,
 };
@@ -179,8 +180,7 @@ impl Piece {
                 *square += d * d;
             }
         }
-        let [a, jerk, snap, crackle] = squares;
-        let square = ((a * snap).sqrt() + jerk) / ((jerk * crackle).sqrt() + snap);
+        let square = time_scale_square(squares);
         if square.is_nan() { f64::INFINITY } else { square.sqrt() }
     }
 
@@ -189,10 +189,10 @@ impl Piece {
         let (end, _) = self.at(1.0);
         let mut first: Option<(f64, usize)> = None;
         for (source, radius_m) in field.solids() {
-            let from = less(self.pos, nodes[0].at[source]);
-            let to = less(end, nodes[8].at[source]);
-            let place = |h: f64| less(self.at(h).0, field.place(eph, source, self.t_s + h * self.step_s));
-            let inwards = dot(from, less(self.vel, nodes[0].moving[source])) * self.step_s < 0.0;
+            let from = apart(self.pos, nodes[0].at[source]);
+            let to = apart(end, nodes[8].at[source]);
+            let place = |h: f64| apart(self.at(h).0, field.place(eph, source, self.t_s + h * self.step_s));
+            let inwards = dot(from, apart(self.vel, nodes[0].moving[source])) * self.step_s < 0.0;
             let found = if size(from) < radius_m && inwards {
                 Some(0.0)
             } else {
@@ -214,7 +214,7 @@ fn inside(
     radius_m: f64,
 ) -> Option<f64> {
     let (from, to) = (size(a.1), size(b.1));
-    let chord = size(less(a.1, b.1));
+    let chord = size(apart(a.1, b.1));
     if from >= radius_m && to < radius_m {
         return crate::math::root::bracketed(|h| size(place(h)) - radius_m, a.0, b.0, 0.0);
     }
@@ -227,10 +227,6 @@ fn inside(
     let half = 0.5 * (a.0 + b.0);
     let middle = (half, place(half));
     inside(place, a, middle, radius_m).or_else(|| inside(place, middle, b, radius_m))
-}
-
-fn less(a: [f64; 3], b: [f64; 3]) -> [f64; 3] {
-    [a[0] - b[0], a[1] - b[1], a[2] - b[2]]
 }
 
 fn dot(a: [f64; 3], b: [f64; 3]) -> f64 {

@@ -2,6 +2,7 @@ use super::*;
 use crate::Vector3;
 use crate::constants::{ARCSEC_RAD, AU_M, DAY_S, GM_SUN_M3_S2 as SUN, YEAR_S};
 use crate::initial::{InitialState, Oblate, TimedChange};
+use crate::integrate::exactly::exactly;
 use crate::scenario::{BodyId, ChangeKind};
 use crate::solar_system::{PLANETS, solar_system};
 
@@ -46,16 +47,7 @@ impl Flat {
     }
 
     fn exact(&self, t_s: f64) -> Vec<f64> {
-        let mut field = self.field.clone();
-        let mut radau = Radau::new(0.0, &self.pos, &self.vel, t_s.signum() * DAY_S);
-        while radau.t_s().to_bits() != t_s.to_bits() {
-            radau.limit_step((t_s - radau.t_s()).abs());
-            radau.solve(&mut field).unwrap();
-            radau.finish();
-        }
-        let (mut pos, mut vel) = (self.pos.clone(), self.vel.clone());
-        radau.state(&mut pos, &mut vel);
-        pos
+        exactly(self.field.clone(), &self.pos, &self.vel, t_s).0
     }
 }
 

@@ -1,7 +1,8 @@
 use super::*;
 use crate::constants::{ARCSEC_RAD, AU_M, DAY_S, GM_SUN_M3_S2 as SUN, YEAR_S};
 use crate::gravity::Field;
-use crate::integrate::{Radau, drift};
+use crate::integrate::drift;
+use crate::integrate::exactly::exactly;
 use crate::math::float::atan2;
 use crate::solar_system::{PLANETS, solar_system};
 
@@ -37,15 +38,7 @@ impl Bodies {
             body.gm_m3_s2 = *gm;
         }
         initial.forces.relativity = relativity;
-        let mut field = Field::new(&initial);
-        let mut radau = Radau::new(0.0, &self.pos, &self.vel, t_s.signum() * DAY_S);
-        while radau.t_s().to_bits() != t_s.to_bits() {
-            radau.limit_step((t_s - radau.t_s()).abs());
-            radau.solve(&mut field).unwrap();
-            radau.finish();
-        }
-        let (mut pos, mut vel) = (self.pos.clone(), self.vel.clone());
-        radau.state(&mut pos, &mut vel);
+        let (pos, vel) = exactly(Field::new(&initial), &self.pos, &self.vel, t_s);
         Self { gms: self.gms.clone(), pos, vel }
     }
 }
