@@ -35,8 +35,7 @@ fn planets(gms: &[f64]) -> InitialState {
         let r = (1.0 + 2.0 * n as f64) * AU_M;
         bodies.push(body(gm, Vector3::new(r, 0.0, 0.0), Vector3::new(0.0, (GM_SUN / r).sqrt(), 0.0)));
     }
-    let listed = bodies.len();
-    InitialState { bodies, listed, forces: Forces::default(), changes: Vec::new(), swarms: Vec::new() }
+    InitialState::of(bodies)
 }
 
 fn numbers(initial: &InitialState) -> [Vec<f64>; 3] {

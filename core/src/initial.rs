@@ -20,6 +20,24 @@ pub struct InitialState {
     pub swarms: Vec<InitialSwarm>,
 }
 
+impl InitialState {
+    /// Of these bodies, all of them listed, under Newton's forces alone, with nothing done to them on the way.
+    pub fn of(bodies: Vec<InitialBody>) -> Self {
+        Self {
+            listed: bodies.len(),
+            bodies,
+            forces: Forces::default(),
+            changes: Vec::new(),
+            swarms: Vec::new(),
+        }
+    }
+
+    /// Name of a body; empty where there is none.
+    pub fn name(&self, body: BodyId) -> &str {
+        self.bodies.get(body.0).map_or("", |body| body.name.as_str())
+    }
+}
+
 /// Many tracers at the start, with one origin.
 #[derive(Debug, Clone, PartialEq)]
 pub struct InitialSwarm {

@@ -70,7 +70,7 @@ mod tests {
     use crate::Vector3;
     use crate::conic::{Elements, state_from_elements};
     use crate::ephemeris::Propagation;
-    use crate::initial::{Forces, InitialBody, InitialState};
+    use crate::initial::{InitialBody, InitialState};
     use crate::scenario::Surface;
     use std::f64::consts::PI;
 
@@ -101,13 +101,7 @@ mod tests {
             point("star", GM, -pos * share, -vel * share),
             point("planet", gm_own, pos * (1.0 - share), vel * (1.0 - share)),
         ];
-        let initial = InitialState {
-            bodies,
-            listed: 2,
-            forces: Forces::default(),
-            changes: Vec::new(),
-            swarms: Vec::new(),
-        };
+        let initial = InitialState::of(bodies);
         let period = elements.period_s(GM + gm_own).unwrap();
         let mut propagation = Propagation::new(&initial);
         assert!(propagation.advance(1.1 * period, 100_000).unwrap());

@@ -5,7 +5,7 @@
 
 use fallaround_core::Vector3;
 use fallaround_core::gravity::Field;
-use fallaround_core::initial::{Forces, InitialBody, InitialState};
+use fallaround_core::initial::{InitialBody, InitialState};
 use fallaround_core::integrate::wisdom_holman::Start;
 use fallaround_core::integrate::{Radau, WisdomHolman, drift};
 use fallaround_core::scenario::Surface;
@@ -46,14 +46,7 @@ fn sun_and_planets() -> (Field, Vec<f64>, Vec<f64>) {
         bodies.iter().flat_map(|b| <[f64; 3]>::from(of(b))).collect()
     };
     let (pos, vel) = (flat(|b| b.pos), flat(|b| b.vel));
-    let listed = bodies.len();
-    let field = Field::new(&InitialState {
-        bodies,
-        listed,
-        forces: Forces::default(),
-        changes: Vec::new(),
-        swarms: Vec::new(),
-    });
+    let field = Field::new(&InitialState::of(bodies));
     (field, pos, vel)
 }
 

@@ -6,7 +6,7 @@
 
 use fallaround_core::Vector3;
 use fallaround_core::ephemeris::states_at;
-use fallaround_core::initial::{Forces, InitialBody, InitialState};
+use fallaround_core::initial::{InitialBody, InitialState};
 use fallaround_core::scenario::Surface;
 use fallaround_tests::assert_close;
 
@@ -29,7 +29,7 @@ fn eight() -> InitialState {
     };
     let half = [-0.5 * V[0], -0.5 * V[1]];
     let bodies = vec![body("A", X, half), body("B", [-X[0], -X[1]], half), body("C", [0.0, 0.0], V)];
-    InitialState { bodies, listed: 3, forces: Forces::default(), changes: Vec::new(), swarms: Vec::new() }
+    InitialState::of(bodies)
 }
 
 #[test]

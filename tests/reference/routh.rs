@@ -5,7 +5,7 @@
 
 use fallaround_core::Vector3;
 use fallaround_core::gravity::Field;
-use fallaround_core::initial::{Forces, InitialBody, InitialState};
+use fallaround_core::initial::{InitialBody, InitialState};
 use fallaround_core::integrate::Radau;
 use fallaround_core::math::float::ln;
 use fallaround_core::scenario::Surface;
@@ -36,13 +36,7 @@ fn wanders(mu: f64, turns: u32) -> Vec<f64> {
         bodies.iter().flat_map(|body| <[f64; 3]>::from(of(body))).collect()
     };
     let (mut pos, mut vel) = (flat(|body| body.pos), flat(|body| body.vel));
-    let mut field = Field::new(&InitialState {
-        listed: 3,
-        bodies,
-        forces: Forces::default(),
-        changes: Vec::new(),
-        swarms: Vec::new(),
-    });
+    let mut field = Field::new(&InitialState::of(bodies));
     let mut radau = Radau::new(0.0, &pos, &vel, 0.01);
     let (mut most, mut turn) = (vec![0.0_f64], 1);
     while turn <= turns {

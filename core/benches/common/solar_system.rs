@@ -5,7 +5,7 @@
 //! planets from Mars on are the barycentres of their systems.
 
 use fallaround_core::Vector3;
-use fallaround_core::initial::{Forces, InitialBody, InitialState};
+use fallaround_core::initial::{InitialBody, InitialState};
 use fallaround_core::math::frame::ecliptic_from_equatorial;
 use fallaround_core::scenario::Surface;
 
@@ -105,13 +105,7 @@ pub(crate) fn solar_system(names: &[&str]) -> InitialState {
         body.pos -= pos;
         body.vel -= vel;
     }
-    InitialState {
-        listed: bodies.len(),
-        bodies,
-        forces: Forces::default(),
-        changes: Vec::new(),
-        swarms: Vec::new(),
-    }
+    InitialState::of(bodies)
 }
 
 /// The Sun and the eight planets, without the Moon.

@@ -160,8 +160,8 @@ impl View<'_> {
             Wanted::Instant { body, about, at } => {
                 let about = about.or(self.primary(body));
                 let of = match about {
-                    Some(about) => format!("{} and {}", self.name(body), self.name(about)),
-                    None => self.name(body).to_owned(),
+                    Some(about) => format!("{} and {}", self.initial.name(body), self.initial.name(about)),
+                    None => self.initial.name(body).to_owned(),
                 };
                 let state = self.relative(body, about, at.s())?;
                 for outcome in &want.outcomes {
@@ -275,15 +275,15 @@ impl View<'_> {
     fn event_name(&self, event: &EventRef) -> String {
         let nth = if event.nth == 1 { String::new() } else { format!("{}. ", event.nth) };
         let distance = event.distance.map(|d| format!(" {d}")).unwrap_or_default();
-        let other = event.other.map(|o| format!(" {} {}", event.kind.joiner(), self.name(o)));
+        let other = event.other.map(|o| format!(" {} {}", event.kind.joiner(), self.initial.name(o)));
         let kind = event.kind.name();
-        format!("{nth}{kind}{distance} of {}{}", self.name(event.body), other.unwrap_or_default())
+        format!("{nth}{kind}{distance} of {}{}", self.initial.name(event.body), other.unwrap_or_default())
     }
 
     fn relative(&self, body: BodyId, about: Option<BodyId>, t_s: f64) -> Result<State, String> {
-        let about = about.ok_or_else(|| format!("{} has no primary", self.name(body)))?;
+        let about = about.ok_or_else(|| format!("{} has no primary", self.initial.name(body)))?;
         let state = self.ephemeris.relative(body, about, t_s);
-        state.ok_or_else(|| format!("{} is not known at that time", self.name(body)))
+        state.ok_or_else(|| format!("{} is not known at that time", self.initial.name(body)))
     }
 
     fn period_s(&self, body: BodyId, t_s: f64) -> Option<f64> {
@@ -292,10 +292,6 @@ impl View<'_> {
 
     fn primary(&self, body: BodyId) -> Option<BodyId> {
         self.initial.bodies.get(body.0)?.primary
-    }
-
-    fn name(&self, body: BodyId) -> &str {
-        self.initial.bodies.get(body.0).map_or("", |b| b.name.as_str())
     }
 }
 

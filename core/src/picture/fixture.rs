@@ -4,7 +4,7 @@ use super::frame::Frame;
 use crate::Vector3;
 use crate::ephemeris::{Ephemeris, PER_BODY};
 use crate::math::float;
-use crate::resolve::{Forces, InitialBody, InitialState};
+use crate::resolve::{InitialBody, InitialState};
 use crate::scenario::{
     Beat, BeatClock, BeatStart, Body, BodyId, Caption, Centre, Colour, Form, Kind, Mark, Physics, Place,
     Scenario, Surface, Then, View,
@@ -180,9 +180,8 @@ pub(crate) fn show(
 ) -> Show {
     let paths: Vec<Ellipse> = bodies.iter().map(|b| b.1).collect();
     let gms: Vec<f64> = bodies.iter().map(|b| b.2).collect();
-    let initial = InitialState {
-        listed: bodies.len(),
-        bodies: bodies
+    let initial = InitialState::of(
+        bodies
             .iter()
             .enumerate()
             .map(|(i, (b, path, gm, radius_m))| InitialBody {
@@ -195,10 +194,7 @@ pub(crate) fn show(
                 vel: path.state(0.0)[1],
             })
             .collect(),
-        forces: Forces::default(),
-        changes: Vec::new(),
-        swarms: Vec::new(),
-    };
+    );
     let (beats, planned): (Vec<_>, Vec<_>) = beats.into_iter().unzip();
     Show {
         scenario: Scenario {

@@ -100,13 +100,8 @@ pub fn system(states: &[State; 11], at: Epoch) -> InitialState {
             vel: state.vel,
         }
     });
-    InitialState {
-        bodies: bodies.collect(),
-        listed: ALL.len(),
-        forces: Forces { relativity: true, oblate: vec![earth_bulge(EARTH, at)], ..Forces::default() },
-        changes: Vec::new(),
-        swarms: Vec::new(),
-    }
+    let forces = Forces { relativity: true, oblate: vec![earth_bulge(EARTH, at)], ..Forces::default() };
+    InitialState { forces, ..InitialState::of(bodies.collect()) }
 }
 
 /// Why there is no solar system at a date.

@@ -238,7 +238,7 @@ impl Planner<'_> {
                 let period = self.period_s(body, from_s).ok_or_else(|| {
                     Need::Impossible(Problem::error(
                         beat.clock_place,
-                        format!("{} has no period: it does not come round", self.name(body)),
+                        format!("{} has no period: it does not come round", self.initial.name(body)),
                         "state the span as a time, such as span = \"200 d\"",
                     ))
                 })?;
@@ -303,13 +303,13 @@ impl Planner<'_> {
         let searched = readable(self.ephemeris.until_s() - after_s);
         Problem::error(
             place,
-            format!("no {} of {} within the {searched} searched", event.kind.name(), self.name(event.body)),
+            format!(
+                "no {} of {} within the {searched} searched",
+                event.kind.name(),
+                self.initial.name(event.body)
+            ),
             "name an event that happens, or change the motion so that it does",
         )
-    }
-
-    fn name(&self, body: BodyId) -> &str {
-        self.initial.bodies.get(body.0).map_or("?", |b| b.name.as_str())
     }
 }
 

@@ -4,7 +4,7 @@ use super::*;
 use crate::Vector3;
 use crate::conic::{Elements, state_from_elements};
 use crate::ephemeris::Propagation;
-use crate::initial::{Forces, InitialBody};
+use crate::initial::InitialBody;
 use crate::scenario::Surface;
 use std::f64::consts::TAU;
 
@@ -40,13 +40,7 @@ pub(super) fn orbiting(gm: f64, gm_own: f64, q: f64, e: f64, nu: f64) -> Initial
 }
 
 pub(super) fn state(bodies: Vec<InitialBody>) -> InitialState {
-    InitialState {
-        listed: bodies.len(),
-        bodies,
-        forces: Forces::default(),
-        changes: Vec::new(),
-        swarms: Vec::new(),
-    }
+    InitialState::of(bodies)
 }
 
 pub(super) fn run(initial: &InitialState, from_s: f64, until_s: f64) -> Ephemeris {

@@ -34,13 +34,7 @@ fn ball(gm_m3_s2: f64, radius_m: f64, surface: Surface, pos: [f64; 3], vel: [f64
 fn initial(bodies: Vec<InitialBody>) -> InitialState {
     let named = ('A'..).zip(bodies).map(|(name, body)| InitialBody { name: name.to_string(), ..body });
     let bodies: Vec<InitialBody> = named.collect();
-    InitialState {
-        listed: bodies.len(),
-        bodies,
-        forces: Forces::default(),
-        changes: Vec::new(),
-        swarms: Vec::new(),
-    }
+    InitialState::of(bodies)
 }
 
 /// The ephemeris up to an instant.

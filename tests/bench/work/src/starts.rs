@@ -2,7 +2,7 @@
 
 use fallaround_core::Vector3;
 use fallaround_core::constants::{AU_M, GM_SUN_M3_S2};
-use fallaround_core::initial::{Forces, InitialBody, InitialState};
+use fallaround_core::initial::{InitialBody, InitialState};
 use fallaround_core::scenario::Surface;
 
 use crate::solar_system::{PLANETS, solar_system};
@@ -82,5 +82,5 @@ fn bodies<const N: usize>(rows: [(&str, f64, [f64; 3], [f64; 3]); N]) -> Initial
             vel: Vector3::from(moving) - vel,
         })
         .collect();
-    InitialState { bodies, listed: N, forces: Forces::default(), changes: Vec::new(), swarms: Vec::new() }
+    InitialState::of(bodies)
 }

@@ -5,7 +5,7 @@ use fallaround_core::scenario::{Problem, Severity};
 use fallaround_core::show::Show;
 use serde_json::{Value, json};
 
-use super::{Shown, name, outcome};
+use super::{Shown, outcome};
 
 /// How many of the numbers that move the picture are written.
 const LEVERS: usize = 5;
@@ -71,8 +71,8 @@ pub(super) fn of(file: &str, shown: &Shown) -> Value {
     let contacts = show.ephemeris.contacts().iter().map(|contact| {
         json!({
             "t_s": contact.t_s,
-            "body": name(show, contact.body),
-            "onto": name(show, contact.onto),
+            "body": show.initial.name(contact.body),
+            "onto": show.initial.name(contact.onto),
             "outcome": outcome(contact.outcome),
             "speed_m_s": contact.speed_m_s,
         })
@@ -167,14 +167,14 @@ fn beat(show: &Show, index: usize, report: &BeatReport) -> Value {
 }
 
 fn shift(show: &Show, shift: &Shift) -> Value {
-    json!({ "body": name(show, shift.body), "beat_s": shift.beat_s, "px": shift.px, "m": shift.m })
+    json!({ "body": show.initial.name(shift.body), "beat_s": shift.beat_s, "px": shift.px, "m": shift.m })
 }
 
 fn lever(show: &Show, lever: &Lever) -> Value {
     let moves: Vec<Value> =
         lever.shifts.iter().map(|one| one.map_or(Value::Null, |one| shift(show, &one))).collect();
     json!({
-        "body": name(show, lever.body),
+        "body": show.initial.name(lever.body),
         "quantity": lever.quantity,
         "stated": lever.stated,
         "moves": moves,
@@ -183,8 +183,8 @@ fn lever(show: &Show, lever: &Lever) -> Value {
 
 fn encounter(show: &Show, one: &Encounter) -> Value {
     json!({
-        "body": name(show, one.body),
-        "other": name(show, one.other),
+        "body": show.initial.name(one.body),
+        "other": show.initial.name(one.other),
         "t_s": one.t_s,
         "beat": one.beat + 1,
         "distance_m": one.distance_m,

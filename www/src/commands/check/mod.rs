@@ -11,8 +11,8 @@ use std::process::ExitCode;
 use anyhow::{Context as _, Result};
 use fallaround_core::check::{Proof, Proven};
 use fallaround_core::ephemeris::Outcome;
-use fallaround_core::scenario::{BodyId, Problem};
-use fallaround_core::show::{Fingerprint, Show};
+use fallaround_core::scenario::Problem;
+use fallaround_core::show::Fingerprint;
 use serde_json::Value;
 
 use crate::cli::Check;
@@ -111,10 +111,6 @@ fn check(text: String) -> Result<Result<Shown, Vec<Problem>>> {
     let fingerprint = Fingerprint::of(&text, &proven.show);
     let energy_error = energy::error(&proven.show);
     Ok(Ok(Shown { proven, fingerprint, energy_error }))
-}
-
-fn name(show: &Show, body: BodyId) -> &str {
-    show.initial.bodies.get(body.0).map_or("", |body| body.name.as_str())
 }
 
 const fn outcome(outcome: Outcome) -> &'static str {

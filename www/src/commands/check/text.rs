@@ -6,7 +6,7 @@ use fallaround_core::check::{BeatReport, Finding, Report, said};
 use fallaround_core::show::Show;
 use fallaround_core::units::number;
 
-use super::{Shown, name, outcome};
+use super::{Shown, outcome};
 
 /// How many of the numbers that move the picture are told.
 const LEVERS: usize = 3;
@@ -30,9 +30,9 @@ pub(super) fn of(file: &str, shown: &Shown) -> String {
     for contact in show.ephemeris.contacts() {
         line(format!(
             "  contact      {} {} {} at {}, {:.1} m/s",
-            name(show, contact.body),
+            show.initial.name(contact.body),
             outcome(contact.outcome),
-            name(show, contact.onto),
+            show.initial.name(contact.onto),
             time(contact.t_s),
             contact.speed_m_s
         ));
@@ -41,8 +41,8 @@ pub(super) fn of(file: &str, shown: &Shown) -> String {
         let hill = one.hill_radii.map(|hill| format!(", {} of its Hill radii", number::with_digits(hill, 2)));
         line(format!(
             "  close        {} passes {} at {} in beat {}: {} km from centre to centre{}",
-            name(show, one.body),
-            name(show, one.other),
+            show.initial.name(one.body),
+            show.initial.name(one.other),
             time(one.t_s),
             one.beat + 1,
             number::with_digits(one.distance_m / 1e3, 4),
@@ -87,7 +87,7 @@ fn whole(shown: &Shown, line: &mut impl FnMut(String)) {
     };
     let (beat, _) = worst(|beat| beat.off.map_or(0.0, |off| off.px));
     if let Some(off) = report.beats.get(beat).and_then(|beat| beat.off) {
-        let body = name(show, off.body);
+        let body = show.initial.name(off.body);
         line(format!(
             "  exactness    {body} is drawn {} off at most, in beat {} (by a second run in shorter steps)",
             px(off.px),
@@ -151,8 +151,8 @@ fn last_digits(show: &Show, report: &Report, line: &mut impl FnMut(String)) {
         line(format!(
             "  {label:<11}  {} of {}, changed by a billionth, moves {} by {} in beat {}{of}",
             lever.quantity,
-            name(show, lever.body),
-            name(show, shift.body),
+            show.initial.name(lever.body),
+            show.initial.name(shift.body),
             px(shift.px),
             beat + 1
         ));
