@@ -124,7 +124,10 @@ fn what_cannot_be_reached_is_told_with_the_nearest_miss() {
     // Nothing to compare: it never comes down in time.
     let text = text.replace("apoapsis of Ball", "3rd apoapsis of Ball");
     let failure = solve(&text).unwrap_err();
-    assert!(failure.to_string().starts_with("no such throw: no 3. apoapsis of Ball within 1 h"), "{failure}");
+    assert!(
+        failure.to_string().starts_with("no such throw: no 3rd apoapsis of Ball within 1 h"),
+        "{failure}"
+    );
 }
 
 #[test]

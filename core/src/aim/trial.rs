@@ -191,7 +191,7 @@ impl View<'_> {
     ) -> Result<(), String> {
         let mut found = events::find(self.ephemeris, self.initial, &(&event).into(), 0.0, until_s);
         found.retain(|e| e.t_s > START_S);
-        let of = self.event_name(&event);
+        let of = event.said(|body| self.initial.name(body));
         if let [Outcome::Count(wanted)] = want.outcomes[..] {
             let allowed = allowed(want, Outcome::Count(wanted));
             misses.push(plain(format!("count of {of}"), count(found.len()), count(wanted), allowed));
@@ -270,14 +270,6 @@ impl View<'_> {
             }
             Outcome::At(_) | Outcome::PeriodRatio(_) | Outcome::Count(_) => return None,
         })
-    }
-
-    fn event_name(&self, event: &EventRef) -> String {
-        let nth = if event.nth == 1 { String::new() } else { format!("{}. ", event.nth) };
-        let distance = event.distance.map(|d| format!(" {d}")).unwrap_or_default();
-        let other = event.other.map(|o| format!(" {} {}", event.kind.joiner(), self.initial.name(o)));
-        let kind = event.kind.name();
-        format!("{nth}{kind}{distance} of {}{}", self.initial.name(event.body), other.unwrap_or_default())
     }
 
     fn relative(&self, body: BodyId, about: Option<BodyId>, t_s: f64) -> Result<State, String> {

@@ -120,16 +120,5 @@ fn late_s(plan: &Plan, before: Clock, after: Clock, cue: &Cue, pace: f64) -> f64
 
 /// "2nd periapsis of Fenn", as files say it.
 pub fn said(scenario: &Scenario, event: &EventRef) -> String {
-    let ordinal = match (event.nth, event.nth % 10, event.nth % 100) {
-        (1, ..) => String::new(),
-        (n, _, 11..=13) => format!("{n}th "),
-        (n, 1, _) => format!("{n}st "),
-        (n, 2, _) => format!("{n}nd "),
-        (n, 3, _) => format!("{n}rd "),
-        (n, ..) => format!("{n}th "),
-    };
-    let name = |body| super::sight::name(scenario, body);
-    let distance = event.distance.map(|distance| format!(" {distance}")).unwrap_or_default();
-    let other = event.other.map(|other| format!(" {} {}", event.kind.joiner(), name(other)));
-    format!("{ordinal}{}{distance} of {}{}", event.kind.name(), name(event.body), other.unwrap_or_default())
+    event.said(|body| super::sight::name(scenario, body))
 }

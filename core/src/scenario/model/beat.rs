@@ -141,6 +141,24 @@ pub struct EventRef {
     pub distance: Option<Length>,
 }
 
+impl EventRef {
+    /// "2nd periapsis of Fenn", as files say it; `name` gives the names of bodies.
+    pub fn said<'a>(&self, name: impl Fn(BodyId) -> &'a str) -> String {
+        let ordinal = match (self.nth, self.nth % 10, self.nth % 100) {
+            (1, ..) => String::new(),
+            (n, _, 11..=13) => format!("{n}th "),
+            (n, 1, _) => format!("{n}st "),
+            (n, 2, _) => format!("{n}nd "),
+            (n, 3, _) => format!("{n}rd "),
+            (n, ..) => format!("{n}th "),
+        };
+        let distance = self.distance.map(|distance| format!(" {distance}")).unwrap_or_default();
+        let other = self.other.map(|other| format!(" {} {}", self.kind.joiner(), name(other)));
+        let kind = self.kind.name();
+        format!("{ordinal}{kind}{distance} of {}{}", name(self.body), other.unwrap_or_default())
+    }
+}
+
 /// The kinds of event.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
 pub enum EventKind {

@@ -193,6 +193,36 @@ mod tests {
     }
 
     #[test]
+    fn what_is_said_of_an_event_is_read_as_that_event() {
+        let names = names();
+        let said = |event: &EventRef| event.said(|body| names.bodies[body.0].as_str());
+        for (nth, ordinal) in [
+            (1, ""),
+            (2, "2nd "),
+            (3, "3rd "),
+            (4, "4th "),
+            (11, "11th "),
+            (12, "12th "),
+            (13, "13th "),
+            (21, "21st "),
+            (111, "111th "),
+            (222, "222nd "),
+            (1003, "1003rd "),
+        ] {
+            let periapsis =
+                EventRef { kind: EventKind::Periapsis, body: BodyId(0), other: None, nth, distance: None };
+            assert_eq!(said(&periapsis), format!("{ordinal}periapsis of Fenn"));
+            assert_eq!(event(&said(&periapsis), &names), Ok(periapsis));
+            for kind in EventKind::ALL {
+                let distance =
+                    (kind == EventKind::Distance).then(|| Length::parse("1.5 au").expect("a length"));
+                let other = EventRef { kind, body: BodyId(4), other: Some(BodyId(2)), nth, distance };
+                assert_eq!(event(&said(&other), &names), Ok(other), "{}", said(&other));
+            }
+        }
+    }
+
+    #[test]
     fn what_is_no_event_is_answered_with_what_would_be() {
         for (text, wrong, remedy) in [
             ("", "\"\" is no event", "periapsis, apoapsis"),
