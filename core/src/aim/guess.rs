@@ -9,7 +9,7 @@ use crate::conic::lambert;
 use crate::ephemeris::{Ephemeris, Propagation};
 use crate::initial::InitialState;
 use crate::math::float::{asin, atan2, sin_cos};
-use crate::resolve::resolve;
+use crate::resolve::resolve_among;
 use crate::scenario::{BodyId, EventKind, Form, Free, Outcome, Want, Wanted};
 use std::f64::consts::TAU;
 
@@ -22,7 +22,8 @@ const STEPS: usize = 100_000;
 /// Points of the unit cube from which to start.
 pub(super) fn points(trial: &Trial<'_>) -> Vec<Vec<f64>> {
     let scenario = trial.document.scenario().scenario;
-    let Some((scenario, initial)) = scenario.and_then(|s| resolve(&s).ok().map(|initial| (s, initial)))
+    let Some((scenario, initial)) =
+        scenario.and_then(|s| resolve_among(&s, trial.solar).ok().map(|initial| (s, initial)))
     else {
         return Vec::new();
     };

@@ -35,6 +35,7 @@ mod wording;
 
 pub use trial::Miss;
 
+use crate::resolve::Solar;
 use crate::scenario::edit::Document;
 use crate::scenario::{Aim, ChangeTime, Place, Problem};
 use fit::{Fit, cost};
@@ -131,6 +132,8 @@ pub fn solve(text: &str) -> Result<Solved, AimFailure> {
 pub struct Aiming {
     document: Document,
     aims: Vec<Aim>,
+    /// The solar system at the scenario's date, which no free number changes.
+    solar: Solar,
     /// Which aim is being worked at.
     current: usize,
     /// The size of its scene, m.
@@ -178,10 +181,11 @@ impl Aiming {
             let remedy = "state the change's time while aiming";
             return Err(AimFailure::Problems(vec![Problem::error(change.place, wrong, remedy)]));
         }
+        let solar = Solar::of(&scenario);
         let aims = scenario.aims;
-        let scene_m = aims.first().map_or(0.0, |aim| scene_m(&document, aim));
+        let scene_m = aims.first().map_or(0.0, |aim| scene_m(&document, aim, &solar));
         let stage = Stage::start();
-        Ok(Self { document, aims, current: 0, scene_m, stage, misses: Vec::new(), trials: 0 })
+        Ok(Self { document, aims, solar, current: 0, scene_m, stage, misses: Vec::new(), trials: 0 })
     }
 
     /// Works on for a moment: one sample, or one step of refining.
@@ -190,7 +194,7 @@ impl Aiming {
     /// When an aim can't be met.
     pub fn work(&mut self) -> Result<Progress, AimFailure> {
         if let Some(aim) = self.aims.get(self.current) {
-            let trial = Trial { document: &self.document, aim, scene_m: self.scene_m };
+            let trial = Trial { document: &self.document, aim, solar: &self.solar, scene_m: self.scene_m };
             let mut trials = 0;
             let met = self.stage.work(&trial, &mut trials)?;
             let written = met.map(|point| settle(&trial, &point, &mut trials));
@@ -199,7 +203,8 @@ impl Aiming {
                 self.document = document;
                 self.misses.extend(misses);
                 self.current += 1;
-                self.scene_m = self.aims.get(self.current).map_or(0.0, |aim| scene_m(&self.document, aim));
+                self.scene_m =
+                    self.aims.get(self.current).map_or(0.0, |aim| scene_m(&self.document, aim, &self.solar));
                 self.stage = Stage::start();
             }
         }

@@ -220,7 +220,8 @@ fn lamberts_path_is_a_guess_that_all_but_meets_a_moving_body() {
     );
     let document = Document::parse(&text).unwrap();
     let aims = parse(&text).scenario.unwrap().aims;
-    let trial = Trial { document: &document, aim: &aims[0], scene_m: 4e8 };
+    let solar = Solar::of(&parse(&text).scenario.unwrap());
+    let trial = Trial { document: &document, aim: &aims[0], solar: &solar, scene_m: 4e8 };
     let guesses = guess::points(&trial);
     let nearest_m = guesses
         .iter()

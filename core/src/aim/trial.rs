@@ -5,7 +5,7 @@ use crate::ephemeris::osculating::osculating;
 use crate::ephemeris::{Ephemeris, Propagation, State, events};
 use crate::initial::InitialState;
 use crate::math::float::{asin, atan2};
-use crate::resolve::resolve;
+use crate::resolve::{Solar, resolve_among};
 use crate::scenario::edit::{Document, EditError, Path, Root, Value};
 use crate::scenario::{
     Aim, BodyId, EventKind, EventRef, Free, Measure, Outcome, Problem, Severity, Want, Wanted,
@@ -59,6 +59,8 @@ impl Miss {
 pub(super) struct Trial<'a> {
     pub(super) document: &'a Document,
     pub(super) aim: &'a Aim,
+    /// The solar system at the scenario's date.
+    pub(super) solar: &'a Solar,
     /// The size of the scene, m: by it distances are compared with times and angles.
     pub(super) scene_m: f64,
 }
@@ -101,7 +103,7 @@ impl Trial<'_> {
         let Some(scenario) = parsed.scenario else {
             return Err(first_error(&parsed.problems));
         };
-        let initial = resolve(&scenario).map_err(|problems| first_error(&problems))?;
+        let initial = resolve_among(&scenario, self.solar).map_err(|problems| first_error(&problems))?;
         let until_s = self.aim.want.iter().map(horizon_s).fold(1.0, f64::max);
         let mut propagation = Propagation::new(&initial);
         if !propagation.advance(until_s, STEPS).map_err(|stopped| stopped.to_string())? {
@@ -117,9 +119,9 @@ impl Trial<'_> {
 }
 
 /// How far the bodies of an aim are from their primaries at the start, m: the size of the scene.
-pub(super) fn scene_m(document: &Document, aim: &Aim) -> f64 {
+pub(super) fn scene_m(document: &Document, aim: &Aim, solar: &Solar) -> f64 {
     const OTHERWISE_M: f64 = 1e9;
-    let initial = document.scenario().scenario.and_then(|scenario| resolve(&scenario).ok());
+    let initial = document.scenario().scenario.and_then(|scenario| resolve_among(&scenario, solar).ok());
     let Some(initial) = initial else { return OTHERWISE_M };
     let far = aim.want.iter().filter_map(|want| {
         let body = match want.of {

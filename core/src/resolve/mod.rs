@@ -38,10 +38,32 @@ use shape::Fault;
 /// # Errors
 /// Every problem of the bodies at once, each at the place of its `[[body]]`.
 pub fn resolve(scenario: &Scenario) -> Result<InitialState, Vec<Problem>> {
+    resolve_among(scenario, &Solar::of(scenario))
+}
+
+/// The solar system at the date of a scenario, where one of its bodies is `real`. It is integrated to that date, which takes longer
+/// than all the rest of resolving; so where one scenario is resolved many times, with other numbers but the same date, it is made
+/// once, for [`resolve_among`].
+#[derive(Debug, Clone, PartialEq)]
+pub struct Solar(Option<Result<[State; 11], RealError>>);
+
+impl Solar {
+    /// At the date of a scenario.
+    pub fn of(scenario: &Scenario) -> Self {
+        let any_real = scenario.bodies.iter().any(|body| real_of(body).is_some());
+        Self(scenario.date.filter(|_| any_real).map(real::states))
+    }
+}
+
+/// As [`resolve`], with the solar system known.
+///
+/// # Errors
+/// As [`resolve`].
+pub fn resolve_among(scenario: &Scenario, solar: &Solar) -> Result<InitialState, Vec<Problem>> {
     let bodies = &scenario.bodies;
     let mut problems = Vec::new();
-    let solar = solar_states(scenario, &mut problems);
-    let states = place_all(bodies, solar.as_ref(), &mut problems);
+    let solar = solar_states(scenario, solar, &mut problems);
+    let states = place_all(bodies, solar, &mut problems);
     let mut initial: Vec<InitialBody> = bodies
         .iter()
         .zip(&states)
@@ -56,7 +78,7 @@ pub fn resolve(scenario: &Scenario) -> Result<InitialState, Vec<Problem>> {
         })
         .collect();
     let mut reals: Vec<Option<RealBody>> = bodies.iter().map(real_of).collect();
-    if let Some(solar) = &solar
+    if let Some(solar) = solar
         && scenario.physics.companions != Some(false)
     {
         for (&body, state) in real::ALL.iter().zip(solar) {
@@ -142,9 +164,13 @@ fn real_of(body: &Body) -> Option<RealBody> {
 }
 
 /// The whole solar system at the scenario's date, where a body is `real`.
-fn solar_states(scenario: &Scenario, problems: &mut Vec<Problem>) -> Option<[State; 11]> {
+fn solar_states<'a>(
+    scenario: &Scenario,
+    solar: &'a Solar,
+    problems: &mut Vec<Problem>,
+) -> Option<&'a [State; 11]> {
     let first = scenario.bodies.iter().find(|body| real_of(body).is_some())?;
-    let Some(date) = scenario.date else {
+    let Some(solar) = &solar.0 else {
         problems.push(Problem::error(
             first.place,
             format!("{} is real, and the scenario has no date", first.name),
@@ -152,7 +178,7 @@ fn solar_states(scenario: &Scenario, problems: &mut Vec<Problem>) -> Option<[Sta
         ));
         return None;
     };
-    match real::states(date) {
+    match solar {
         Ok(states) => Some(states),
         Err(error) => {
             let remedy = match error {
