@@ -42,8 +42,17 @@ pub(super) struct Comfort {
     clock: Player,
     composer: Composer,
     meter: Option<Meter>,
-    /// Whether the plan has been run to its end, and which change of beat is hammered on next.
-    hammered: Option<usize>,
+    /// Once the plan has been run to its end: the change of beat that is hammered on.
+    hammered: Option<Hammer>,
+}
+
+/// To and fro between a beat and the one before it, as fast as keys can be hit.
+#[derive(Debug)]
+struct Hammer {
+    beat: usize,
+    clock: Clock,
+    meter: Meter,
+    frame: u32,
 }
 
 /// The camera's own motion at an instant.
@@ -61,16 +70,20 @@ impl Comfort {
 
     /// Goes on by so many frames. True at the end.
     pub(super) fn work(&mut self, show: &Show, reports: &mut [BeatReport], frames: usize) -> bool {
-        if let Some(beat) = &mut self.hammered {
-            let Some(report) = reports.get_mut(*beat) else { return true };
-            let flashing = hammer(show, &mut self.composer, *beat);
-            report.flashing = report.flashing.max(flashing);
-            *beat += 1;
+        if let Some(hammer) = &mut self.hammered {
+            let Some(report) = reports.get_mut(hammer.beat) else { return true };
+            for _ in 0..frames {
+                if hammer.frame >= HAMMERED_FRAMES {
+                    *hammer = Hammer::new(show, hammer.beat + 1);
+                    return false;
+                }
+                report.flashing = report.flashing.max(hammer.hit(show, &mut self.composer));
+            }
             return false;
         }
         for _ in 0..frames {
             if !self.clock.step(&show.plan) {
-                self.hammered = Some(1);
+                self.hammered = Some(Hammer::new(show, 1));
                 return false;
             }
             self.frame(show, reports);
@@ -80,10 +93,10 @@ impl Comfort {
 
     /// Share of the work, 0 to 1.
     pub(super) fn fraction(&self, show: &Show) -> f64 {
-        match self.hammered {
-            Some(beat) => {
+        match &self.hammered {
+            Some(Hammer { beat, .. }) => {
                 let count = |n: usize| u32::try_from(n).map_or(0.0, f64::from);
-                0.5 + 0.5 * count(beat) / count(show.plan.beats.len().max(1))
+                0.5 + 0.5 * count(*beat) / count(show.plan.beats.len().max(*beat))
             }
             None => (0.5 * self.clock.clock.show_s() / show.plan.lasts_s().max(1.0)).min(0.5),
         }
@@ -105,24 +118,28 @@ impl Comfort {
     }
 }
 
-/// To and fro between a beat and the one before it, as fast as keys can be hit: the worst share that flashes.
-fn hammer(show: &Show, composer: &mut Composer, beat: usize) -> f64 {
-    let mut clock = Clock::new(&show.plan);
-    clock.act(&show.plan, Action::Next);
-    clock.act(&show.plan, Action::Jump(beat - 1));
-    clock.advance(&show.plan, 2.0 * CUT_S);
-    let mut meter = Meter::new();
-    let mut worst = 0.0f64;
-    for frame in 0..HAMMERED_FRAMES {
-        if frame % HAMMER_FRAMES == 0 {
-            let on = clock.beat() < beat;
-            clock.act(&show.plan, if on { Action::Next } else { Action::Back });
-        }
-        clock.advance(&show.plan, FRAME_S);
-        let list = composer.compose(show, &clock.moment(&show.plan));
-        worst = worst.max(meter.look(&list, f64::from(frame) * FRAME_S));
+impl Hammer {
+    /// On the change into a beat, which is not the first.
+    fn new(show: &Show, beat: usize) -> Self {
+        let mut clock = Clock::new(&show.plan);
+        clock.act(&show.plan, Action::Next);
+        clock.act(&show.plan, Action::Jump(beat - 1));
+        clock.advance(&show.plan, 2.0 * CUT_S);
+        Self { beat, clock, meter: Meter::new(), frame: 0 }
     }
-    worst
+
+    /// A frame on: the share that has flashed by then.
+    fn hit(&mut self, show: &Show, composer: &mut Composer) -> f64 {
+        if self.frame.is_multiple_of(HAMMER_FRAMES) {
+            let on = self.clock.beat() < self.beat;
+            self.clock.act(&show.plan, if on { Action::Next } else { Action::Back });
+        }
+        self.clock.advance(&show.plan, FRAME_S);
+        let list = composer.compose(show, &self.clock.moment(&show.plan));
+        let flashing = self.meter.look(&list, f64::from(self.frame) * FRAME_S);
+        self.frame += 1;
+        flashing
+    }
 }
 
 /// The camera's motion within a frame, at one model time: what bodies do is not its own.

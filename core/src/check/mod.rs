@@ -34,27 +34,36 @@ mod finding;
 mod flash;
 mod motion;
 mod near;
+#[cfg(test)]
+mod number_tests;
 mod numbers;
 mod paint;
+mod passes;
 mod reach;
 mod reading;
 mod report;
+mod sample;
 mod second;
 mod sight;
+mod stated;
 #[cfg(test)]
 mod tests;
+mod trial;
 
 pub use finding::{Finding, Topic, Weight};
-pub use reach::said;
-pub use report::{BeatReport, CueReport, Encounter, Lever, Report, Shift};
+pub use report::{
+    BeatReport, CueReport, Encounter, LeftOut, Lever, Mover, Number, Owner, Report, Shift, Why,
+};
 
 use crate::ephemeris::SHOW_BYTES;
 use crate::scenario::Problem;
 use crate::show::{Rehearsal, Show};
 use comfort::Comfort;
 use numbers::Numbers;
+use passes::Passes;
 use reading::Reading;
 use second::Second;
+use trial::TRACER_STEPS;
 
 /// A check on its way, in small steps, so that whoever drives it can report progress and stop.
 #[derive(Debug)]
@@ -75,8 +84,9 @@ struct Checking {
 /// What is worked at, once the show is there.
 #[derive(Debug)]
 enum Todo {
-    Second(Second),
-    Numbers(Numbers),
+    Second(Box<Second>),
+    Passes(Box<Passes>),
+    Numbers(Box<Numbers>),
     Reading(Box<Reading>),
     Comfort(Box<Comfort>),
     Done,
@@ -152,6 +162,7 @@ impl Proof {
 
 /// Shares of the whole work at which its parts begin.
 const SECOND_FROM: f64 = 0.1;
+const PASSES_FROM: f64 = 0.15;
 const NUMBERS_FROM: f64 = 0.2;
 const READING_FROM: f64 = 0.4;
 const COMFORT_FROM: f64 = 0.6;
@@ -162,7 +173,7 @@ const STEPS_A_SMALL_PICTURE: usize = 50;
 
 impl Checking {
     fn new(show: Show, notes: Vec<Problem>) -> Self {
-        let todo = Todo::Second(Second::new(&show));
+        let todo = Todo::Second(Box::new(Second::new(&show)));
         let report = Report {
             beats: vec![BeatReport::default(); show.plan.beats.len()],
             bytes: show.ephemeris.bytes() + show.swarms.iter().map(|path| path.bytes()).sum::<usize>(),
@@ -176,24 +187,27 @@ impl Checking {
         let Proven { show, report, .. } = &mut self.proven;
         match &mut self.todo {
             Todo::Second(second) => {
-                if second.work(max_steps) {
-                    second.compare(show, &mut report.beats, &mut report.findings);
-                    reach::check(show, second.ephemeris(), &mut report.beats, &mut report.findings);
-                    motion::check(show, &mut report.beats, &mut report.findings);
-                    report.encounters = near::encounters(show);
-                    self.todo = Todo::Numbers(Numbers::new(text, show));
+                if second.work(max_steps)
+                    && let Todo::Second(second) = std::mem::replace(&mut self.todo, Todo::Done)
+                {
+                    self.todo = Todo::Passes(Box::new(Passes::new(show, *second)));
+                }
+            }
+            Todo::Passes(passes) => {
+                if passes.work(show, report, max_steps) {
+                    self.todo = Todo::Numbers(Box::new(Numbers::new(text, show)));
                 }
             }
             Todo::Numbers(numbers) => {
                 if numbers.work(show, &mut report.encounters, max_steps) {
-                    [report.numbers_stated, report.numbers_tried] = numbers.counts();
-                    report.levers = numbers.rank(show, &mut report.beats, &mut report.findings);
+                    numbers.finish(show, report);
                     numbers::close_calls(show, &report.encounters, &mut report.findings);
                     self.todo = Todo::Reading(Box::new(Reading::new(show)));
                 }
             }
             Todo::Reading(reading) => {
-                if reading.work(show, report, (max_steps / STEPS_A_PICTURE).max(1)) {
+                let pictures = (max_steps / STEPS_A_PICTURE).max(1);
+                if reading.work(show, report, pictures, max_steps.saturating_mul(TRACER_STEPS)) {
                     reading::memory(show, report);
                     self.todo = Todo::Comfort(Box::new(Comfort::new(show)));
                 }
@@ -213,7 +227,8 @@ impl Checking {
     fn progress(&self) -> Progress {
         let show = &self.proven.show;
         let (from, to, within) = match &self.todo {
-            Todo::Second(second) => (SECOND_FROM, NUMBERS_FROM, second.fraction(show)),
+            Todo::Second(second) => (SECOND_FROM, PASSES_FROM, second.fraction(show)),
+            Todo::Passes(passes) => (PASSES_FROM, NUMBERS_FROM, passes.fraction(show)),
             Todo::Numbers(numbers) => (NUMBERS_FROM, READING_FROM, numbers.fraction()),
             Todo::Reading(reading) => (READING_FROM, COMFORT_FROM, reading.fraction(show)),
             Todo::Comfort(comfort) => (COMFORT_FROM, 1.0, comfort.fraction(show)),

@@ -2,10 +2,9 @@
 
 use super::finding::{Finding, Topic, Weight};
 use super::report::BeatReport;
-use super::sight::{FRAME_S, Seen, beats, called, name};
+use super::sight::{FRAME_S, Seen, called};
 use crate::ephemeris::Outcome;
 use crate::scenario::{BodyId, Mark};
-use crate::show::Show;
 use std::f64::consts::TAU;
 
 /// Pieces of a beat between the instants looked at.
@@ -34,65 +33,61 @@ struct Seenness {
     jump: f64,
 }
 
-/// Looks at every beat.
-pub(super) fn check(show: &Show, reports: &mut [BeatReport], findings: &mut Vec<Finding>) {
-    for (seen, report) in beats(show).iter().zip(reports) {
-        findings.extend(lost_centre(seen));
-        let marked = marked(&seen.beat.marks);
-        let moving = moving(&seen.beat.marks);
-        for body in (0..show.scenario.bodies.len()).map(BodyId) {
-            let one = look(seen, body);
-            report.turns_a_frame = report.turns_a_frame.max(one.turn);
-            let mut add = |wrong: String, remedy: &str| {
-                findings.push(Finding {
-                    weight: Weight::Warning,
-                    topic: Topic::Motion,
-                    place: seen.beat.place,
-                    wrong,
-                    remedy: remedy.to_owned(),
-                });
-            };
-            let (called, name) = (called(seen.index), name(&show.scenario, body));
-            if one.turn > BLURRED_TURN {
-                add(
-                    format!(
-                        "{name} goes round {:.0} times a second in {called}: nobody sees which way",
-                        one.turn / FRAME_S
-                    ),
-                    "slow the pace, or take it off the stage with `cast`",
-                );
-            } else if one.jump > JUMP {
-                add(
-                    format!(
-                        "{name} jumps by {:.0} % of the picture's height from frame to frame in {called}",
-                        100.0 * one.jump
-                    ),
-                    "slow the pace, or show a wider view",
-                );
-            }
-            if !marked.contains(&body) || one.on_stage == 0 {
-                continue;
-            }
-            let share = f64::from(one.in_picture) / f64::from(one.on_stage);
-            if share < MISSED {
-                add(
-                    format!(
-                        "{name} has marks but is in the picture for {:.0} % of {called} only",
-                        100.0 * share
-                    ),
-                    "widen or move the view, or drop its marks",
-                );
-            }
-            let rest = show.ephemeris.at_rest(body, seen.planned.from_s);
-            if let Some(rest) = rest.filter(|_| moving.contains(&body)) {
-                add(
-                    format!(
-                        "{name} is to move in {called}, but lies on {} before it begins",
-                        super::sight::name(&show.scenario, rest.onto)
-                    ),
-                    "start the beat sooner, or drop the marks that need it to move",
-                );
-            }
+/// Looks at a beat.
+pub(super) fn check(seen: &Seen<'_>, report: &mut BeatReport, findings: &mut Vec<Finding>) {
+    let show = seen.show;
+    findings.extend(lost_centre(seen));
+    let marked = marked(&seen.beat.marks);
+    let moving = moving(&seen.beat.marks);
+    for body in (0..show.scenario.bodies.len()).map(BodyId) {
+        let one = look(seen, body);
+        report.turns_a_frame = report.turns_a_frame.max(one.turn);
+        let mut add = |wrong: String, remedy: &str| {
+            findings.push(Finding {
+                weight: Weight::Warning,
+                topic: Topic::Motion,
+                place: seen.beat.place,
+                wrong,
+                remedy: remedy.to_owned(),
+            });
+        };
+        let (called, name) = (called(seen.index), show.initial.name(body));
+        if one.turn > BLURRED_TURN {
+            add(
+                format!(
+                    "{name} goes round {:.0} times a second in {called}: nobody sees which way",
+                    one.turn / FRAME_S
+                ),
+                "slow the pace, or take it off the stage with `cast`",
+            );
+        } else if one.jump > JUMP {
+            add(
+                format!(
+                    "{name} jumps by {:.0} % of the picture's height from frame to frame in {called}",
+                    100.0 * one.jump
+                ),
+                "slow the pace, or show a wider view",
+            );
+        }
+        if !marked.contains(&body) || one.on_stage == 0 {
+            continue;
+        }
+        let share = f64::from(one.in_picture) / f64::from(one.on_stage);
+        if share < MISSED {
+            add(
+                format!("{name} has marks but is in the picture for {:.0} % of {called} only", 100.0 * share),
+                "widen or move the view, or drop its marks",
+            );
+        }
+        let rest = show.ephemeris.at_rest(body, seen.planned.from_s);
+        if let Some(rest) = rest.filter(|_| moving.contains(&body)) {
+            add(
+                format!(
+                    "{name} is to move in {called}, but lies on {} before it begins",
+                    show.initial.name(rest.onto)
+                ),
+                "start the beat sooner, or drop the marks that need it to move",
+            );
         }
     }
 }
@@ -108,8 +103,8 @@ fn lost_centre(seen: &Seen<'_>) -> Option<Finding> {
         wrong: format!(
             "the view of {} follows {}, which is part of {} by then",
             called(seen.index),
-            name(&seen.show.scenario, centre),
-            name(&seen.show.scenario, contact.onto)
+            seen.show.initial.name(centre),
+            seen.show.initial.name(contact.onto)
         ),
         remedy: "name another centre".to_owned(),
     })

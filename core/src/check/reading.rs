@@ -3,7 +3,7 @@
 use super::finding::{Finding, Topic, Weight};
 use super::paint::paint_ms;
 use super::report::{BeatReport, Report};
-use super::sight::{self, Seen, called, name};
+use super::sight::{self, Seen, called};
 use crate::picture::type_metrics::CAP_HEIGHT;
 use crate::picture::{Composer, DisplayList, Options, Shape, Tag};
 use crate::scenario::BodyId;
@@ -52,13 +52,22 @@ impl Reading {
         Self { composer, beat: 0, piece: 0, tally: Tally::default() }
     }
 
-    /// Looks at so many pictures. True once all have been looked at.
-    pub(super) fn work(&mut self, show: &Show, report: &mut Report, pictures: usize) -> bool {
+    /// Looks at so many pictures, swarms being brought to each by so many steps of tracers at a time. True once all have been looked at.
+    pub(super) fn work(
+        &mut self,
+        show: &Show,
+        report: &mut Report,
+        pictures: usize,
+        tracer_steps: usize,
+    ) -> bool {
         let beats = sight::beats(show);
         for _ in 0..pictures {
             let Some(seen) = beats.get(self.beat) else { return true };
             let Some(of_beat) = report.beats.get_mut(self.beat) else { return true };
-            let moment = moment(seen, seen.planned.lasts_s * f64::from(self.piece) / f64::from(PIECES));
+            let moment = moment(seen, seen.at(self.piece, PIECES));
+            if !self.composer.arrive(show, &moment, tracer_steps) {
+                return false;
+            }
             let list = self.composer.compose(show, &moment);
             of_beat.frame_ms = of_beat.frame_ms.max(paint_ms(&list));
             smallest(&list, of_beat);
@@ -148,7 +157,7 @@ impl Tally {
                     place: seen.beat.place,
                     wrong: format!(
                         "the name of {} has no room in {:.0} % of {}",
-                        name(&seen.show.scenario, BodyId(body)),
+                        seen.show.initial.name(BodyId(body)),
                         100.0 * missing,
                         called(seen.index)
                     ),

@@ -1,7 +1,9 @@
 //! What a check measured: numbers for every beat and for the whole show.
 
 use super::finding::{Finding, Weight};
-use crate::scenario::{BodyId, EventRef};
+use crate::initial::InitialState;
+use crate::scenario::{BodyId, EventRef, Place, SwarmId};
+use crate::show::Show;
 
 /// All that was measured and found.
 #[derive(Debug, Clone, PartialEq, Default)]
@@ -12,10 +14,8 @@ pub struct Report {
     pub beats: Vec<BeatReport>,
     /// What one part in 1e9 of each stated number does, the worst first.
     pub levers: Vec<Lever>,
-    /// How many numbers the file states that could be tried.
-    pub numbers_stated: usize,
-    /// How many of them were tried.
-    pub numbers_tried: usize,
+    /// The numbers that bear on the motion and were not changed, in the order of the file.
+    pub left_out: Vec<LeftOut>,
     /// The nearest that bodies come to each other while they are shown, the nearest first.
     pub encounters: Vec<Encounter>,
     /// Memory that the show takes, bytes.
@@ -34,7 +34,7 @@ impl Report {
 /// What was measured of one beat. `None` and 0 where there is nothing to measure.
 #[derive(Debug, Clone, PartialEq, Default)]
 pub struct BeatReport {
-    /// How far off the worst body in the picture is drawn.
+    /// How far off the worst body in the picture is drawn in the second run.
     pub off: Option<Shift>,
     /// How far off the worst body on stage is, in the picture or not, m.
     pub off_m: f64,
@@ -60,11 +60,11 @@ pub struct BeatReport {
     pub flashing: f64,
 }
 
-/// How far a body is from where it should be.
+/// How far something is from where it should be.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Shift {
-    /// Which body.
-    pub body: BodyId,
+    /// Of what.
+    pub of: Mover,
     /// Show time into the beat, s.
     pub beat_s: f64,
     /// How far in the picture of the house, relative to the view's centre, px at 1080 px of height.
@@ -90,15 +90,106 @@ pub struct CueReport {
     pub again_frames: f64,
 }
 
-/// A stated number, and what a change by one part in 1e9 does.
+/// What moves in a picture.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Mover {
+    /// A body.
+    Body(BodyId),
+    /// One of the tracers of a swarm that were looked at.
+    Tracer(SwarmId),
+}
+
+impl Mover {
+    /// How people call it: "Fenn", "a tracer of Ring".
+    pub fn called(self, initial: &InitialState) -> String {
+        match self {
+            Self::Body(body) => initial.name(body).to_owned(),
+            Self::Tracer(_) => format!("a tracer of {}", self.name(initial)),
+        }
+    }
+
+    /// Name of the body or swarm.
+    pub fn name(self, initial: &InitialState) -> &str {
+        match self {
+            Self::Body(body) => initial.name(body),
+            Self::Tracer(swarm) => initial.swarms.get(swarm.0).map_or("", |swarm| swarm.name.as_str()),
+        }
+    }
+}
+
+/// Of what a number is stated.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Owner {
+    /// `[physics]`.
+    Physics,
+    /// A body.
+    Body(BodyId),
+    /// A swarm.
+    Swarm(SwarmId),
+    /// A change, by its place in the file's order.
+    Change(usize),
+    /// A beat, by its place in the file's order: changes wait for it, or for one after it.
+    Beat(usize),
+}
+
+/// A number that bears on the motion.
 #[derive(Debug, Clone, PartialEq)]
-pub struct Lever {
-    /// Of which body.
-    pub body: BodyId,
-    /// Which number: "mass", "orbit.periapsis".
+pub struct Number {
+    /// Of what.
+    pub owner: Owner,
+    /// Which number of it: "mass", "orbit.periapsis", "place.velocity.x".
     pub quantity: String,
     /// What stands in the file.
     pub stated: String,
+    /// Where it stands in the text.
+    pub place: Place,
+}
+
+impl Number {
+    /// Of what it is, as people call it: "Fenn", "change 2", "beat 3", "[physics]".
+    pub fn of(&self, show: &Show) -> String {
+        match self.owner {
+            Owner::Physics => "[physics]".to_owned(),
+            Owner::Body(body) => show.initial.name(body).to_owned(),
+            Owner::Swarm(swarm) => Mover::Tracer(swarm).name(&show.initial).to_owned(),
+            Owner::Change(change) => format!("change {}", change + 1),
+            Owner::Beat(beat) => super::sight::called(beat),
+        }
+    }
+
+    /// How people call it: "orbit.periapsis of Fenn".
+    pub fn called(&self, show: &Show) -> String {
+        format!("{} of {}", self.quantity, self.of(show))
+    }
+}
+
+/// A number that was not changed.
+#[derive(Debug, Clone, PartialEq)]
+pub struct LeftOut {
+    /// Which one.
+    pub number: Number,
+    /// Why.
+    pub why: Why,
+}
+
+/// Why a number was not changed.
+#[derive(Debug, Clone, PartialEq)]
+pub enum Why {
+    /// It is 0, of which every part is 0.
+    Zero,
+    /// The file takes no number that is so near to it: whole numbers.
+    Alone,
+    /// Those before it took the time that there is.
+    NoTime,
+    /// With it changed the show can't be given: what is wrong then.
+    Breaks(String),
+}
+
+/// A stated number, and what a change by one part in 1e9 does.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Lever {
+    /// The number.
+    pub number: Number,
     /// How far the picture of each beat moves, at the worst instant looked at; `None` where nothing is in it.
     pub shifts: Vec<Option<Shift>>,
 }

@@ -6,10 +6,8 @@
 
 use super::finding::{Finding, Topic, Weight};
 use super::report::{BeatReport, Shift};
-use super::sight::{self, Seen, called, name};
-use crate::Vector3;
+use super::sight::{self, Seen, called, farther};
 use crate::ephemeris::{Ephemeris, Propagation, SHOW_BYTES};
-use crate::scenario::BodyId;
 use crate::show::Show;
 
 /// Length of its steps, in those of the first.
@@ -75,46 +73,34 @@ impl Second {
         self.propagation.ephemeris()
     }
 
-    /// Compares; what is measured goes to the beats.
-    pub(super) fn compare(&self, show: &Show, beats: &mut [BeatReport], findings: &mut Vec<Finding>) {
-        if let Some(stopped) = &self.stopped {
-            findings.push(Finding {
-                weight: Weight::Failure,
-                topic: Topic::Error,
-                place: show.scenario.beats.first().map_or_else(Default::default, |beat| beat.place),
-                wrong: format!("a second run in shorter steps ends early: {stopped}"),
-                remedy: "give bodies that meet a radius, so that they touch instead of falling into a point"
-                    .to_owned(),
-            });
-            return;
-        }
-        for (seen, report) in sight::beats(show).into_iter().zip(beats) {
-            (report.off, report.off_m) = worst(&seen, self.ephemeris());
-            findings.extend(report.off.and_then(|off| finding(&seen, off)));
-        }
+    /// The finding of a run that ended early.
+    pub(super) fn stopped(&self, show: &Show) -> Option<Finding> {
+        let stopped = self.stopped.as_ref()?;
+        Some(Finding {
+            weight: Weight::Failure,
+            topic: Topic::Error,
+            place: show.scenario.beats.first().map_or_else(Default::default, |beat| beat.place),
+            wrong: format!("a second run in shorter steps ends early: {stopped}"),
+            remedy: "give bodies that meet a radius, so that they touch instead of falling into a point"
+                .to_owned(),
+        })
+    }
+
+    /// Compares a beat.
+    pub(super) fn compare(&self, seen: &Seen<'_>, report: &mut BeatReport, findings: &mut Vec<Finding>) {
+        (report.off, report.off_m) = worst(seen, self.ephemeris());
+        findings.extend(report.off.and_then(|off| finding(seen, off)));
     }
 }
 
 /// The worst in the picture, and the worst of all in metres.
 fn worst(seen: &Seen<'_>, second: &Ephemeris) -> (Option<Shift>, f64) {
-    let show = seen.show;
-    let about = seen.beat.view.centre.about;
-    let at = |eph: &Ephemeris, body: BodyId, t_s| eph.state(body, t_s).map(|state| state.pos);
-    let (mut worst, mut most_m): (Option<Shift>, f64) = (None, 0.0);
-    for beat_s in seen.instants(PIECES) {
-        let t_s = seen.model_s(beat_s);
-        let camera = seen.camera(t_s);
-        let centre = |eph| about.map_or(Some(Vector3::zeros()), |body| at(eph, body, t_s));
-        let Some(centres) = centre(&show.ephemeris).zip(centre(second)) else { continue };
-        for body in seen.bodies(t_s) {
-            let Some((here, there)) = at(&show.ephemeris, body, t_s).zip(at(second, body, t_s)) else {
-                continue;
-            };
-            let (px, m) = seen.apart(&camera, [here, there], centres.into());
-            most_m = most_m.max(m);
-            let is_seen = seen.holds(&camera, here) || seen.holds(&camera, there);
-            if is_seen && worst.is_none_or(|worst| px > worst.px) {
-                worst = Some(Shift { body, beat_s, px, m });
+    let (mut worst, mut most_m) = (None, 0.0f64);
+    for both in seen.instants(PIECES).filter_map(|beat_s| seen.both(second, beat_s)) {
+        for (shift, is_seen) in both.bodies() {
+            most_m = most_m.max(shift.m);
+            if is_seen {
+                worst = farther(worst, shift);
             }
         }
     }
@@ -129,7 +115,7 @@ fn finding(seen: &Seen<'_>, off: Shift) -> Option<Finding> {
     } else {
         return None;
     };
-    let body = name(&seen.show.scenario, off.body);
+    let body = off.of.called(&seen.show.initial);
     Some(Finding {
         weight,
         topic: Topic::Error,

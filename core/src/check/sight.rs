@@ -1,11 +1,13 @@
 //! What the house sees of a beat: its window, its view, and what stands in the picture.
 
+use super::report::{Mover, Shift};
 use crate::Vector3;
+use crate::ephemeris::Ephemeris;
 use crate::picture::Screen;
 use crate::picture::frame::Frame;
 use crate::picture::scene::on_stage;
 use crate::picture::view::Camera;
-use crate::scenario::{Beat, BodyId, Scenario};
+use crate::scenario::{Beat, BodyId, SwarmId};
 use crate::show::{PlannedBeat, Show};
 
 /// The window that is judged: the house of a full-size projector.
@@ -55,9 +57,13 @@ impl Seen<'_> {
     }
 
     /// Show times into the beat, from its start to its end: `count` pieces.
-    pub(super) fn instants(&self, count: u32) -> impl Iterator<Item = f64> {
-        let lasts_s = self.planned.lasts_s;
-        (0..=count).map(move |i| lasts_s * f64::from(i) / f64::from(count))
+    pub(super) fn instants(&self, count: u32) -> impl Iterator<Item = f64> + '_ {
+        (0..=count).map(move |piece| self.at(piece, count))
+    }
+
+    /// Show time into the beat after so many of so many pieces, s.
+    pub(super) fn at(&self, piece: u32, of: u32) -> f64 {
+        self.planned.lasts_s * f64::from(piece) / f64::from(of)
     }
 
     /// The bodies on stage at a model time.
@@ -76,27 +82,65 @@ impl Seen<'_> {
         frame().whole().holds(camera.project(at))
     }
 
-    /// How far apart two places of a body are in a view whose centre is followed: in the picture, px, and in space, m.
-    pub(super) fn apart(
-        &self,
-        camera: &Camera,
-        [first, second]: [Vector3<f64>; 2],
-        centres: [Vector3<f64>; 2],
-    ) -> (f64, f64) {
-        let way = (second - centres[1]) - (first - centres[0]);
-        let [x, y] = camera.turn(way);
-        ((x * x + y * y).sqrt(), way.norm())
+    /// The swarms on stage.
+    pub(super) fn swarms(&self) -> impl Iterator<Item = SwarmId> {
+        let cast = self.beat.cast.as_ref();
+        let on_stage = move |swarm: &SwarmId| cast.is_none_or(|cast| cast.swarms.contains(swarm));
+        (0..self.show.initial.swarms.len()).map(SwarmId).filter(on_stage)
     }
+
+    /// The views of one instant of the beat in the show and in another run of it; `None` before anything is integrated.
+    pub(super) fn both<'b>(&'b self, other: &'b Ephemeris, beat_s: f64) -> Option<Both<'b>> {
+        let t_s = self.model_s(beat_s);
+        let centre = |eph: &Ephemeris| match self.beat.view.centre.about {
+            Some(about) => eph.state(about, t_s).map(|state| state.pos),
+            None => Some(Vector3::zeros()),
+        };
+        let centres = [centre(&self.show.ephemeris)?, centre(other)?];
+        Some(Both { seen: self, other, beat_s, t_s, camera: self.camera(t_s), centres })
+    }
+}
+
+/// One instant of a beat in the show and in another run.
+#[derive(Debug)]
+pub(super) struct Both<'a> {
+    seen: &'a Seen<'a>,
+    other: &'a Ephemeris,
+    beat_s: f64,
+    /// Model time, s.
+    pub(super) t_s: f64,
+    camera: Camera,
+    /// The view's centre, which is followed, m.
+    centres: [Vector3<f64>; 2],
+}
+
+impl Both<'_> {
+    /// How far apart both have what stands at these places, and whether it is in the picture of one of them.
+    pub(super) fn apart(&self, of: Mover, [first, second]: [Vector3<f64>; 2]) -> (Shift, bool) {
+        let way = (second - self.centres[1]) - (first - self.centres[0]);
+        let [x, y] = self.camera.turn(way);
+        let shift = Shift { of, beat_s: self.beat_s, px: (x * x + y * y).sqrt(), m: way.norm() };
+        (shift, self.seen.holds(&self.camera, first) || self.seen.holds(&self.camera, second))
+    }
+
+    /// The same for every body on stage.
+    pub(super) fn bodies(&self) -> impl Iterator<Item = (Shift, bool)> {
+        let at = |eph: &Ephemeris, body| eph.state(body, self.t_s).map(|state| state.pos);
+        self.seen.bodies(self.t_s).filter_map(move |body| {
+            let places = [at(&self.seen.show.ephemeris, body)?, at(self.other, body)?];
+            Some(self.apart(Mover::Body(body), places))
+        })
+    }
+}
+
+/// The farther one in the picture.
+pub(super) fn farther(worst: Option<Shift>, one: Shift) -> Option<Shift> {
+    Some(worst.filter(|worst| worst.px >= one.px).unwrap_or(one))
 }
 
 /// How people call a beat: "beat 4".
 pub(super) fn called(index: usize) -> String {
     format!("beat {}", index + 1)
-}
-
-/// A body's name.
-pub(super) fn name(scenario: &Scenario, body: BodyId) -> &str {
-    scenario.bodies.get(body.0).map_or("", |body| body.name.as_str())
 }
 
 /// The model time that the beats show: from, until, s; both sides of the start are counted in.

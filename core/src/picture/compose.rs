@@ -57,6 +57,12 @@ impl Composer {
         self.tracers.work_at_most(tracer_steps);
     }
 
+    /// Brings the swarms that are seen at a moment to it ahead of its picture, by about so many steps of tracers. True once all are there.
+    pub fn arrive(&mut self, show: &Show, moment: &Moment, tracer_steps: usize) -> bool {
+        let beat = show.scenario.beats.get(moment.beat);
+        beat.is_none_or(|beat| self.tracers.arrive(show, beat, moment.model_s, tracer_steps))
+    }
+
     /// Decides what a beat entered so will need, so that its first frame costs no more than the others.
     pub fn prepare(&mut self, show: &Show, moment: &Moment) {
         self.layout(show, LayoutKey::of(moment));

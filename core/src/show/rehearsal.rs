@@ -5,7 +5,7 @@ use super::plan::Plan;
 use super::planner::{self, Limits, Need};
 use crate::ephemeris::{Ephemeris, Propagation, SHOW_BYTES};
 use crate::initial::InitialState;
-use crate::resolve;
+use crate::resolve::{self, Solar};
 use crate::scenario::{self, ChangeTime, Place, Problem, Scenario};
 use crate::swarm::{SNAPSHOT_BYTES, SwarmPath, SwarmRun};
 
@@ -62,9 +62,24 @@ impl Rehearsal {
     /// # Errors
     /// Every problem of the text, or every problem of its initial state.
     pub fn start(text: &str) -> Result<Self, Vec<Problem>> {
+        Self::start_by(text, resolve::resolve)
+    }
+
+    /// As [`Rehearsal::start`], with the solar system at the scenario's date known.
+    ///
+    /// # Errors
+    /// As [`Rehearsal::start`].
+    pub fn start_among(text: &str, solar: &Solar) -> Result<Self, Vec<Problem>> {
+        Self::start_by(text, |scenario| resolve::resolve_among(scenario, solar))
+    }
+
+    fn start_by(
+        text: &str,
+        resolve: impl FnOnce(&Scenario) -> Result<InitialState, Vec<Problem>>,
+    ) -> Result<Self, Vec<Problem>> {
         let parsed = scenario::parse(text);
         let Some(scenario) = parsed.scenario else { return Err(parsed.problems) };
-        let initial = resolve::resolve(&scenario)?;
+        let initial = resolve(&scenario)?;
         let propagation = propagation(&initial);
         Ok(Self {
             found_s: vec![None; scenario.changes.len()],
@@ -272,10 +287,24 @@ impl Rehearsal {
     /// As [`Rehearsal::start`] and [`Rehearsal::work`].
     pub fn settled(text: &str) -> Result<(Scenario, InitialState), Vec<Problem>> {
         let mut rehearsal = Self::start(text)?;
-        while rehearsal.open_change().is_some() {
-            rehearsal.work(usize::MAX)?;
-        }
+        while !rehearsal.settle(usize::MAX)? {}
         Ok((rehearsal.scenario, rehearsal.initial))
+    }
+
+    /// Works on until the times of all changes are found, and no farther, for at most so many steps of the integrator. True once they are.
+    ///
+    /// # Errors
+    /// As [`Rehearsal::work`].
+    pub fn settle(&mut self, max_steps: usize) -> Result<bool, Vec<Problem>> {
+        if self.open_change().is_some() {
+            self.step(max_steps)?;
+        }
+        Ok(self.open_change().is_none())
+    }
+
+    /// Where everything starts, with the times of changes that were found, and what has been integrated from there, to go on from.
+    pub fn into_motion(self) -> (InitialState, Propagation) {
+        (self.initial, self.propagation)
     }
 
     /// The show, once it is ready.

@@ -23,7 +23,7 @@ const STRIP: u32 = 32;
 
 /// Steps that a tracer takes in a stretch, in the mean. Going back to a start costs that many; finding the first nodes of a start costs the
 /// work of two hundred.
-const STEPS: f64 = 2048.0;
+pub(super) const STEPS: f64 = 2048.0;
 
 /// How often a stretch is halved at least to give a step, that of tracers far outside included.
 const FEWEST_HALVINGS: i32 = 5;
@@ -32,7 +32,7 @@ const FEWEST_HALVINGS: i32 = 5;
 const DIGESTED: u32 = 8;
 
 /// Work of a start, in steps.
-const START_STEPS: usize = 200;
+pub(super) const START_STEPS: u16 = 200;
 
 /// The first node from which steps are taken: the last of a start's own.
 #[expect(clippy::cast_possible_truncation, reason = "a few")]
@@ -184,7 +184,7 @@ impl Flock {
             losses: Vec::new(),
             digest: 0,
         };
-        *work += START_STEPS * order.len();
+        *work += usize::from(START_STEPS) * order.len();
         for group in order.chunk_by(|a, b| a.0 == b.0) {
             flock.add_level(eph, group, states);
         }

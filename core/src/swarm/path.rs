@@ -1,7 +1,7 @@
 //! What is kept of a swarm: sparse snapshots both ways from time 0, from which every instant is found again.
 
 use super::Loss;
-use super::flock::PER_TRACER;
+use super::flock::{PER_TRACER, START_STEPS, STEPS};
 
 /// Most memory that the snapshots of all swarms of a show take together, bytes.
 pub const SNAPSHOT_BYTES: usize = 16 << 20;
@@ -71,6 +71,13 @@ impl SwarmPath {
     /// The tracers that touch a body, of the time from 0 on and then of the time before, in no order.
     pub fn losses(&self) -> impl Iterator<Item = &Loss> {
         self.forward.losses.iter().chain(&self.backward.losses)
+    }
+
+    /// About how many steps its tracers took together: so many in each stretch in the mean, and the work of its start.
+    pub fn steps(&self) -> f64 {
+        let count = |n: usize| u32::try_from(n).map_or(f64::MAX, f64::from);
+        let stretches = self.forward.starts.len() + self.backward.starts.len();
+        count(stretches) * count(self.tracers) * (STEPS + f64::from(START_STEPS))
     }
 
     /// Memory held, bytes.

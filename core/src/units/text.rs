@@ -126,6 +126,12 @@ fn find(form: &str, dimensions: &[Dimension]) -> Result<Unit, UnitError> {
     Err(UnitError::new(format!("there is no unit \"{shown}\""), remedy))
 }
 
+/// Whether a text is a unit, of whatever it measures.
+pub(crate) fn is_unit(text: &str) -> bool {
+    let form = normal_form(text);
+    Dimension::ALL.into_iter().any(|dimension| dimension.find(&form).is_some())
+}
+
 /// The unit whose spelling is nearest, when it is near: one letter wrong in a short one, two in a long one.
 fn nearest(form: &str, dimensions: &[Dimension]) -> Option<&'static str> {
     let long = form.chars().count();

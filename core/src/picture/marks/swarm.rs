@@ -11,7 +11,7 @@ use super::super::{look, type_metrics};
 use super::body;
 use crate::Vector3;
 use crate::math::float;
-use crate::scenario::{Plane, SwarmId, SwarmShape};
+use crate::scenario::{Beat, Plane, SwarmId, SwarmShape};
 use crate::show::Show;
 use crate::swarm::{Cursor, Positions};
 
@@ -57,6 +57,13 @@ impl Tracers {
         self.most_steps = tracer_steps;
     }
 
+    /// Brings the swarms that a beat shows to an instant ahead of being drawn, by about so many tracer steps. True once all are there.
+    pub fn arrive(&mut self, show: &Show, beat: &Beat, t_s: f64, tracer_steps: usize) -> bool {
+        self.cursors.iter_mut().zip(&show.swarms).enumerate().all(|(id, (cursor, path))| {
+            !is_in_cast(beat, SwarmId(id)) || cursor.seek(path, &show.ephemeris, t_s, tracer_steps)
+        })
+    }
+
     /// Adds the points of the swarms on stage: those on open ground before everything else in the list, where a painter is
     /// quickest with them; those in front of a solid at `front`, after the solids. What a solid hides is left out.
     pub fn draw(&mut self, scene: &mut Scene<'_>, spots: &[Spot], front: usize) {
@@ -94,7 +101,11 @@ impl Tracers {
 
 /// Whether a beat shows a swarm.
 pub fn is_on_stage(scene: &Scene<'_>, id: SwarmId) -> bool {
-    scene.beat.cast.as_ref().is_none_or(|cast| cast.swarms.contains(&id))
+    is_in_cast(scene.beat, id)
+}
+
+fn is_in_cast(beat: &Beat, id: SwarmId) -> bool {
+    beat.cast.as_ref().is_none_or(|cast| cast.swarms.contains(&id))
 }
 
 fn count(show: &Show, id: SwarmId) -> usize {

@@ -53,6 +53,7 @@ impl<'d> Holder<'d> {
             Root::Body(name) => ("body", body_index(document, name)?),
             Root::BodyAt(index) => ("body", index),
             Root::Beat(index) => ("beat", index),
+            Root::Change(index) => ("change", index),
         };
         let missing = || EditError::NoSuchSection(key, index);
         match document.get(key).ok_or_else(missing)? {
@@ -135,6 +136,15 @@ impl<'d> Holder<'d> {
             Self::List { list, .. } => list.get(key.parse().ok()?)?.as_str(),
         }
         .map(str::to_owned)
+    }
+
+    /// The keys of all entries, in the order of the table; of a list, its indices.
+    pub(super) fn keys(&self) -> Vec<String> {
+        match self {
+            Self::Lines { table, .. } => table.iter().map(|(key, _)| key.to_owned()).collect(),
+            Self::Inline { table, .. } => table.iter().map(|(key, _)| key.to_owned()).collect(),
+            Self::List { list, .. } => (0..list.len()).map(|index| index.to_string()).collect(),
+        }
     }
 
     /// All entries that stand in this holder's own lines, braces or brackets, in the order of the text.

@@ -5,6 +5,7 @@
 //! text is never written anew from the data. A change after which the text would no longer be TOML is refused.
 
 mod holder;
+mod numbers;
 mod sections;
 
 use super::parse::{Parsed, parse, without_mark};
@@ -12,10 +13,11 @@ use super::problem::Problem;
 use holder::Holder;
 use std::ops::Range;
 
+pub use numbers::StatedNumber;
 pub use sections::List;
 
 /// The text of a scenario, open to changes. It is always TOML, not always a sound scenario.
-#[derive(Debug, Clone, PartialEq, Eq)]
+#[derive(Debug, Clone, PartialEq, Eq, Default)]
 pub struct Document {
     /// With its byte order mark, if it has one.
     text: String,
@@ -32,6 +34,8 @@ pub enum Root<'a> {
     BodyAt(usize),
     /// In the beat at this place in the file's order, from 0.
     Beat(usize),
+    /// In the change at this place in the file's order, from 0.
+    Change(usize),
 }
 
 /// A place in a scenario: keys from a root on. In a list, a key is an index, from "0".
@@ -106,7 +110,7 @@ pub enum EditError {
     /// The file has no such body.
     #[error("there is no body \"{0}\"")]
     NoSuchBody(String),
-    /// The file has no such body or beat, counted from 0.
+    /// The file has no such body, beat or change, counted from 0.
     #[error("there is no {0} number {1}")]
     NoSuchSection(&'static str, usize),
     /// Nothing stands at that path.

@@ -1,6 +1,6 @@
 //! The report for programs. Keys are stable; their endings say the unit.
 
-use fallaround_core::check::{BeatReport, Encounter, Finding, Lever, Shift, said};
+use fallaround_core::check::{BeatReport, Encounter, Finding, LeftOut, Lever, Mover, Number, Shift, Why};
 use fallaround_core::scenario::{Problem, Severity};
 use fallaround_core::show::Show;
 use serde_json::{Value, json};
@@ -100,10 +100,10 @@ pub(super) fn of(file: &str, shown: &Shown) -> Value {
         "contacts": contacts.collect::<Vec<_>>(),
         "encounters": report.encounters.iter().map(|one| encounter(show, one)).collect::<Vec<_>>(),
         "numbers": {
-            "stated": report.numbers_stated,
-            "tried": report.numbers_tried,
+            "tried": report.levers.len(),
             "part": 1e-9,
             "worst": report.levers.iter().take(LEVERS).map(|one| lever(show, one)).collect::<Vec<_>>(),
+            "left_out": report.left_out.iter().map(|one| left_out(show, one)).collect::<Vec<_>>(),
         },
         "findings": report.findings.iter().map(finding).collect::<Vec<_>>(),
         "problems": problems(&shown.proven.notes),
@@ -145,7 +145,7 @@ fn beat(show: &Show, index: usize, report: &BeatReport) -> Value {
         "pace": planned.map(|planned| planned.pace),
         "reaches": report.cue.as_ref().map(|cue| {
             json!({
-                "event": said(&show.scenario, &cue.event),
+                "event": cue.event.said(|body| show.initial.name(body)),
                 "at_s": cue.at_s,
                 "t_s": cue.model_s,
                 "late_s": cue.late_s,
@@ -167,17 +167,40 @@ fn beat(show: &Show, index: usize, report: &BeatReport) -> Value {
 }
 
 fn shift(show: &Show, shift: &Shift) -> Value {
-    json!({ "body": show.initial.name(shift.body), "beat_s": shift.beat_s, "px": shift.px, "m": shift.m })
+    let of = match shift.of {
+        Mover::Body(_) => "body",
+        Mover::Tracer(_) => "swarm",
+    };
+    json!({ of: shift.of.name(&show.initial), "beat_s": shift.beat_s, "px": shift.px, "m": shift.m })
 }
 
 fn lever(show: &Show, lever: &Lever) -> Value {
     let moves: Vec<Value> =
         lever.shifts.iter().map(|one| one.map_or(Value::Null, |one| shift(show, &one))).collect();
+    let mut value = number(show, &lever.number);
+    value["moves"] = moves.into();
+    value
+}
+
+fn left_out(show: &Show, one: &LeftOut) -> Value {
+    let mut value = number(show, &one.number);
+    value["why"] = match one.why {
+        Why::Zero => "zero",
+        Why::Alone => "no number so near",
+        Why::NoTime => "no time",
+        Why::Breaks(_) => "no show",
+    }
+    .into();
+    value
+}
+
+fn number(show: &Show, number: &Number) -> Value {
     json!({
-        "body": show.initial.name(lever.body),
-        "quantity": lever.quantity,
-        "stated": lever.stated,
-        "moves": moves,
+        "of": number.of(show),
+        "quantity": number.quantity,
+        "stated": number.stated,
+        "line": number.place.line,
+        "column": number.place.column,
     })
 }
 

@@ -1,8 +1,9 @@
 //! The report for people, in columns for a terminal.
 
 use std::fmt::Write as _;
+use std::mem::discriminant;
 
-use fallaround_core::check::{BeatReport, Finding, Report, said};
+use fallaround_core::check::{BeatReport, Finding, Number, Report, Why};
 use fallaround_core::show::Show;
 use fallaround_core::units::number;
 
@@ -10,6 +11,9 @@ use super::{Shown, outcome};
 
 /// How many of the numbers that move the picture are told.
 const LEVERS: usize = 3;
+
+/// How many of the numbers that were not changed are named, for each reason; the report for programs has all.
+const NAMED: usize = 8;
 
 /// What is less is no matter, px.
 const LEAST_PX: f64 = 0.001;
@@ -64,7 +68,12 @@ fn whole(shown: &Shown, line: &mut impl FnMut(String)) {
     let bodies: Vec<&str> = show.scenario.bodies.iter().map(|body| body.name.as_str()).collect();
     line(format!("  fingerprint  {}", shown.fingerprint));
     line(format!("  bodies       {}", bodies.join(", ")));
-    line(format!("  length       {} in {} beats", minutes(show.plan.lasts_s()), show.plan.beats.len()));
+    let beats = show.plan.beats.len();
+    line(format!(
+        "  length       {} in {}",
+        minutes(show.plan.lasts_s()),
+        if beats == 1 { "1 beat".to_owned() } else { format!("{beats} beats") }
+    ));
     line(format!(
         "  model time   {} to {}, {} steps",
         time(show.ephemeris.from_s()),
@@ -87,7 +96,7 @@ fn whole(shown: &Shown, line: &mut impl FnMut(String)) {
     };
     let (beat, _) = worst(|beat| beat.off.map_or(0.0, |off| off.px));
     if let Some(off) = report.beats.get(beat).and_then(|beat| beat.off) {
-        let body = show.initial.name(off.body);
+        let body = off.of.called(&show.initial);
         line(format!(
             "  exactness    {body} is drawn {} off at most, in beat {} (by a second run in shorter steps)",
             px(off.px),
@@ -135,36 +144,85 @@ fn whole(shown: &Shown, line: &mut impl FnMut(String)) {
     });
 }
 
-/// The numbers that move the picture most.
+/// The numbers that move the picture most, and those that were not changed.
 fn last_digits(show: &Show, report: &Report, line: &mut impl FnMut(String)) {
-    if report.numbers_stated == 0 {
-        line("  last digits  no numbers are stated that could be changed".to_owned());
-        return;
-    }
     let mut label = "last digits";
+    let mut told = |text: String| {
+        line(format!("  {label:<11}  {text}"));
+        label = "";
+    };
     let worst = report.levers.iter().filter_map(|lever| Some((lever, lever.worst()?)));
     for (index, (lever, (beat, shift))) in worst.take(LEVERS).enumerate() {
         if index > 0 && shift.px < LEAST_PX {
             break;
         }
-        let of = if index == 0 { format!(": the most of {}", counted(report)) } else { String::new() };
-        line(format!(
-            "  {label:<11}  {} of {}, changed by a billionth, moves {} by {} in beat {}{of}",
-            lever.quantity,
-            show.initial.name(lever.body),
-            show.initial.name(shift.body),
+        let of = if index == 0 {
+            format!(": the most of {}", numbers(report.levers.len()))
+        } else {
+            String::new()
+        };
+        told(format!(
+            "{}, changed by a billionth, moves {} by {} in beat {}{of}",
+            lever.number.called(show),
+            shift.of.called(&show.initial),
             px(shift.px),
             beat + 1
         ));
-        label = "";
+    }
+    let kinds = [
+        (Why::NoTime, "not tried, for want of time"),
+        (Why::Alone, "not tried, as the file takes no number so near"),
+        (Why::Zero, "not tried, as a billionth of 0 is 0"),
+        (Why::Breaks(String::new()), "tried, and no show came of it"),
+    ];
+    for (kind, why) in &kinds {
+        let all = report.left_out.iter().filter(|one| discriminant(&one.why) == discriminant(kind));
+        let all: Vec<&Number> = all.map(|one| &one.number).collect();
+        if !all.is_empty() {
+            told(format!("{why}: {}", named(show, &all)));
+        }
+    }
+    if report.levers.is_empty() && report.left_out.is_empty() {
+        told("no numbers are stated that bear on the motion".to_owned());
     }
 }
 
-fn counted(report: &Report) -> String {
-    if report.numbers_tried == report.numbers_stated {
-        format!("{} numbers", report.numbers_tried)
-    } else {
-        format!("{} numbers tried, of {} stated", report.numbers_tried, report.numbers_stated)
+fn numbers(count: usize) -> String {
+    if count == 1 { "1 number".to_owned() } else { format!("{count} numbers") }
+}
+
+/// "mass and radius of Brae; orbit.eccentricity of Fenn and Pell; 3 more".
+fn named(show: &Show, all: &[&Number]) -> String {
+    let mut of_each: Vec<(String, Vec<&str>)> = Vec::new();
+    for number in all.iter().take(NAMED) {
+        let of = number.of(show);
+        match of_each.last_mut().filter(|(owner, _)| *owner == of) {
+            Some((_, quantities)) => quantities.push(&number.quantity),
+            None => of_each.push((of, vec![&number.quantity])),
+        }
+    }
+    // Those of which the same is told go together.
+    let mut alike: Vec<(Vec<&str>, Vec<&str>)> = Vec::new();
+    for (owner, quantities) in &of_each {
+        match alike.iter_mut().find(|(same, _)| same == quantities) {
+            Some((_, owners)) => owners.push(owner),
+            None => alike.push((quantities.clone(), vec![owner])),
+        }
+    }
+    let told =
+        alike.iter().map(|(quantities, owners)| format!("{} of {}", listed(quantities), listed(owners)));
+    let mut parts: Vec<String> = told.collect();
+    if let Some(more) = all.len().checked_sub(NAMED).filter(|more| *more > 0) {
+        parts.push(format!("{more} more"));
+    }
+    parts.join("; ")
+}
+
+/// "a, b and c".
+fn listed(words: &[&str]) -> String {
+    match words {
+        [first @ .., last] if !first.is_empty() => format!("{} and {last}", first.join(", ")),
+        _ => words.concat(),
     }
 }
 
@@ -192,7 +250,7 @@ fn beats(show: &Show, report: &Report, line: &mut impl FnMut(String)) {
         if let Some(cue) = &report_of.cue {
             line(format!(
                 "              {} after {:.1} s, at {}",
-                said(&show.scenario, &cue.event),
+                cue.event.said(|body| show.initial.name(body)),
                 cue.at_s,
                 time(cue.model_s)
             ));
@@ -235,6 +293,8 @@ fn time(seconds: f64) -> String {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use fallaround_core::check::Owner;
+    use fallaround_core::scenario::Place;
 
     #[test]
     fn times_are_told_in_units_that_fit() {
@@ -248,5 +308,22 @@ mod tests {
     fn what_no_eye_could_see_is_told_as_that() {
         assert_eq!(px(3e-8), "under 0.001 px");
         assert_eq!(px(12.34), "12 px");
+    }
+    #[test]
+    fn numbers_that_were_not_changed_are_named_together_where_they_are_alike() {
+        let text = "format = 1\ntitle = \"T\"\n[[body]]\nname = \"Orla\"\nmass = \"1 Sun mass\"\n";
+        let show = fallaround_core::show::Rehearsal::whole(text).unwrap();
+        let number = |change: usize, quantity: &str| Number {
+            owner: Owner::Change(change),
+            quantity: quantity.to_owned(),
+            stated: "0 d".to_owned(),
+            place: Place::default(),
+        };
+        let all =
+            [number(0, "at"), number(0, "speed"), number(1, "speed"), number(2, "at"), number(2, "speed")];
+        let all: Vec<&Number> = all.iter().collect();
+        assert_eq!(named(&show, &all), "at and speed of change 1 and change 3; speed of change 2");
+        let many = vec![all[0]; NAMED + 3];
+        assert!(named(&show, &many).ends_with("; 3 more"), "{}", named(&show, &many));
     }
 }
