@@ -1,48 +1,90 @@
-//! First guesses: by what velocity a body gets to a place in time, from Lambert's problem around its primary.
+//! First guesses: with which numbers a body gets to a place in time, by Kepler's laws.
 //!
 //! Where the rest of the bodies pulls little, such a guess all but meets the aim, and lies where scattered points would hardly fall. It is a
-//! start for the search among others, and no more: nothing else depends on it.
+//! start for the search among others, and no more: nothing else depends on it. Several bodies are aimed one after the other.
 
+use super::course::{Course, Target};
+use super::put::put;
 use super::trial::{Trial, horizon_s};
 use crate::Vector3;
-use crate::conic::lambert;
 use crate::ephemeris::{Ephemeris, Propagation};
 use crate::initial::InitialState;
-use crate::math::float::{asin, atan2, sin_cos};
+use crate::math::float::sin_cos;
 use crate::resolve::resolve_among;
-use crate::scenario::{BodyId, EventKind, Form, Free, Outcome, Want, Wanted};
-use std::f64::consts::TAU;
-
-/// Whole turns on the way, at most.
-const MOST_TURNS: u32 = 2;
+use crate::scenario::{BodyId, EventKind, Outcome, Scenario, Want, Wanted};
 
 /// Steps of the integrator at most, to see where the others will be.
 const STEPS: usize = 100_000;
 
+/// Guesses at most.
+const MOST: usize = 24;
+
+/// Where no time is wanted, this many are tried, evenly spread over the search.
+const TIMES: u32 = 8;
+
 /// Points of the unit cube from which to start.
 pub(super) fn points(trial: &Trial<'_>) -> Vec<Vec<f64>> {
-    let scenario = trial.document.scenario().scenario;
-    let Some((scenario, initial)) =
-        scenario.and_then(|s| resolve_among(&s, trial.solar).ok().map(|initial| (s, initial)))
-    else {
-        return Vec::new();
-    };
-    let shooters = trial.aim.free.iter().filter(|free| is_velocity(free)).map(|free| free.body);
-    let Some(shooter) = shooters.min() else { return Vec::new() };
-    let Some(form) = scenario.bodies.get(shooter.0).map(|body| &body.form) else { return Vec::new() };
+    let Some(scenario) = trial.document.scenario().scenario else { return Vec::new() };
+    let free = &trial.aim.free;
+    let moved = free.iter().filter(|free| free.keys.first() != Some(&"mass")).map(|free| free.body);
+    let mut shooters: Vec<BodyId> = moved.collect();
+    shooters.sort_unstable();
+    shooters.dedup();
+    let so_far: Vec<f64> = free.iter().map(|free| trial.stated_share(free).unwrap_or(0.5)).collect();
+    let mut points = vec![so_far];
+    let mut any = false;
+    for (index, &shooter) in shooters.iter().enumerate() {
+        let mut next: Vec<Vec<f64>> = Vec::new();
+        let each = MOST.div_ceil(points.len());
+        for point in &points {
+            let found = of_one(trial, &scenario, shooter, &shooters[index + 1..], point);
+            next.extend(found.unwrap_or_default().into_iter().take(each));
+        }
+        if !next.is_empty() {
+            (points, any) = (next, true);
+        }
+    }
+    if any { points } else { Vec::new() }
+}
+
+/// Guesses for the numbers of one body, with all others as a point has them. `later` will be aimed after it.
+fn of_one(
+    trial: &Trial<'_>,
+    scenario: &Scenario,
+    shooter: BodyId,
+    later: &[BodyId],
+    point: &[f64],
+) -> Option<Vec<Vec<f64>>> {
+    let mut scenario = scenario.clone();
+    for (free, share) in trial.aim.free.iter().zip(point) {
+        put(&mut scenario, free, free.from + share * (free.to - free.from));
+    }
+    let initial = resolve_among(&scenario, trial.solar).ok()?;
     let until_s = trial.aim.want.iter().map(horizon_s).fold(1.0, f64::max);
     let mut propagation = Propagation::new(&initial);
     // Where the integration ends early, times beyond are simply not covered.
-    if propagation.advance(until_s, STEPS).is_err() {
-        return Vec::new();
+    propagation.advance(until_s, STEPS).ok()?;
+    let sight = Sight { initial: &initial, ephemeris: propagation.ephemeris(), shooter, later };
+    let targets: Vec<Target> = trial.aim.want.iter().flat_map(|want| sight.targets(want)).collect();
+    let own = trial.aim.free.iter().zip(point).filter(|(free, _)| free.body == shooter);
+    let own: Vec<_> = own.map(|(free, share)| (free, *share)).collect();
+    let course = Course { trial, scenario: &scenario, initial: &initial, shooter, own };
+    let mut ways: Vec<_> = targets.iter().map(|target| course.to(target).into_iter()).collect();
+    // The best of each target first, then the second of each.
+    let mut found = Vec::new();
+    loop {
+        let round: Vec<Vec<f64>> = ways.iter_mut().filter_map(Iterator::next).collect();
+        if round.is_empty() {
+            return Some(found);
+        }
+        found.extend(round.into_iter().map(|numbers| {
+            let mut numbers = numbers.into_iter();
+            let of = |(free, share): (&crate::scenario::Free, &f64)| {
+                if free.body == shooter { numbers.next().unwrap_or(*share) } else { *share }
+            };
+            trial.aim.free.iter().zip(point).map(of).collect()
+        }));
     }
-    let sight = Sight { initial: &initial, ephemeris: propagation.ephemeris(), shooter };
-    let velocities = trial.aim.want.iter().flat_map(|want| sight.velocities(want));
-    velocities.filter_map(|velocity| point(trial, &sight, form, velocity)).collect()
-}
-
-fn is_velocity(free: &Free) -> bool {
-    matches!(free.keys.as_slice(), ["place", "velocity", _] | ["throw", "speed" | "elevation" | "heading"])
 }
 
 /// What is seen from the body that is aimed with.
@@ -50,65 +92,58 @@ struct Sight<'a> {
     initial: &'a InitialState,
     ephemeris: &'a Ephemeris,
     shooter: BodyId,
+    later: &'a [BodyId],
 }
 
 impl Sight<'_> {
-    /// Velocities relative to the primary that lead to what is wanted.
-    fn velocities(&self, want: &Want) -> Vec<Vector3<f64>> {
-        let found = || {
-            let body = self.initial.bodies.get(self.shooter.0)?;
-            let primary = body.primary?;
-            let centre = self.initial.bodies.get(primary.0)?;
-            let (mut to, t_s) = self.target(want, primary)?;
-            let from = body.pos - centre.pos;
-            let normal = from.cross(&to);
-            // In one line with the centre: the plane is anybody's choice.
-            let axis = if normal.norm() > 1e-9 * from.norm() * to.norm() { normal } else { Vector3::z() };
-            // Beyond a body that is to be passed at a distance, as seen from the centre: the plane is the same.
-            to += to.normalize() * self.beside_m(want, primary);
-            let gm = body.gm_m3_s2 + centre.gm_m3_s2;
-            let ways =
-                [axis, -axis].map(|axis| lambert(from, to, t_s, gm, axis, MOST_TURNS).unwrap_or_default());
-            Some(ways.into_iter().flatten().map(|arc| arc.from_vel).collect())
-        };
-        found().unwrap_or_default()
-    }
-
-    /// At what distance another body than the primary is wanted to be passed, m.
-    fn beside_m(&self, want: &Want, primary: BodyId) -> f64 {
-        let of_primary = match want.of {
-            Wanted::Instant { body, about, .. } => {
-                body == primary || about.is_none_or(|about| about == primary)
-            }
-            Wanted::Event { event, .. } => event.other.is_none_or(|other| other == primary),
-        };
-        if of_primary { 0.0 } else { distance(want).unwrap_or(0.0) }
-    }
-
-    /// Where the body should be, relative to its primary, and when.
-    fn target(&self, want: &Want, primary: BodyId) -> Option<(Vector3<f64>, f64)> {
-        let (body, other, t_s) = match want.of {
-            Wanted::Instant { body, about, at } => (body, about, at.s()),
-            Wanted::Event { event, .. } => {
-                let meets = matches!(event.kind, EventKind::ClosestApproach | EventKind::Contact);
+    /// Where the body should be, and when, for what is wanted.
+    fn targets(&self, want: &Want) -> Vec<Target> {
+        let (body, other, times_s) = match want.of {
+            Wanted::Instant { body, about, at } => (body, about, vec![at.s()]),
+            Wanted::Event { event, until } => {
+                if !matches!(event.kind, EventKind::ClosestApproach | EventKind::Contact) {
+                    return Vec::new();
+                }
                 let at = want.outcomes.iter().find_map(|outcome| match outcome {
-                    Outcome::At(at) => Some(at.s()),
+                    Outcome::At(at) => Some(vec![at.s()]),
                     _ => None,
                 });
-                (event.body, event.other, at.filter(|_| meets)?)
+                let spread = || (1..=TIMES).map(|k| until.s() * f64::from(k) / f64::from(TIMES)).collect();
+                (event.body, event.other, at.unwrap_or_else(spread))
             }
         };
-        if t_s > self.ephemeris.until_s() {
-            return None;
+        let other = match (body == self.shooter, other == Some(self.shooter)) {
+            (true, _) => other,
+            (_, true) => Some(body),
+            _ => return Vec::new(),
+        };
+        // One that is aimed later is not yet on its way.
+        if other.is_some_and(|other| self.later.contains(&other)) {
+            return Vec::new();
         }
-        let other = if body == self.shooter { other.unwrap_or(primary) } else { body };
-        if body != self.shooter && want_other(want) != Some(self.shooter) {
-            return None;
+        let found = times_s.into_iter().filter(|&t_s| t_s > 0.0 && t_s <= self.ephemeris.until_s());
+        found.filter_map(|t_s| self.target(want, other, t_s)).collect()
+    }
+
+    fn target(&self, want: &Want, other: Option<BodyId>, t_s: f64) -> Option<Target> {
+        let above = self.above(self.shooter);
+        let other = other.or(above.first().copied())?;
+        let massive = |body: &BodyId| self.initial.bodies.get(body.0).is_some_and(|b| b.gm_m3_s2 > 0.0);
+        // The first centre that both have, the other one perhaps being it.
+        let around_other = self.above(other);
+        let shared = |body: &BodyId| *body == other || around_other.contains(body);
+        let level = above.iter().position(|body| massive(body) && shared(body))?;
+        let centre = above[level];
+        let leaving = above[..level].last().copied().filter(massive);
+        let wanted_m = want.outcomes.iter().find_map(|outcome| match outcome {
+            Outcome::Distance(distance) => Some(distance.m()),
+            _ => None,
+        });
+        if other != centre {
+            let place = self.ephemeris.relative(other, centre, t_s)?.pos;
+            return Some(Target { centre, leaving, place, beside_m: wanted_m.unwrap_or(0.0), t_s });
         }
-        if other != primary {
-            return Some((self.ephemeris.relative(other, primary, t_s)?.pos, t_s));
-        }
-        // A direction from the primary, and how far.
+        // A direction from the centre, and how far.
         let stated = |of: fn(&Outcome) -> Option<f64>| want.outcomes.iter().find_map(of);
         let longitude = stated(|outcome| match outcome {
             Outcome::Longitude(angle) => Some(angle.rad()),
@@ -118,59 +153,30 @@ impl Sight<'_> {
             Outcome::Latitude(angle) => Some(angle.rad()),
             _ => None,
         });
-        let distance = distance(want).unwrap_or(self.initial.bodies.get(primary.0)?.radius_m);
+        let distance_m = wanted_m.unwrap_or(self.initial.bodies.get(centre.0)?.radius_m);
         let ((sin_lat, cos_lat), (sin_lon, cos_lon)) = (sin_cos(latitude.unwrap_or(0.0)), sin_cos(longitude));
         let direction = Vector3::new(cos_lat * cos_lon, cos_lat * sin_lon, sin_lat);
-        (distance > 0.0).then_some((direction * distance, t_s))
+        let place = direction * distance_m;
+        (distance_m > 0.0).then_some(Target { centre, leaving, place, beside_m: 0.0, t_s })
     }
-}
 
-/// The distance that is wanted, m.
-fn distance(want: &Want) -> Option<f64> {
-    want.outcomes.iter().find_map(|outcome| match outcome {
-        Outcome::Distance(distance) => Some(distance.m()),
-        _ => None,
-    })
-}
-
-fn want_other(want: &Want) -> Option<BodyId> {
-    match want.of {
-        Wanted::Instant { about, .. } => about,
-        Wanted::Event { event, .. } => event.other,
-    }
-}
-
-/// The point at which the body starts with a velocity relative to its primary; `None` where the free numbers don't reach so far.
-fn point(trial: &Trial<'_>, sight: &Sight<'_>, form: &Form, velocity: Vector3<f64>) -> Option<Vec<f64>> {
-    let body = sight.initial.bodies.get(sight.shooter.0)?;
-    let centre = sight.initial.bodies.get(body.primary?.0)?;
-    // What the file states, and by how much it has to change.
-    let change = velocity - (body.vel - centre.vel);
-    let up = (body.pos - centre.pos).normalize();
-    let east = Vector3::z().cross(&up);
-    let shares = trial.aim.free.iter().map(|free| {
-        if free.body != sight.shooter || !is_velocity(free) {
-            return trial.stated_share(free).or(Some(0.5));
+    /// What a body goes around, what that goes around, and so on; one that names nothing goes around the heaviest.
+    fn above(&self, body: BodyId) -> Vec<BodyId> {
+        let bodies = &self.initial.bodies;
+        let gm = |index: &usize| bodies[*index].gm_m3_s2;
+        let heaviest = (0..bodies.len()).max_by(|a, b| gm(a).total_cmp(&gm(b)).then(b.cmp(a))).map(BodyId);
+        let mut above = Vec::new();
+        let mut last = body;
+        while above.len() <= bodies.len() {
+            let Some(index) = bodies.get(last.0) else { break };
+            match index.primary.or(heaviest.filter(|top| *top != last && !above.contains(top))) {
+                Some(next) if next != body => {
+                    above.push(next);
+                    last = next;
+                }
+                _ => break,
+            }
         }
-        let si = match (form, free.keys.as_slice()) {
-            (Form::Place(placed), ["place", "velocity", axis]) => {
-                let axis: usize = axis.parse().ok()?;
-                placed.velocity.get(axis)?.m_s() + change[axis]
-            }
-            (Form::Throw(_), ["throw", "speed"]) => velocity.norm(),
-            (Form::Throw(_), ["throw", "elevation"]) => {
-                asin((velocity.dot(&up) / velocity.norm()).clamp(-1.0, 1.0))
-            }
-            (Form::Throw(_), ["throw", "heading"]) => {
-                // At a pole every way is north; scattered points will do there.
-                let east = east.try_normalize(1e-9)?;
-                let heading = atan2(velocity.dot(&east), velocity.dot(&up.cross(&east)));
-                if heading < free.from { heading + TAU } else { heading }
-            }
-            _ => return None,
-        };
-        let share = (si - free.from) / (free.to - free.from);
-        (0.0..=1.0).contains(&share).then_some(share)
-    });
-    shares.collect()
+        above
+    }
 }

@@ -1,8 +1,9 @@
 //! Aiming: numbers of a scenario that lead to a stated outcome.
 //!
 //! `[[aim]]` in a file says what is wanted and which numbers may be changed within which limits. The numbers are written into the
-//! text itself, so that what is found is what the file says; comments and order stay. First the whole range is sampled, and with it the
-//! paths of two bodies that lead there, where a velocity is free; then the best points are refined by least squares. When none of them gets there, the answer is how near the nearest came.
+//! text itself, so that what is found is what the file says; comments and order stay. First come guesses by the laws of two bodies, where
+//! a place is to be reached, and the best of them are refined by least squares; if none of them gets there, the whole range is sampled, and the
+//! best points of it refined. When none of those gets there either, the answer is how near the nearest came.
 //!
 //! ```
 //! let text = r#"
@@ -26,8 +27,10 @@
 //! # Ok::<(), String>(())
 //! ```
 
+mod course;
 mod fit;
 mod guess;
+mod put;
 #[cfg(test)]
 mod tests;
 mod trial;
@@ -48,6 +51,10 @@ const MOST_SAMPLES: usize = 160;
 
 /// How many of them are refined.
 const STARTS: usize = 8;
+
+/// How many guesses are refined before the whole range is sampled, and the share of the work that guessing counts for.
+const GUESSED_STARTS: usize = 3;
+const GUESSING: f64 = 0.1;
 
 /// Digits to which the numbers found are rounded, if what is wanted still comes out; else they are written in full.
 const DIGITS: [usize; 4] = [6, 8, 10, 12];
@@ -148,16 +155,28 @@ type Tried = (Vec<f64>, Vec<f64>);
 
 #[derive(Debug)]
 enum Stage {
-    /// Points are sampled: the guesses that are left, how many others so far, those that could be compared, and why the first of the rest
-    /// couldn't.
-    Sampling { guesses: Option<Vec<Vec<f64>>>, next: usize, tried: Vec<Tried>, why: Option<String> },
+    /// Points are tried: what the file states, the guesses, and then, once those have been refined, others.
+    Trying(Trying),
     /// The starts that are left, nearest last; the one that is refined; and the nearest so far.
-    Refining { starts: Vec<Tried>, fit: Fit, nearest: Tried },
+    Refining { starts: Vec<Tried>, fit: Fit, nearest: Tried, sampled: bool },
+}
+
+/// Points on trial.
+#[derive(Debug, Default)]
+struct Trying {
+    /// The guesses that are left, the best last; before they are made, none.
+    guesses: Option<Vec<Vec<f64>>>,
+    /// How many points other than guesses so far.
+    next: usize,
+    /// Those that could be compared.
+    tried: Vec<Tried>,
+    /// Why the first of the rest couldn't.
+    why: Option<String>,
 }
 
 impl Stage {
-    const fn start() -> Self {
-        Self::Sampling { guesses: None, next: 0, tried: Vec::new(), why: None }
+    fn start() -> Self {
+        Self::Trying(Trying::default())
     }
 }
 
@@ -213,7 +232,10 @@ impl Aiming {
 
     fn progress(&self) -> Progress {
         let within = match (&self.stage, self.aims.get(self.current)) {
-            (Stage::Sampling { next, .. }, Some(aim)) => 0.5 * share(*next, samples(aim) + 1),
+            (Stage::Trying(trying), Some(aim)) if trying.guesses.as_ref().is_some_and(Vec::is_empty) => {
+                GUESSING + (0.5 - GUESSING) * share(trying.next, samples(aim) + 1)
+            }
+            (Stage::Refining { sampled: false, .. }, _) => GUESSING,
             (Stage::Refining { starts, .. }, _) => 1.0 - 0.5 * share(starts.len() + 1, STARTS),
             _ => 0.0,
         };
@@ -236,53 +258,65 @@ fn samples(aim: &Aim) -> usize {
     (SAMPLES * aim.free.len()).min(MOST_SAMPLES)
 }
 
+impl Trying {
+    /// The next point, if there is one.
+    fn point(&mut self, trial: &Trial<'_>) -> Option<Vec<f64>> {
+        // The first point is what the file states; then come the guesses.
+        if self.next > 0
+            && let Some(guess) = self.guesses.get_or_insert_with(|| guess::points(trial)).pop()
+        {
+            return Some(guess);
+        }
+        self.next += 1;
+        match self.next - 1 {
+            0 => trial.stated(),
+            index => Some(scattered(index, trial.aim.free.len())),
+        }
+    }
+
+    /// Takes the best points out, as starts: the nearest last.
+    fn best(&mut self, count: usize) -> Vec<Tried> {
+        self.tried.sort_by(|a, b| cost(&b.1).total_cmp(&cost(&a.1)));
+        self.tried.split_off(self.tried.len().saturating_sub(count))
+    }
+}
+
 impl Stage {
     /// Works on; gives the point that meets the aim once there is one.
     fn work(&mut self, trial: &Trial<'_>, trials: &mut usize) -> Result<Option<Vec<f64>>, AimFailure> {
         match self {
-            Self::Sampling { guesses, next, tried, why } => {
-                // The first point is what the file states; then come the guesses.
-                let guess = match *next {
-                    0 => None,
-                    _ => guesses.get_or_insert_with(|| guess::points(trial)).pop(),
-                };
-                let point = if guess.is_some() {
-                    guess
-                } else {
-                    *next += 1;
-                    match *next - 1 {
-                        0 => trial.stated(),
-                        index => Some(scattered(index, trial.aim.free.len())),
-                    }
-                };
-                if let Some(point) = point {
+            Self::Trying(trying) => {
+                if let Some(point) = trying.point(trial) {
                     *trials += 1;
                     match trial.misses(&point, None) {
                         Ok(misses) => {
                             if misses.iter().all(Miss::is_met) {
                                 return Ok(Some(point));
                             }
-                            tried.push((point, residuals(&misses)));
+                            trying.tried.push((point, residuals(&misses)));
                         }
                         Err(reason) => {
-                            why.get_or_insert(reason);
+                            trying.why.get_or_insert(reason);
                         }
                     }
                 }
-                if *next <= samples(trial.aim) {
+                let guessed = trying.next == 1
+                    && trying.guesses.as_ref().is_some_and(Vec::is_empty)
+                    && !trying.tried.is_empty();
+                let sampled = trying.next > samples(trial.aim);
+                if !sampled && !guessed {
                     return Ok(None);
                 }
-                tried.sort_by(|a, b| cost(&b.1).total_cmp(&cost(&a.1)));
-                let mut starts = tried.split_off(tried.len().saturating_sub(STARTS));
+                let mut starts = trying.best(if sampled { STARTS } else { GUESSED_STARTS });
                 let Some(nearest) = starts.pop() else {
-                    let why = why.take().unwrap_or_default();
+                    let why = trying.why.take().unwrap_or_default();
                     return Err(AimFailure::Nothing { place: trial.aim.place, form: form(trial.aim), why });
                 };
-                *self =
-                    Self::Refining { starts, fit: Fit::new(nearest.0.clone(), nearest.1.clone()), nearest };
+                let fit = Fit::new(nearest.0.clone(), nearest.1.clone());
+                *self = Self::Refining { starts, fit, nearest, sampled };
                 Ok(None)
             }
-            Self::Refining { starts, fit, nearest } => {
+            Self::Refining { starts, fit, nearest, sampled } => {
                 fit.step(|point| {
                     *trials += 1;
                     let misses = trial.misses(point, None).ok()?;
@@ -302,7 +336,13 @@ impl Stage {
                     *fit = Fit::new(point, residuals);
                     return Ok(None);
                 }
-                Err(missed(trial, &nearest.0))
+                if *sampled {
+                    return Err(missed(trial, &nearest.0));
+                }
+                // The guesses led nowhere: the whole range, and what came nearest so far.
+                let tried = vec![nearest.clone()];
+                *self = Self::Trying(Trying { guesses: Some(Vec::new()), next: 1, tried, why: None });
+                Ok(None)
             }
         }
     }

@@ -118,19 +118,20 @@ impl Trial<'_> {
     }
 }
 
-/// How far the bodies of an aim are from their primaries at the start, m: the size of the scene.
+/// How far the bodies of an aim are from their primaries, and from what they are to be compared with, at the start, m: the size of the scene.
 pub(super) fn scene_m(document: &Document, aim: &Aim, solar: &Solar) -> f64 {
     const OTHERWISE_M: f64 = 1e9;
     let initial = document.scenario().scenario.and_then(|scenario| resolve_among(&scenario, solar).ok());
     let Some(initial) = initial else { return OTHERWISE_M };
-    let far = aim.want.iter().filter_map(|want| {
-        let body = match want.of {
-            Wanted::Event { event, .. } => event.body,
-            Wanted::Instant { body, .. } => body,
+    let far = aim.want.iter().flat_map(|want| {
+        let (body, other) = match want.of {
+            Wanted::Event { event, .. } => (event.body, event.other),
+            Wanted::Instant { body, about, .. } => (body, about),
         };
-        let body = initial.bodies.get(body.0)?;
-        let primary = initial.bodies.get(body.primary?.0)?;
-        Some((body.pos - primary.pos).norm())
+        let pos = |body: Option<BodyId>| Some(initial.bodies.get(body?.0)?.pos);
+        let primary = initial.bodies.get(body.0).and_then(|body| body.primary);
+        let apart = |from: Option<BodyId>| Some((pos(Some(body))? - pos(from)?).norm());
+        [apart(primary), apart(other)].into_iter().flatten()
     });
     let scene_m = far.fold(0.0, f64::max);
     if scene_m > 0.0 { scene_m } else { OTHERWISE_M }
