@@ -8,6 +8,7 @@
 
 pub mod convert;
 pub mod elements;
+pub mod equinoctial;
 pub mod kepler;
 pub mod lambert;
 pub mod stumpff;
@@ -15,6 +16,7 @@ pub mod universal;
 
 pub use convert::{elements_from_state, semi_major_from_state, state_from_elements};
 pub use elements::Elements;
+pub use equinoctial::{Equinoctial, Sense};
 pub use lambert::lambert;
 pub use universal::propagate;
 
