@@ -11,6 +11,8 @@ use crate::scenario::BodyId;
 mod changes;
 pub mod events;
 mod flat;
+mod knots;
+mod long;
 pub mod osculating;
 pub mod propagation;
 mod run;
@@ -19,13 +21,14 @@ mod tests;
 mod thin;
 mod touch;
 pub mod track;
+mod way;
 
 pub use crate::integrate::PER_BODY;
 pub use changes::Switch;
 pub use flat::Malformed;
 pub use propagation::{Propagation, SHOW_BYTES, Stopped, Why, states_at};
 pub use thin::Tolerance;
-pub use track::{Piece, Track};
+pub use track::{LongStretch, Piece, Track};
 
 /// Where a body is and how it moves: m and m/s, barycentric.
 #[derive(Debug, Clone, Copy, PartialEq)]

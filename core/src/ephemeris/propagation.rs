@@ -1,11 +1,12 @@
 //! Growing an ephemeris: from an initial state, both ways in time, a few steps at a time.
 
 use super::run::Run;
-use super::thin::Thinner;
 use super::track::evaluate;
+use super::way::Way;
 use super::{Ephemeris, State};
 use crate::initial::InitialState;
-use crate::integrate::PER_BODY;
+use crate::integrate::long_steps::time;
+use crate::integrate::{PER_BODY, StepTooSmall};
 use crate::scenario::BodyId;
 use std::fmt;
 
@@ -13,14 +14,14 @@ use std::fmt;
 pub const SHOW_BYTES: usize = 64 << 20;
 
 /// Why the integration can't go on.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+#[derive(Debug, Clone, PartialEq, Eq)]
 pub enum Why {
     /// Two points fall into each other.
     Collapse,
     /// The paths would take more memory than is allowed.
     TooLong {
-        /// That bound, bytes.
-        most_bytes: usize,
+        /// Why not by long steps, which take less: whole sentences.
+        against: Vec<String>,
     },
 }
 
@@ -40,7 +41,7 @@ pub struct Stopped {
 impl fmt::Display for Stopped {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         let t_s = self.t_s;
-        match self.why {
+        match &self.why {
             Why::Collapse => {
                 let names = self.names.join(" and ");
                 write!(
@@ -48,11 +49,12 @@ impl fmt::Display for Stopped {
                     "{names} fall into each other {t_s:.3} s from the start; give one of them a radius, or a little speed aside"
                 )
             }
-            Why::TooLong { most_bytes } => {
-                let megabytes = most_bytes >> 20;
+            Why::TooLong { against } => {
+                let at = time(t_s.abs());
                 write!(
                     f,
-                    "the paths take more than {megabytes} MB after {t_s:.0} s; show less time, fewer bodies, or wider orbits"
+                    "the paths take too much memory after {at}; show less time, fewer bodies, or wider orbits. {}",
+                    against.join(" ")
                 )
             }
         }
@@ -66,34 +68,27 @@ impl std::error::Error for Stopped {}
 pub struct Propagation {
     initial: InitialState,
     ephemeris: Ephemeris,
-    forward: Run,
-    backward: Run,
-    forward_thinner: Thinner,
-    backward_thinner: Thinner,
-    forward_stopped: Option<Stopped>,
-    backward_stopped: Option<Stopped>,
-    most_bytes: usize,
+    forward: Way,
+    backward: Way,
 }
 
 impl Propagation {
     /// Nothing integrated yet; time starts at 0. It may grow to [`SHOW_BYTES`]: three quarters of it for the time from 0 on, a
-    /// quarter for the time before. Paths that would outgrow this are thinned to the next of [`super::Tolerance::ALL`].
+    /// quarter for the time before. Paths that would outgrow this are thinned to the next of [`super::Tolerance::ALL`], and go on by long
+    /// steps where that can be ([`Track::long_stretches`]).
+    ///
+    /// [`Track::long_stretches`]: super::Track::long_stretches
     pub fn new(initial: &InitialState) -> Self {
         Self::with_most_bytes(initial, SHOW_BYTES)
     }
 
     /// The same, with another bound on its memory, bytes.
     pub fn with_most_bytes(initial: &InitialState, most_bytes: usize) -> Self {
-        let thinner = Thinner::new(initial);
+        let before_0_bytes = most_bytes / 4;
         Self {
-            most_bytes,
             ephemeris: Ephemeris::new(initial.bodies.iter().map(|body| body.gm_m3_s2).collect()),
-            forward: Run::new(initial, 1.0),
-            backward: Run::new(initial, -1.0),
-            forward_thinner: thinner.clone(),
-            backward_thinner: thinner,
-            forward_stopped: None,
-            backward_stopped: None,
+            forward: Way::new(initial, false, most_bytes - before_0_bytes),
+            backward: Way::new(initial, true, before_0_bytes),
             initial: initial.clone(),
         }
     }
@@ -116,7 +111,8 @@ impl Propagation {
         self.ephemeris
     }
 
-    /// Integrates on towards `until_s` (seconds from the start; back in time when negative), by at most `max_steps` steps.
+    /// Integrates on towards `until_s` (seconds from the start; back in time when negative), by at most `max_steps` steps, each of them one of
+    /// the exact method or some dozens of long ones.
     /// True once that instant is covered. Steps don't depend on what was asked for: the same bits come of any sequence of calls.
     ///
     /// # Errors
@@ -126,7 +122,8 @@ impl Propagation {
             if self.covers(until_s) {
                 return Ok(true);
             }
-            self.step(until_s < 0.0)?;
+            let way = if until_s < 0.0 { &mut self.backward } else { &mut self.forward };
+            way.step(&self.initial, &mut self.ephemeris)?;
         }
         Ok(self.covers(until_s))
     }
@@ -135,51 +132,6 @@ impl Propagation {
         let track = if until_s < 0.0 { self.ephemeris.backward() } else { self.ephemeris.forward() };
         !track.is_empty() && track.end_s().abs() >= until_s.abs()
     }
-
-    fn step(&mut self, backward: bool) -> Result<(), Stopped> {
-        let (run, thinner, stopped) = if backward {
-            (&mut self.backward, &mut self.backward_thinner, &mut self.backward_stopped)
-        } else {
-            (&mut self.forward, &mut self.forward_thinner, &mut self.forward_stopped)
-        };
-        if let Some(stopped) = stopped {
-            return Err(stopped.clone());
-        }
-        let before_0_bytes = self.most_bytes / 4;
-        let most_bytes = if backward { before_0_bytes } else { self.most_bytes - before_0_bytes };
-        let track = if backward { self.ephemeris.backward() } else { self.ephemeris.forward() };
-        if track.bytes() > most_bytes {
-            let why = Why::TooLong { most_bytes: self.most_bytes };
-            return Err(Stopped { bodies: Vec::new(), names: Vec::new(), t_s: run.t_s(), why });
-        }
-        let step = run.step(&self.initial).map_err(|_too_small| {
-            let why = collapse(run, &self.initial);
-            *stopped = Some(why.clone());
-            why
-        })?;
-        let track = if backward { self.ephemeris.backward_mut() } else { self.ephemeris.forward_mut() };
-        if step.step_s != 0.0 {
-            track.push(step.start_s, step.step_s, run.numbers());
-            thinner.grow(track);
-        }
-        if step.cut {
-            thinner.close(track, run.t_s(), run.hosts());
-        }
-        while track.bytes() > most_bytes && thinner.coarsen(track) {}
-        if let Some(contact) = step.contact {
-            self.ephemeris.push_contact(contact);
-        }
-        for switch in step.switches {
-            self.ephemeris.push_switch(switch);
-        }
-        Ok(())
-    }
-}
-
-fn collapse(run: &Run, initial: &InitialState) -> Stopped {
-    let bodies = run.closest().to_vec();
-    let names = bodies.iter().map(|body| initial.bodies[body.0].name.clone()).collect();
-    Stopped { bodies, names, t_s: run.t_s(), why: Why::Collapse }
 }
 
 /// States of all bodies at one instant, seconds from that of `initial` (negative: before it). Contacts are left out.
@@ -189,7 +141,7 @@ fn collapse(run: &Run, initial: &InitialState) -> Stopped {
 pub fn states_at(initial: &InitialState, t_s: f64) -> Result<Vec<State>, Stopped> {
     let mut run = Run::without_contacts(initial, if t_s < 0.0 { -1.0 } else { 1.0 });
     loop {
-        let step = run.step(initial).map_err(|_too_small| collapse(&run, initial))?;
+        let step = run.step(initial).map_err(|StepTooSmall| run.collapse(initial))?;
         if step.step_s != 0.0 && (step.start_s + step.step_s).abs() >= t_s.abs() {
             let h = (t_s - step.start_s) / step.step_s;
             return Ok(run.numbers().chunks_exact(PER_BODY).map(|n| evaluate(n, step.step_s, h)).collect());

@@ -1,11 +1,13 @@
 //! The integration in one direction of time: steps, contacts, changes, and what these do to the bodies.
 
 use super::changes::added;
+use super::knots::Rider;
 use super::track::evaluate;
-use super::{Contact, Outcome, State, Switch, touch};
+use super::{Contact, Outcome, State, Stopped, Switch, Why, touch};
 use crate::Vector3;
 use crate::gravity::Field;
 use crate::initial::InitialState;
+use crate::integrate::long_steps::Members;
 use crate::integrate::{PER_BODY, Radau, StepTooSmall};
 use crate::scenario::{BodyId, ChangeKind, Kick, Surface};
 
@@ -123,6 +125,52 @@ impl Run {
     pub(super) fn hosts(&self) -> impl Iterator<Item = usize> {
         let host = |body| self.at_rest.iter().find(|rest| rest.body == body).map_or(body, |rest| rest.host);
         (0..self.gms.len()).map(host)
+    }
+
+    /// The bodies that move by themselves where the integration stands, each with the mass of what rests on it.
+    pub(super) fn members(&self, initial: &InitialState) -> Members {
+        let states = self.states();
+        let pull = |&body: &usize| {
+            let resting = self.at_rest.iter().filter(|rest| rest.host == body).map(|rest| rest.body);
+            let all = std::iter::once(body).chain(resting).filter(|&body| self.acts[body]);
+            all.map(|body| self.gms[body]).sum()
+        };
+        Members::of(
+            initial,
+            self.free.clone(),
+            self.free.iter().map(pull).collect(),
+            states.iter().flat_map(|state| <[f64; 3]>::from(state.pos)).collect(),
+            states.iter().flat_map(|state| <[f64; 3]>::from(state.vel)).collect(),
+        )
+    }
+
+    /// The bodies that rest on others.
+    pub(super) fn riders(&self) -> impl Iterator<Item = Rider> {
+        self.at_rest.iter().map(|rest| Rider { body: rest.body, host: rest.host, offset: rest.offset.into() })
+    }
+
+    /// Takes a companion that is not shown as one with the body that it goes round, from where the integration stands.
+    pub(super) fn unite(&mut self, initial: &InitialState, moon: usize, host: usize) {
+        let mut states = self.states();
+        let place = |body: usize| self.free.iter().position(|&free| free == body);
+        let (Some(at), Some(onto)) = (place(moon), place(host)) else { return };
+        let share = self.gms[moon] / (self.gms[moon] + self.gms[host]);
+        let (moon_state, host_state) = (states[at], states[onto]);
+        states[onto] = State {
+            pos: host_state.pos + (moon_state.pos - host_state.pos) * share,
+            vel: host_state.vel + (moon_state.vel - host_state.vel) * share,
+        };
+        self.gms[host] += self.gms[moon];
+        self.gms[moon] = 0.0;
+        self.at_rest.push(AtRest { body: moon, host, offset: Vector3::zeros() });
+        self.free.remove(at);
+        states.remove(at);
+        self.set_off(initial, self.t_s(), &states, self.radau.step_s());
+    }
+
+    /// Goes on from other states of the free bodies at another time.
+    pub(super) fn go_on(&mut self, initial: &InitialState, t_s: f64, states: &[State], first_step_s: f64) {
+        self.set_off(initial, t_s, states, first_step_s);
     }
 
     /// Starts from states of the free bodies.
@@ -378,8 +426,15 @@ impl Run {
         }
     }
 
+    /// What stopped it when the step became too small.
+    pub(super) fn collapse(&self, initial: &InitialState) -> Stopped {
+        let bodies = self.closest().to_vec();
+        let names = bodies.iter().map(|&body| initial.name(body).to_owned()).collect();
+        Stopped { bodies, names, t_s: self.t_s(), why: Why::Collapse }
+    }
+
     /// The pair with the shortest time scale: those that fall into each other when the step becomes too small.
-    pub(super) fn closest(&self) -> [BodyId; 2] {
+    fn closest(&self) -> [BodyId; 2] {
         let gms = self.field.gms_m3_s2();
         let place = |place: usize| {
             let n = self.radau.numbers(place);

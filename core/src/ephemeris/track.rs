@@ -1,8 +1,10 @@
-//! The paths of one direction of time: of each body its own pieces, which follow one another.
+//! The paths of one direction of time: of each body its own pieces, which follow one another; or, where long steps were made, knots.
 
+use super::knots::Knots;
 use super::{State, Tolerance};
 use crate::Vector3;
 use crate::integrate::PER_BODY;
+use crate::integrate::long_steps::Choice;
 use crate::math::counts::{count_from, number_from, take};
 
 /// A part of the path of one body: the acceleration as a polynomial of the fraction of it.
@@ -72,9 +74,22 @@ impl Pieces {
     }
 }
 
+/// A stretch of time on which paths were integrated by long steps, and are kept in knots.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct LongStretch {
+    /// From when, seconds from the scenario's start.
+    pub from_s: f64,
+    /// Until when; before `from_s` where time goes back.
+    pub until_s: f64,
+    /// How many knots it has.
+    pub knots: usize,
+    /// The largest errors of paths between knots, as parts of the distance and the speed of each body on its orbit.
+    pub errors: Tolerance,
+}
+
 /// Paths from time 0 in one direction.
 ///
-/// Each step of the integrator makes a piece of every body; thinning makes one of several.
+/// Each step of the integrator makes a piece of every body; thinning makes one of several. Long steps make no pieces.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Track {
     direction: f64,
@@ -82,13 +97,25 @@ pub struct Track {
     steps: usize,
     tolerance: Tolerance,
     bodies: Vec<Pieces>,
+    /// By which long steps, where there are any.
+    choice: Option<Choice>,
+    /// In the order of the track; between them there are pieces.
+    long: Vec<Knots>,
 }
 
 impl Track {
     /// Nothing yet. `direction` is 1 for time going on, -1 for time going back.
     pub fn new(bodies: usize, direction: f64) -> Self {
         let bodies = vec![Pieces::default(); bodies];
-        Self { direction, end_s: 0.0, steps: 0, tolerance: Tolerance::ROUNDING, bodies }
+        Self {
+            direction,
+            end_s: 0.0,
+            steps: 0,
+            tolerance: Tolerance::ROUNDING,
+            bodies,
+            choice: None,
+            long: Vec::new(),
+        }
     }
 
     /// Whether nothing is covered.
@@ -106,7 +133,7 @@ impl Track {
         self.end_s
     }
 
-    /// How far at most its paths lie from the integrated ones.
+    /// How far at most its paths lie from the integrated ones, but on [`Track::long_stretches`].
     pub const fn tolerance(&self) -> Tolerance {
         self.tolerance
     }
@@ -114,7 +141,8 @@ impl Track {
     /// Takes all pieces out, to be put back by [`Track::push_piece`] within another tolerance.
     pub(super) fn start_anew(&mut self, tolerance: Tolerance) -> Self {
         let empty = vec![Pieces::default(); self.bodies.len()];
-        let old = Self { bodies: std::mem::replace(&mut self.bodies, empty), ..*self };
+        let bodies = std::mem::replace(&mut self.bodies, empty);
+        let old = Self { bodies, long: Vec::new(), ..*self };
         self.tolerance = tolerance;
         old
     }
@@ -134,6 +162,87 @@ impl Track {
         }
         self.steps += 1;
         self.end_s = start_s + step_s;
+    }
+
+    /// By which long steps it goes on where it does.
+    pub const fn choice(&self) -> Option<Choice> {
+        self.choice
+    }
+
+    /// Says by which long steps it goes on.
+    pub(super) fn set_choice(&mut self, choice: Choice) {
+        self.choice = Some(choice);
+    }
+
+    /// Begins a stretch of long steps where the track ends.
+    pub(super) fn begin_long(&mut self, knots: Knots) {
+        self.long.push(knots);
+    }
+
+    /// Ends the stretch of long steps that it is in. One of a single knot is none.
+    pub(super) fn end_long(&mut self) {
+        let Some(knots) = self.long.last_mut() else { return };
+        knots.close();
+        self.end_s = knots.settled_s();
+        if knots.len() < 2 {
+            self.long.pop();
+        }
+    }
+
+    /// Adds a knot to the stretch of long steps that it is in, after so many of them; as [`Knots::push`] does.
+    pub(super) fn push_knot(&mut self, t_s: f64, pos: &[f64], vel: &[f64], steps: usize) -> bool {
+        let Some(knots) = self.long.last_mut() else { return false };
+        let added = knots.push(t_s, pos, vel);
+        if added {
+            self.steps += steps;
+            if knots.settled_s() * self.direction > self.end_s * self.direction {
+                self.end_s = knots.settled_s();
+            }
+        }
+        added
+    }
+
+    /// Leaves out every second knot of the last stretch of long steps. False where that can't be done.
+    pub(super) fn thin_knots(&mut self) -> bool {
+        self.long.last_mut().is_some_and(Knots::thin)
+    }
+
+    /// The stretches of long steps, in the order of the track.
+    pub fn long_stretches(&self) -> impl Iterator<Item = LongStretch> {
+        self.long.iter().map(|knots| LongStretch {
+            from_s: knots.start_s(),
+            until_s: knots.settled_s(),
+            knots: knots.len(),
+            errors: knots.errors(),
+        })
+    }
+
+    /// The stretch of long steps that holds an instant, or that is the end of the track before it.
+    fn long_at(&self, t_s: f64) -> Option<&Knots> {
+        if self.long.is_empty() {
+            return None;
+        }
+        let past =
+            self.long.partition_point(|knots| knots.start_s() * self.direction <= t_s * self.direction);
+        let knots = self.long.get(past.checked_sub(1)?)?;
+        let within = t_s * self.direction < knots.settled_s() * self.direction;
+        let last = knots.settled_s() * self.direction >= self.end_s * self.direction;
+        (within || last).then_some(knots)
+    }
+
+    /// Start and end of the polynomial of a body at an instant, and just after it in the order of the track.
+    fn extent(&self, body: usize, t_s: f64) -> (f64, f64) {
+        if let Some(knots) = self.long_at(t_s) {
+            let (start_s, end_s) = knots.piece(t_s);
+            return (start_s, if end_s.abs() < self.end_s.abs() { end_s } else { self.end_s });
+        }
+        let Some(pieces) = self.bodies.get(body) else { return (t_s, self.end_s) };
+        let past = pieces.starts_s.partition_point(|start| start * self.direction <= t_s * self.direction);
+        let start_s = pieces.starts_s.get(past.max(1) - 1).copied().unwrap_or(t_s);
+        // The next piece starts to the bit where the one before it ends, unless long steps come between.
+        let end_s = pieces.starts_s.get(past).copied().unwrap_or(self.end_s);
+        let long = self.long.iter().map(Knots::start_s).find(|long_s| long_s.abs() > t_s.abs());
+        (start_s, long.map_or(end_s, |long_s| if long_s.abs() < end_s.abs() { long_s } else { end_s }))
     }
 
     /// How many pieces a body has.
@@ -167,6 +276,9 @@ impl Track {
 
     /// State of a body. Times outside the covered interval give its nearest end.
     pub fn state(&self, body: usize, t_s: f64) -> Option<State> {
+        if let Some(knots) = self.long_at(t_s) {
+            return knots.state(body, if t_s.abs() < self.end_s.abs() { t_s } else { self.end_s });
+        }
         let piece = self.find(body, t_s)?;
         Some(evaluate(piece.numbers, piece.step_s, piece.part(t_s)))
     }
@@ -180,21 +292,16 @@ impl Track {
         far_s: f64,
     ) -> impl Iterator<Item = (f64, f64)> + 'a {
         let covered = !self.is_empty() && near_s.abs() <= self.end_s.abs();
-        let first = |body: &usize| self.find(*body, near_s).map_or(0.0, |piece| piece.start_s.abs());
+        let first = |body: &usize| self.extent(*body, near_s).0.abs();
         let mut start_s = bodies.iter().map(first).fold(0.0, f64::max) * self.direction;
         let mut ended = !covered;
         std::iter::from_fn(move || {
             if ended {
                 return None;
             }
-            let next = |body: &usize| {
-                let pieces = self.bodies.get(*body)?;
-                let past =
-                    pieces.starts_s.partition_point(|s| s * self.direction <= start_s * self.direction);
-                pieces.starts_s.get(past).copied()
-            };
+            let next = |body: &usize| self.extent(*body, start_s).1;
             let end_s =
-                bodies.iter().filter_map(next).fold(self.end_s, |a, b| if b.abs() < a.abs() { b } else { a });
+                bodies.iter().map(next).fold(self.end_s, |a, b| if b.abs() < a.abs() { b } else { a });
             let stretch = (start_s, end_s - start_s);
             ended = end_s.abs() > far_s.abs() || end_s.abs() >= self.end_s.abs();
             start_s = end_s;
@@ -204,15 +311,29 @@ impl Track {
 
     /// The numbers of a body on one of its [`Track::stretches`].
     pub fn numbers(&self, body: usize, start_s: f64, step_s: f64) -> Option<[f64; PER_BODY]> {
+        if let Some(knots) = self.long_at(start_s) {
+            return knots.numbers(body, start_s, step_s);
+        }
         Some(self.find(body, start_s)?.within(start_s, step_s))
     }
 
     /// How many numbers [`Track::write`] writes.
     pub(super) fn written(&self) -> usize {
-        4 + self.bodies.iter().map(|pieces| 1 + pieces.starts_s.len() * (2 + PER_BODY)).sum::<usize>()
+        let pieces = self.bodies.iter().map(|pieces| 1 + pieces.starts_s.len() * (2 + PER_BODY));
+        4 + pieces.sum::<usize>() + 6 + self.long.iter().map(Knots::written).sum::<usize>()
     }
 
-    /// Writes it: how many steps, the end, both tolerances, and for each body how many pieces, all starts, all lengths, all polynomials.
+    /// All numbers of its long steps, if it has any.
+    pub fn long_numbers(&self) -> Vec<f64> {
+        let mut numbers = Vec::with_capacity(self.long.iter().map(Knots::written).sum());
+        for knots in &self.long {
+            knots.write(&mut numbers);
+        }
+        numbers
+    }
+
+    /// Writes it: how many steps, the end, both tolerances, and for each body how many pieces, all starts, all lengths, all
+    /// polynomials; five numbers of the choice of long steps (a step of 0: none), how many stretches of these, and each of them.
     pub(super) fn write(&self, numbers: &mut Vec<f64>) {
         let Tolerance { place, velocity } = self.tolerance;
         numbers.extend([number_from(self.steps), self.end_s, place, velocity]);
@@ -221,6 +342,14 @@ impl Track {
             numbers.extend_from_slice(&pieces.starts_s);
             numbers.extend_from_slice(&pieces.steps_s);
             numbers.extend_from_slice(&pieces.numbers);
+        }
+        numbers.extend(self.choice.map_or([0.0; 5], |choice| {
+            let Choice { centre, step_s, energy_error, trial_error_rad, trial_s } = choice;
+            [number_from(centre), step_s, energy_error, trial_error_rad, trial_s]
+        }));
+        numbers.push(number_from(self.long.len()));
+        for knots in &self.long {
+            knots.write(numbers);
         }
     }
 
@@ -234,6 +363,8 @@ impl Track {
             steps: count_from(steps)?,
             tolerance: Tolerance { place, velocity },
             bodies: Vec::new(),
+            choice: None,
+            long: Vec::new(),
         };
         for _ in 0..bodies {
             let count = count_from(*take(1)?.first()?)?;
@@ -243,14 +374,21 @@ impl Track {
                 numbers: take(count.checked_mul(PER_BODY)?)?.to_vec(),
             });
         }
+        let [centre, step_s, energy_error, trial_error_rad, trial_s] = *take(5)? else { return None };
+        if step_s > 0.0 {
+            let centre = count_from(centre).filter(|centre| *centre < bodies)?;
+            track.choice = Some(Choice { centre, step_s, energy_error, trial_error_rad, trial_s });
+        }
+        for _ in 0..count_from(*take(1)?.first()?)? {
+            track.long.push(Knots::read(bodies, numbers)?);
+        }
         Some(track)
     }
 
     /// Memory held, bytes.
     pub fn bytes(&self) -> usize {
-        self.bodies.iter().map(|pieces| pieces.starts_s.len()).sum::<usize>()
-            * (2 + PER_BODY)
-            * size_of::<f64>()
+        let pieces: usize = self.bodies.iter().map(|pieces| pieces.starts_s.len()).sum();
+        pieces * (2 + PER_BODY) * size_of::<f64>() + self.long.iter().map(Knots::bytes).sum::<usize>()
     }
 }
 

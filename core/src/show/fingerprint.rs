@@ -86,6 +86,7 @@ fn put_track(hash: &mut Sha256, track: &Track, bodies: usize) {
             put(hash, piece.numbers);
         }
     }
+    put(hash, &track.long_numbers());
 }
 
 fn put(hash: &mut Sha256, numbers: &[f64]) {

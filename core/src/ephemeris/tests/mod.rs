@@ -7,6 +7,7 @@ use crate::scenario::{BodyId, Surface};
 
 mod changes;
 mod contacts;
+mod long;
 mod orbits;
 mod relativity;
 mod softening;

@@ -226,7 +226,7 @@ fn thinned_paths_keep_their_contacts() {
 fn what_fits_at_no_tolerance_is_said() {
     let mut propagation = Propagation::with_most_bytes(&comet_and_moon(), 200_000);
     let stopped = propagation.advance(1e6, usize::MAX).unwrap_err();
-    assert_eq!(stopped.why, crate::ephemeris::Why::TooLong { most_bytes: 200_000 });
+    assert!(matches!(stopped.why, crate::ephemeris::Why::TooLong { .. }), "{stopped}");
     assert!(stopped.t_s > 10.0);
     near("the end", propagation.ephemeris().until_s(), stopped.t_s, 1e-12);
 }

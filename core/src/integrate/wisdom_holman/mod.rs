@@ -338,7 +338,7 @@ impl WisdomHolman {
 
     /// What is the matter within so many steps both ways, if anything is, with each pair on its straight way.
     #[cold]
-    pub(super) fn trouble_within(&self, steps: f64) -> Option<Trouble> {
+    pub(crate) fn trouble_within(&self, steps: f64) -> Option<Trouble> {
         let n = self.planets.len();
         let distance = |i: usize| dot(self.rows.pos_of(i), self.rows.pos_of(i)).sqrt();
         let nearest = (0..n).min_by(|&a, &b| distance(a).total_cmp(&distance(b)))?;
