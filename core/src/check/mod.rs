@@ -32,6 +32,7 @@
 mod comfort;
 mod finding;
 mod flash;
+mod method;
 mod motion;
 mod near;
 #[cfg(test)]
@@ -178,6 +179,7 @@ impl Checking {
             beats: vec![BeatReport::default(); show.plan.beats.len()],
             bytes: show.ephemeris.bytes() + show.swarms.iter().map(|path| path.bytes()).sum::<usize>(),
             most_bytes: SHOW_BYTES,
+            method: method::told(&show),
             ..Report::default()
         };
         Self { proven: Proven { show, notes, report }, todo }

@@ -2,6 +2,7 @@
 
 use super::report::Encounter;
 use crate::ephemeris::events::{self, Query};
+use crate::ephemeris::{Ephemeris, Track};
 use crate::math::float;
 use crate::scenario::{BodyId, EventKind};
 use crate::show::{PlannedBeat, Show};
@@ -127,7 +128,11 @@ impl Pair {
         let Self { body, other, touch_m, .. } = *self;
         let primary = show.initial.bodies.get(body.0).and_then(|one| one.primary);
         let kind = self.query.kind;
-        let passes = events::find(&show.ephemeris, &show.initial, &self.query, from_s, until_s);
+        let passes = exact_parts(&show.ephemeris, from_s, until_s)
+            .flat_map(|(from_s, until_s)| {
+                events::find(&show.ephemeris, &show.initial, &self.query, from_s, until_s)
+            })
+            .collect::<Vec<_>>();
         for t_s in passes.iter().map(|event| event.t_s) {
             let Some(state) = show.ephemeris.relative(body, other, t_s) else { continue };
             if resting(show, body, other, t_s) {
@@ -159,6 +164,24 @@ impl Pair {
         }
         best
     }
+}
+
+/// The parts of an interval on which paths are exact. On the others nothing comes near: there long steps are left before it does.
+fn exact_parts(eph: &Ephemeris, from_s: f64, until_s: f64) -> impl Iterator<Item = (f64, f64)> {
+    let mut long: Vec<(f64, f64)> = [eph.backward(), eph.forward()]
+        .into_iter()
+        .flat_map(Track::long_stretches)
+        .map(|stretch| (stretch.from_s.min(stretch.until_s), stretch.from_s.max(stretch.until_s)))
+        .collect();
+    long.sort_by(|a, b| a.0.total_cmp(&b.0));
+    long.push((until_s, until_s));
+    let mut start_s = from_s;
+    let parts = long.into_iter().map(move |(a_s, b_s)| {
+        let part = (start_s, a_s.min(until_s));
+        start_s = start_s.max(b_s);
+        part
+    });
+    parts.filter(|(start_s, end_s)| start_s < end_s)
 }
 
 /// Whether either lies on something, or has become part of it: what they touch is told as a contact.

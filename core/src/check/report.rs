@@ -22,6 +22,8 @@ pub struct Report {
     pub bytes: usize,
     /// Memory that it may take, bytes.
     pub most_bytes: usize,
+    /// By which method the paths were integrated, and why: whole sentences.
+    pub method: Vec<String>,
 }
 
 impl Report {

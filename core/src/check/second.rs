@@ -13,8 +13,11 @@ use crate::show::Show;
 /// Length of its steps, in those of the first.
 const STEP_SHARE: f64 = 0.5;
 
-/// Most memory of the second run, bytes: twice the steps, and something to spare.
-const MOST_BYTES: usize = 3 * SHOW_BYTES;
+/// Most memory of the second run, bytes: twice the steps, and something to spare. Where the show goes on by long steps, so shall this.
+fn most_bytes(show: &Show) -> usize {
+    let tracks = [show.ephemeris.forward(), show.ephemeris.backward()];
+    if tracks.iter().any(|track| track.choice().is_some()) { SHOW_BYTES } else { 3 * SHOW_BYTES }
+}
 
 /// Pieces of a beat between the instants compared.
 const PIECES: u32 = 200;
@@ -36,7 +39,8 @@ pub(super) struct Second {
 impl Second {
     pub(super) fn new(show: &Show) -> Self {
         let (from_s, until_s) = sight::shown_s(show);
-        let propagation = Propagation::with_most_bytes(&show.initial, MOST_BYTES).with_step_share(STEP_SHARE);
+        let propagation =
+            Propagation::with_most_bytes(&show.initial, most_bytes(show)).with_step_share(STEP_SHARE);
         // Time 0 is always covered: whatever is asked of an ephemeris leans on a first step.
         let mut ends_s = vec![until_s.max(0.0)];
         if from_s < 0.0 {

@@ -93,6 +93,8 @@ pub(super) fn of(file: &str, shown: &Shown) -> Value {
             "place": show.ephemeris.tolerance().place,
             "velocity": show.ephemeris.tolerance().velocity,
         },
+        "method": report.method,
+        "long_steps": long_steps(show),
         "bytes": report.bytes,
         "most_bytes": report.most_bytes,
         "energy_error": shown.energy_error,
@@ -108,6 +110,24 @@ pub(super) fn of(file: &str, shown: &Shown) -> Value {
         "findings": report.findings.iter().map(finding).collect::<Vec<_>>(),
         "problems": problems(&shown.proven.notes),
     })
+}
+
+/// The stretches of long steps, in the order of time from the start on, and then of that back from it.
+fn long_steps(show: &Show) -> Vec<Value> {
+    let tracks = [show.ephemeris.forward(), show.ephemeris.backward()];
+    let stretches = tracks.into_iter().flat_map(|track| {
+        track.long_stretches().map(move |stretch| {
+            json!({
+                "from_s": stretch.from_s,
+                "until_s": stretch.until_s,
+                "step_s": track.choice().map(|choice| choice.step_s),
+                "knots": stretch.knots,
+                "place": stretch.errors.place,
+                "velocity": stretch.errors.velocity,
+            })
+        })
+    });
+    stretches.collect()
 }
 
 fn problems(problems: &[Problem]) -> Vec<Value> {

@@ -80,6 +80,9 @@ fn whole(shown: &Shown, line: &mut impl FnMut(String)) {
         time(show.ephemeris.until_s()),
         show.ephemeris.forward().len() + show.ephemeris.backward().len()
     ));
+    for (index, sentence) in report.method.iter().enumerate() {
+        line(format!("  {:11}  {sentence}", if index == 0 { "method" } else { "" }));
+    }
     let tolerance = show.ephemeris.tolerance();
     line(format!(
         "  paths        thinned to {:.0e} of distances and {:.0e} of speeds",
