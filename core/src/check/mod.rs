@@ -32,6 +32,7 @@
 mod comfort;
 mod finding;
 mod flash;
+mod kicks;
 mod method;
 mod motion;
 mod near;

@@ -5,6 +5,7 @@ use super::report::BeatReport;
 use super::sight::{FRAME_S, Seen, called};
 use crate::ephemeris::Outcome;
 use crate::scenario::{BodyId, Mark};
+use crate::show::PlannedBeat;
 use std::f64::consts::TAU;
 
 /// Pieces of a beat between the instants looked at.
@@ -35,7 +36,7 @@ struct Seenness {
 
 /// Looks at a beat.
 pub(super) fn check(seen: &Seen<'_>, report: &mut BeatReport, findings: &mut Vec<Finding>) {
-    let show = seen.show;
+    let (show, from_s) = (seen.show, seen.planned.from_s);
     findings.extend(lost_centre(seen));
     let marked = marked(&seen.beat.marks);
     let moving = moving(&seen.beat.marks);
@@ -79,7 +80,7 @@ pub(super) fn check(seen: &Seen<'_>, report: &mut BeatReport, findings: &mut Vec
                 "widen or move the view, or drop its marks",
             );
         }
-        let rest = show.ephemeris.at_rest(body, seen.planned.from_s);
+        let rest = show.ephemeris.at_rest(body, from_s).filter(|_| !is_released(seen, body));
         if let Some(rest) = rest.filter(|_| moving.contains(&body)) {
             add(
                 format!(
@@ -90,6 +91,13 @@ pub(super) fn check(seen: &Seen<'_>, report: &mut BeatReport, findings: &mut Vec
             );
         }
     }
+}
+
+/// Whether a body is kicked off what it rests on while the beat lasts.
+fn is_released(seen: &Seen<'_>, body: BodyId) -> bool {
+    let PlannedBeat { from_s, until_s, .. } = *seen.planned;
+    let mut releases = seen.show.ephemeris.releases().iter();
+    releases.any(|release| release.body == body && (from_s..until_s).contains(&release.t_s))
 }
 
 /// A view that follows what is no longer there.

@@ -5,7 +5,7 @@ use super::reach::Lateness;
 use super::report::Report;
 use super::second::Second;
 use super::sight;
-use super::{motion, reach};
+use super::{kicks, motion, reach};
 use crate::show::Show;
 
 /// Frames of the show clock that take about as long as a step of the integrator.
@@ -73,7 +73,10 @@ impl Passes {
                 motion::check(&seen, of_beat, findings);
                 None
             }
-            (Pass::Motion, None) => Some(Pass::Near),
+            (Pass::Motion, None) => {
+                kicks::check(show, findings);
+                Some(Pass::Near)
+            }
             (Pass::Near, _) => {
                 if !self.near.work(show) {
                     return false;

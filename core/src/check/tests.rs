@@ -188,6 +188,30 @@ fn bodies_that_lie_before_they_are_to_move_are_found() {
 }
 
 #[test]
+fn kicks_that_come_to_nothing_are_found_and_those_that_lift_it_off_are_not() {
+    let beat = "[[beat]]\ntitle = \"Up\"\nstart = { time = \"30 s\" }\nclock = { span = \"60 s\", lasts = \"20 s\" }\n\
+                view = { centre = \"Ball\", span = \"300 m\" }\nmarks = [\"velocity of Ball\"]\n";
+    let kicked = |speed: &str| {
+        let change = format!(
+            "[[change]]\nat = \"40 s\"\nkick = \"Ball\"\nspeed = \"{speed}\"\nalong = \"outwards\"\n"
+        );
+        proven(BALL, &format!("{change}{beat}"))
+    };
+    let up = kicked("10 m/s");
+    assert!(about(&up, Topic::Motion).is_empty(), "{:#?}", up.report.findings);
+    assert_eq!(up.show.ephemeris.releases().len(), 1);
+    let down = kicked("-10 m/s");
+    let finding = found(&down, Topic::Motion, "change 1 kicks Ball, which lies on Skerry then");
+    assert_eq!(finding.place, down.show.scenario.changes[0].place);
+    found(&down, Topic::Motion, "is to move in beat 1, but lies on Skerry");
+    let merging = BALL.replace("radius = \"1737 km\"", "radius = \"1737 km\"\nsurface = \"merge\"");
+    let change = "[[change]]\nat = \"40 s\"\nkick = \"Ball\"\nspeed = \"9 m/s\"\nalong = \"outwards\"\n";
+    let part =
+        proven(&merging, &format!("{change}{}", beat.replace("centre = \"Ball\"", "centre = \"Skerry\"")));
+    found(&part, Topic::Motion, "change 1 kicks Ball, which is part of Skerry by then");
+}
+
+#[test]
 fn a_view_of_what_has_merged_is_found() {
     let merging = BALL.replace("radius = \"1737 km\"", "radius = \"1737 km\"\nsurface = \"merge\"");
     let beats = "[[beat]]\ntitle = \"Fall\"\nclock = { span = \"30 s\", lasts = \"20 s\" }\nview = { centre = \"Ball\", span = \"300 m\" }\n\

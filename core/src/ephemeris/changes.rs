@@ -15,6 +15,15 @@ pub struct Switch {
     pub on: bool,
 }
 
+/// A body that rested on another, and was kicked off it.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Release {
+    /// When, seconds from the scenario's start; not negative.
+    pub t_s: f64,
+    /// Which body. What rests on it goes along.
+    pub body: BodyId,
+}
+
 /// What a kick adds to the velocity of a body that moves so relative to what the kick is about, m/s.
 pub(super) fn added(kick: &Kick, relative: &State) -> Vector3<f64> {
     match kick {

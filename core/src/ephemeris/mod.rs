@@ -24,7 +24,7 @@ pub mod track;
 mod way;
 
 pub use crate::integrate::PER_BODY;
-pub use changes::Switch;
+pub use changes::{Release, Switch};
 pub use flat::Malformed;
 pub use propagation::{Propagation, SHOW_BYTES, Stopped, Why, states_at};
 pub use thin::Tolerance;
@@ -69,7 +69,7 @@ pub struct Contact {
 
 /// The paths of all bodies over an interval that contains time 0.
 ///
-/// A body that rests on another, or became part of it, goes on with that other body.
+/// A body that rests on another, or became part of it, goes on with that other body, until it is kicked off it.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Ephemeris {
     gms: Vec<f64>,
@@ -77,6 +77,7 @@ pub struct Ephemeris {
     backward: Track,
     contacts: Vec<Contact>,
     switches: Vec<Switch>,
+    releases: Vec<Release>,
 }
 
 impl Ephemeris {
@@ -89,6 +90,7 @@ impl Ephemeris {
             backward: Track::new(n, -1.0),
             contacts: Vec::new(),
             switches: Vec::new(),
+            releases: Vec::new(),
         }
     }
 
@@ -157,12 +159,19 @@ impl Ephemeris {
         &self.contacts
     }
 
-    /// The contact after which a body no longer moves by itself, if it has come by that instant.
+    /// The contact since which a body has not moved by itself, where it doesn't at that instant.
     pub fn at_rest(&self, body: BodyId, t_s: f64) -> Option<&Contact> {
-        self.contacts.iter().find(|c| {
+        let last = self.contacts.iter().rfind(|c| {
             let past = if c.t_s >= 0.0 { c.t_s <= t_s } else { c.t_s >= t_s };
             past && c.body == body && c.outcome != Outcome::Bounced
-        })
+        });
+        // A kick at the instant of a contact comes after it.
+        last.filter(|c| !self.releases.iter().any(|r| r.body == body && r.t_s >= c.t_s && r.t_s <= t_s))
+    }
+
+    /// The bodies that were kicked off those on which they rested, in the order of time.
+    pub fn releases(&self) -> &[Release] {
+        &self.releases
     }
 
     /// The paths from time 0 on.
@@ -188,11 +197,6 @@ impl Ephemeris {
     /// Notes a contact.
     pub fn push_contact(&mut self, contact: Contact) {
         self.contacts.push(contact);
-    }
-
-    /// Notes that the gravity of a body was switched.
-    pub fn push_switch(&mut self, switch: Switch) {
-        self.switches.push(switch);
     }
 
     /// How far at most its paths lie from the integrated ones.

@@ -1,21 +1,18 @@
 //! The integration in one direction of time: steps, contacts, changes, and what these do to the bodies.
 
+mod lift;
+
 use super::changes::added;
 use super::knots::Rider;
 use super::track::evaluate;
-use super::{Contact, Outcome, State, Stopped, Switch, Why, touch};
+use super::{Contact, Outcome, Release, State, Stopped, Switch, Why, touch};
 use crate::Vector3;
 use crate::gravity::Field;
 use crate::initial::InitialState;
 use crate::integrate::long_steps::Members;
 use crate::integrate::{PER_BODY, Radau, StepTooSmall};
 use crate::scenario::{BodyId, ChangeKind, Kick, Surface};
-
-/// A rebound that brings a body back within this time is not seen any more, s.
-const SHORTEST_REBOUND_S: f64 = 0.01;
-
-/// As [`SHORTEST_REBOUND_S`], as a part of the time scale √(r³ / GM) of the surface.
-const SHORTEST_REBOUND: f64 = 1e-5;
+use lift::{Laid, is_seen};
 
 /// When a contact is noted that happens at the very start of the backward run, s: it belongs to the time before 0.
 const JUST_BEFORE_START_S: f64 = -1e-9;
@@ -35,6 +32,7 @@ pub(super) struct Step {
     pub(super) step_s: f64,
     pub(super) contact: Option<Contact>,
     pub(super) switches: Vec<Switch>,
+    pub(super) releases: Vec<Release>,
     /// Whether the motion goes on otherwise from its end: a contact, or a change.
     pub(super) cut: bool,
 }
@@ -45,6 +43,7 @@ pub(super) struct Run {
     /// The bodies that move by themselves.
     free: Vec<usize>,
     at_rest: Vec<AtRest>,
+    laid: Vec<Laid>,
     /// GM of every body, after merges.
     gms: Vec<f64>,
     /// Whether the gravity of each body acts.
@@ -79,6 +78,7 @@ impl Run {
         let mut run = Self {
             free: (0..n).collect(),
             at_rest: Vec::new(),
+            laid: Vec::new(),
             gms,
             acts: vec![true; n],
             changed: if direction < 0.0 { initial.changes.len() } else { 0 },
@@ -211,8 +211,8 @@ impl Run {
         let start_s = self.radau.t_s();
         let change_s = initial.changes.get(self.changed).map(|change| change.t_s);
         if let Some(t_s) = change_s.filter(|&t_s| t_s <= start_s) {
-            let switches = self.change(initial, t_s, self.states(), self.radau.step_s());
-            return Ok(Step { start_s, step_s: 0.0, contact: None, switches, cut: true });
+            let (switches, releases) = self.change(initial, t_s, self.states(), self.radau.step_s());
+            return Ok(Step { start_s, step_s: 0.0, contact: None, switches, releases, cut: true });
         }
         self.radau.state(&mut self.pos, &mut self.vel);
         if let Some(longest_s) = self.field.longest_step_s(&self.pos, &self.vel) {
@@ -235,20 +235,22 @@ impl Run {
                     step_s: whole_s,
                     contact: None,
                     switches: Vec::new(),
+                    releases: Vec::new(),
                     cut: false,
                 });
             };
             let step_s = change_s - start_s;
             let states = self.cut(whole_s, step_s / whole_s);
-            let switches = self.change(initial, change_s, states, whole_s);
-            return Ok(Step { start_s, step_s, contact: None, switches, cut: true });
+            let (switches, releases) = self.change(initial, change_s, states, whole_s);
+            return Ok(Step { start_s, step_s, contact: None, switches, releases, cut: true });
         };
         let step_s = t_s - start_s;
         let mut states = self.cut(whole_s, step_s / whole_s);
         let mut contact = self.collide(initial, i, j, &mut states);
         contact.t_s = if whole_s < 0.0 && t_s >= 0.0 { JUST_BEFORE_START_S } else { t_s };
         self.set_off(initial, t_s, &states, whole_s);
-        Ok(Step { start_s, step_s, contact: Some(contact), switches: Vec::new(), cut: true })
+        let (switches, releases) = (Vec::new(), Vec::new());
+        Ok(Step { start_s, step_s, contact: Some(contact), switches, releases, cut: true })
     }
 
     /// Ends the step at a part of it, and gives the states there.
@@ -275,8 +277,8 @@ impl Run {
         t_s: f64,
         mut states: Vec<State>,
         step_s: f64,
-    ) -> Vec<Switch> {
-        let mut switches = Vec::new();
+    ) -> (Vec<Switch>, Vec<Release>) {
+        let (mut switches, mut releases) = (Vec::new(), Vec::new());
         while let Some(change) = initial.changes.get(self.changed).filter(|change| change.t_s <= t_s) {
             self.changed += 1;
             match &change.what {
@@ -291,17 +293,23 @@ impl Run {
                     };
                     let still = State { pos: Vector3::zeros(), vel: Vector3::zeros() };
                     let from = about.map_or(still, |about| self.state_among(about.0, &states));
-                    if let Some(place) = self.free.iter().position(|&body| body == change.body.0) {
-                        let State { pos, vel } = states[place];
-                        states[place].vel += added(kick, &State { pos: pos - from.pos, vel: vel - from.vel });
+                    let body = change.body.0;
+                    let State { pos, vel } = self.state_among(body, &states);
+                    let kick = added(kick, &State { pos: pos - from.pos, vel: vel - from.vel });
+                    if let Some(place) = self.free.iter().position(|&free| free == body) {
+                        states[place].vel += kick;
+                    } else if self.release(body, kick, &mut states) {
+                        releases.push(Release { t_s, body: change.body });
                     }
                 }
             }
         }
         let gms: Vec<f64> = self.free.iter().map(|&body| self.gms[body]).collect();
-        let next_s = if step_s == 0.0 { first_step_s(&gms, &states) } else { step_s };
+        // What was at rest may have left steps of any length.
+        let anew = step_s == 0.0 || !releases.is_empty();
+        let next_s = if anew { first_step_s(&gms, &states) } else { step_s };
         self.set_off(initial, t_s, &states, next_s);
-        switches
+        (switches, releases)
     }
 
     /// State of a body, given those of the free ones: of one at rest, from what it rests on.
@@ -384,15 +392,9 @@ impl Run {
             Surface::Merge => Outcome::Merged,
             Surface::Stop => Outcome::Stopped,
             Surface::Bounce { restitution } => {
-                let rebound_m_s = restitution * closing_m_s;
                 let along2 = rate.norm_squared() - closing_m_s * closing_m_s;
-                let gm = host_gm + body_gm;
-                let back_m_s2 = gm / (distance_m * distance_m) - along2 / distance_m;
-                let shortest_s = SHORTEST_REBOUND_S
-                    .max(SHORTEST_REBOUND * (distance_m * distance_m * distance_m / gm).sqrt());
-                // Also false where the rebound isn't a number.
-                let visible = rebound_m_s > 0.0 && 2.0 * rebound_m_s > shortest_s * back_m_s2;
-                if visible { Outcome::Bounced } else { Outcome::Stopped }
+                let rises = is_seen(restitution * closing_m_s, along2, distance_m, host_gm + body_gm);
+                if rises { Outcome::Bounced } else { Outcome::Stopped }
             }
         };
         // Shares of the impulse; two tracers: the smaller one takes all of it.
@@ -409,7 +411,9 @@ impl Run {
                 rest.offset += apart;
             }
             self.at_rest.push(AtRest { body, host, offset: apart });
-            if outcome == Outcome::Merged {
+            let merged = outcome == Outcome::Merged;
+            self.laid.push(Laid { body, onto: host, merged });
+            if merged {
                 self.gms[host] += self.gms[body];
                 self.gms[body] = 0.0;
             }

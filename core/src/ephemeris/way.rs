@@ -77,9 +77,10 @@ impl Way {
             if let Some(long) = &mut self.long {
                 long.try_on(&mut self.run, initial, track, &mut self.thinner);
             }
-            let Step { contact, switches, .. } = step;
+            let Step { contact, switches, releases, .. } = step;
             ephemeris.contacts.extend(contact);
             ephemeris.switches.extend(switches);
+            ephemeris.releases.extend(releases);
         }
         let track = if self.backward { &mut ephemeris.backward } else { &mut ephemeris.forward };
         self.keep(initial, track)

@@ -284,7 +284,12 @@ pub const CHANGE: Section = Section {
         ),
         key("gravity", "body", r#""Orla""#, "the body whose gravity is switched"),
         key("on", "true or false", "false", "with gravity: whether it acts from then on"),
-        key("kick", "body", r#""Ball""#, "the body whose velocity changes, unless it rests on another"),
+        key(
+            "kick",
+            "body",
+            r#""Ball""#,
+            "the body whose velocity changes; one that rests on another leaves it if that lifts it off",
+        ),
         key("speed", "speed", r#""200 m/s""#, "with kick: by how much; negative: backwards"),
         key(
             "along",

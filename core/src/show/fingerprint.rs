@@ -45,6 +45,11 @@ impl Fingerprint {
             put_count(&mut hash, outcome);
             put(&mut hash, &[contact.t_s, contact.speed_m_s, contact.onto_gm_m3_s2]);
         }
+        put_count(&mut hash, show.ephemeris.releases().len());
+        for release in show.ephemeris.releases() {
+            put_count(&mut hash, release.body.0);
+            put(&mut hash, &[release.t_s]);
+        }
         for swarm in &show.swarms {
             let numbers = swarm.to_numbers();
             put_count(&mut hash, numbers.len());

@@ -7,6 +7,7 @@ use crate::scenario::{BodyId, Surface};
 
 mod changes;
 mod contacts;
+mod kicks;
 mod long;
 mod orbits;
 mod relativity;

@@ -47,7 +47,7 @@ pub enum ChangeKind {
         /// Whether it acts from then on.
         on: bool,
     },
-    /// Its velocity changes. A body that rests on another keeps its place.
+    /// Its velocity changes. A body that rests on another leaves it where that lifts it off, and else keeps its place.
     Kick(Kick),
 }
 
