@@ -94,7 +94,7 @@ pub struct Forces {
     pub atmospheres: Vec<Atmosphere>,
     /// Bodies that air slows.
     pub drags: Vec<Drag>,
-    /// Over which length Newton's attraction is softened, m; 0: bodies attract as points. Never beside relativity, oblate bodies or swarms.
+    /// Over which length Newton's attraction is softened, m; 0: bodies attract as points. Never beside relativity or oblate bodies.
     pub softening_m: f64,
 }
 

@@ -96,7 +96,7 @@ pub const PHYSICS: Section = Section {
             "softening",
             "length",
             r#""1000 km""#,
-            "length below which gravity fades instead of growing without bound (Plummer's form); without real bodies, swarms, relativity and oblateness alone",
+            "length below which gravity fades instead of growing without bound (Plummer's form); without real bodies, relativity and oblateness alone",
         ),
     ],
 };

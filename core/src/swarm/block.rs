@@ -338,6 +338,15 @@ impl Block {
 
     /// Accelerations at the places of the block, into a slot.
     fn pull(&mut self, field: &Field, node: &Node, slot: usize) {
+        if field.softened2_m2 > 0.0 {
+            self.pull_by::<true>(field, node, slot);
+        } else {
+            self.pull_by::<false>(field, node, slot);
+        }
+    }
+
+    /// With softening or without: points are pulled by what costs nothing more than that.
+    fn pull_by<const SOFT: bool>(&mut self, field: &Field, node: &Node, slot: usize) {
         let acc = &mut self.acc[slot];
         for from in (0..self.width).step_by(LANES) {
             let (mut x, mut y, mut z) = ([0.0; LANES], [0.0; LANES], [0.0; LANES]);
@@ -350,7 +359,10 @@ impl Block {
             for (source, at) in sources.iter().zip(at) {
                 for l in 0..LANES {
                     let d = [at[0] - x[l], at[1] - y[l], at[2] - z[l]];
-                    let r2 = d[0] * d[0] + d[1] * d[1] + d[2] * d[2];
+                    let mut r2 = d[0] * d[0] + d[1] * d[1] + d[2] * d[2];
+                    if SOFT {
+                        r2 += field.softened2_m2;
+                    }
                     let w = source.gm / (r2 * r2.sqrt());
                     ax[l] += w * d[0];
                     ay[l] += w * d[1];

@@ -29,6 +29,8 @@ pub(super) struct Field {
     /// Those with mass first.
     pub(super) sources: Vec<Source>,
     pub(super) massive: usize,
+    /// Square of the length over which the sources' attraction is softened (`gravity::softening`), m²; 0: they attract as points.
+    pub(super) softened2_m2: f64,
     /// Of sources, by their places among them.
     bulges: Vec<Bulge>,
     airs: Vec<Air>,
@@ -120,7 +122,8 @@ impl Field {
                 })
             })
             .collect();
-        Self { about, inertial, sources, massive, bulges, airs }
+        let softening_m = initial.forces.softening_m;
+        Self { about, inertial, sources, massive, softened2_m2: softening_m * softening_m, bulges, airs }
     }
 
     /// Where the origin is, barycentric, and how it moves.
@@ -155,8 +158,7 @@ impl Field {
         let mut acc = node.shift.map(|a| -a);
         for (source, at) in self.sources[..self.massive].iter().zip(&node.at) {
             let d = [at[0] - pos[0], at[1] - pos[1], at[2] - pos[2]];
-            let r2 = d[0] * d[0] + d[1] * d[1] + d[2] * d[2];
-            let w = source.gm / (r2 * r2.sqrt());
+            let w = source.gm / self.cube(d);
             for axis in 0..3 {
                 acc[axis] += w * d[axis];
             }
@@ -176,6 +178,17 @@ impl Field {
             }
         }
         acc
+    }
+
+    /// The cube of a distance by which pulls go, softened.
+    fn cube(&self, d: [f64; 3]) -> f64 {
+        let r2 = d[0] * d[0] + d[1] * d[1] + d[2] * d[2] + self.softened2_m2;
+        r2 * r2.sqrt()
+    }
+
+    /// Time in which what passes through the middle of a source turns by a radian, s: nothing near it goes faster. 0 without softening.
+    pub(super) fn softest_s(&self, source: usize) -> f64 {
+        (self.softened2_m2 * self.softened2_m2.sqrt() / self.sources[source].gm).sqrt()
     }
 
     /// Whether there is air that slows tracers.
@@ -207,7 +220,7 @@ impl Field {
     /// The source that pulls most at a place.
     pub(super) fn strongest(&self, node: &Node, pos: [f64; 3]) -> Option<usize> {
         (0..self.massive).max_by(|&a, &b| {
-            let pull = |n: usize| self.sources[n].gm / square_apart(node.at[n], pos);
+            let pull = |n: usize| self.sources[n].gm / (square_apart(node.at[n], pos) + self.softened2_m2);
             pull(a).total_cmp(&pull(b))
         })
     }
@@ -224,8 +237,7 @@ impl Field {
         for (member, place) in self.sources.iter().zip(at).filter(|(member, _)| member.share > 0.0) {
             for (source, from) in self.sources.iter().zip(at).filter(|(source, _)| source.share <= 0.0) {
                 let r = apart(*place, *from);
-                let r2 = r[0] * r[0] + r[1] * r[1] + r[2] * r[2];
-                let w = member.share * source.gm / (r2 * r2.sqrt());
+                let w = member.share * source.gm / self.cube(r);
                 for axis in 0..3 {
                     shift[axis] -= w * r[axis];
                 }

@@ -4,7 +4,7 @@
 //! is little: states at sparse instants, from which every other is integrated again, always by the same steps. So where a tracer is
 //! at an instant is a function of that instant alone, to the bit, whatever was looked at before.
 //!
-//! They feel Newton's attraction of all bodies, the bulges of oblate ones and air. Relativity is left out for them: in ten years it turns the orbit
+//! They feel Newton's attraction of all bodies, softened where that of the bodies is, the bulges of oblate ones and air. Relativity is left out for them: in ten years it turns the orbit
 //! of a tracer at 2 au by less than a thousandth of a degree. Tracers that touch a body are gone.
 //!
 //! Most go in blocks, by a multistep method with one evaluation of the pulls a step (`block`). Those that come near to a body, or into air, leave

@@ -58,13 +58,13 @@ pub(super) fn exponent(field: &Field, motions: &[Motion], node: &Node, state: &[
     for (n, source) in field.sources[..field.massive].iter().enumerate() {
         let (r, v) = relative(node, n, pos, vel);
         let r2 = dot(r, r);
-        felt_m_s2 = felt_m_s2.max(source.gm / r2);
+        felt_m_s2 = felt_m_s2.max(source.gm / (r2 + field.softened2_m2));
         let here_s = (cube(r2.sqrt()) / source.gm).sqrt();
         // Only a bound orbit is sure to come to its periapsis.
         let bound = dot(v, v) * r2.sqrt() < 2.0 * source.gm;
         let scale_s =
             if bound { shortest_s(source.gm, r, v).max(LEAST_FOR_PERIAPSIS * here_s) } else { here_s };
-        least_s = least_s.min(scale_s);
+        least_s = least_s.min(scale_s.max(field.softest_s(n)));
     }
     if !least_s.is_finite() {
         return EXPONENTS.1;

@@ -11,6 +11,8 @@ use crate::scenario::{ChangeKind, Kick, Surface};
 use crate::solar_system::{PLANETS, solar_system};
 use crate::units::Speed;
 
+mod softening;
+
 const GM: f64 = 1.327e20;
 const AU: f64 = 1.496e11;
 const YEAR_S: f64 = 3.156e7;

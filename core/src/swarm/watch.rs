@@ -59,12 +59,14 @@ impl Watch {
         // What is felt most, and how fast things pass here.
         let (felt_m_s2, speed_m_s) = circled.map_or((0.0, 0.0), |n| {
             let (r2, v2) = apart(n);
-            (field.sources[n].gm / r2, v2.sqrt())
+            (field.sources[n].gm / (r2 + field.softened2_m2), v2.sqrt())
         });
         let step = step_s.abs();
         let bound = |(n, source): (usize, &super::field::Source)| {
             let bent = source.gm * step * step / (MOST_BENT * MOST_BENT);
-            let resolved_m = crate::math::float::cbrt(bent);
+            // Where the cube of the softened distance is that.
+            let softened_m = crate::math::float::cbrt(bent);
+            let resolved_m = (softened_m * softened_m - field.softened2_m2).max(0.0).sqrt();
             let within_m = resolved_m.max(field.reach_m(n));
             let passes = source.gm > 0.0 && circled != Some(n);
             let beyond_m = 8.0 * speed_m_s * step;

@@ -72,8 +72,8 @@ pub struct Physics {
     pub drag: Option<bool>,
     /// Whether the solar-system bodies that the file doesn't name pull on its `real` ones, unseen; on unless stated.
     pub companions: Option<bool>,
-    /// Length over which Newton's attraction is softened; `None`: bodies attract as points. Never beside relativity, oblateness,
-    /// swarms or `real` bodies.
+    /// Length over which Newton's attraction is softened; `None`: bodies attract as points. Never beside relativity, oblateness
+    /// or `real` bodies.
     pub softening: Option<Length>,
 }
 

@@ -165,7 +165,7 @@ fn read(top: &Reading<'_>) -> Option<Scenario> {
     let mut read: Vec<Option<bodies::ReadBody>> = sections.iter().map(|s| bodies::read(s, &names)).collect();
     relations::check(&sections, &read, &names);
     bodies::check_real(&read, date, top);
-    let physics = physics::read(top, &read, !of_swarms.is_empty());
+    let physics = physics::read(top, &read);
     bodies::give_kinds(&mut read);
     bodies::give_colours(&mut read);
     let swarms = swarms::read(&of_swarms, &sections, &names);

@@ -6,7 +6,7 @@ use super::super::reader::Reading;
 use super::bodies::ReadBody;
 
 /// What the scenario says of physics, if anything.
-pub(super) fn read(top: &Reading<'_>, bodies: &[Option<ReadBody>], swarms: bool) -> Physics {
+pub(super) fn read(top: &Reading<'_>, bodies: &[Option<ReadBody>]) -> Physics {
     let Some(table) = top.get("physics").and_then(|field| field.table(&grammar::PHYSICS)) else {
         return Physics::default();
     };
@@ -24,10 +24,6 @@ pub(super) fn read(top: &Reading<'_>, bodies: &[Option<ReadBody>], swarms: bool)
                 let wrong = format!("softening does not go with {key}");
                 table.report().error(&field.key_at, wrong, "leave one of them out");
             }
-        }
-        if swarms {
-            let wrong = "softening does not act on swarms";
-            table.report().error(&field.key_at, wrong, "leave it out, or leave the swarms out");
         }
         let real = bodies.iter().flatten().find(|read| matches!(read.body.form, Form::Real(_)));
         if let Some(real) = real {
@@ -59,11 +55,6 @@ mod tests {
             ("softening = \"1 km\"\noblateness = true", "", "5:1: softening does not go with oblateness"),
             ("softening = \"0 km\"", "", "softening is 0 km; it must be more than 0"),
             ("softening = \"3 s\"", "", "s is a time"),
-            (
-                "softening = \"1 km\"",
-                "[[body]]\nname = \"Dust\"\nswarm = { shape = \"cloud\", about = \"Orla\" }\n",
-                "5:1: softening does not act on swarms",
-            ),
             (
                 "softening = \"1 km\"",
                 "[[body]]\nname = \"Mars\"\nreal = \"Mars\"\n",
