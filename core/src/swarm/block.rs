@@ -6,9 +6,11 @@
 
 use super::field::{Field, Node};
 use super::lone::{Cells, Lone};
+use super::pulls::Pulls;
 use super::watch::{Moving, Watch};
 use super::weights::{KEPT, SPEED, STEP, Weights, between};
 use crate::ephemeris::Ephemeris;
+use wide::f64x4;
 
 /// Tracers in a block. The numbers of that many just fit where the processor reaches them fastest, and share the cost of a node.
 pub(super) const ABREAST: usize = 128;
@@ -19,20 +21,23 @@ pub(super) const LANES: usize = 4;
 /// Where tracers are put that are no more: so far that nothing pulls there, and near enough to stay a number.
 const PARKED_M: f64 = 1e30;
 
+/// Those that are farther are no more.
+pub(super) const GONE_M: f64 = 0.5 * PARKED_M;
+
 /// Most rounds in which the accelerations of a start are found.
 const MOST_ROUNDS: usize = 30;
 
-/// Relative change of accelerations in a further round that would be lost in roundings.
-const CONVERGED: f64 = 1e-15;
+/// Relative change of accelerations in a further round that would not be noticed: a hundredth of what single precision leaves in the slight ones.
+const CONVERGED: f64 = 1e-14;
 
 /// Every so many nodes a block looks which of its tracers have to go by themselves, or no longer.
-const WATCHED: u32 = 4;
+const WATCHED: u32 = 8;
 
 /// One step more than the next look is away: places and velocities are those of the last node.
-const AHEAD: f64 = 5.0;
+const AHEAD: f64 = 9.0;
 
-/// That much ahead of a start.
-const AHEAD_OF_START: f64 = 16.0;
+/// That much ahead of a start: the first look comes at its sixteenth node.
+const AHEAD_OF_START: f64 = 17.0;
 
 /// Nodes after which no accelerations are kept from where a tracer had to go by itself.
 #[expect(clippy::cast_possible_truncation, reason = "a few")]
@@ -56,6 +61,7 @@ pub(super) struct Block {
     /// Which accelerations are those of the newest node.
     newest: usize,
     watch: Watch,
+    pulls: Pulls,
     /// Those that go by themselves, and which lanes they are in.
     lones: Vec<Lone>,
     alone: [bool; ABREAST],
@@ -106,6 +112,7 @@ impl Block {
             acc: [[[0.0; ABREAST]; 3]; KEPT],
             newest: KEPT - 1,
             watch: Watch::new(way.field, &nodes[0], step_s, first),
+            pulls: Pulls::of(way.field),
             lones: Vec::new(),
             alone: [false; ABREAST],
             ids,
@@ -126,6 +133,10 @@ impl Block {
                 from.vel[axis][lane] = vel[axis];
             }
         }
+        for axis in 0..3 {
+            block.step[axis] = from.vel[axis].map(|v| v * step_s);
+        }
+        block.watch.narrow(&nodes[0], step_s, AHEAD_OF_START, &from.pos, &block.step, width);
         block.iterate(way.field, nodes, step_s, &from);
         for (slot, node) in nodes.iter().enumerate() {
             if slot > 0 {
@@ -295,24 +306,17 @@ impl Block {
             }
         }
         let half2 = 0.5 * step_s * step_s;
-        self.watch.narrow(
-            node,
-            step_s,
-            AHEAD,
-            (0..self.ids.len()).filter(|lane| self.lives[*lane]).map(|lane| {
-                ([0, 1, 2].map(|axis| self.pos[axis][lane]), [0, 1, 2].map(|axis| self.step[axis][lane]))
-            }),
-        );
+        self.watch.narrow(node, step_s, AHEAD, &self.pos, &self.step, self.width);
+        if !self.watch.looks() {
+            return;
+        }
         for from in (0..self.width).step_by(LANES) {
-            let (mut pos, mut moved) = ([[0.0; LANES]; 3], [[0.0; LANES]; 3]);
-            for axis in 0..3 {
-                pos[axis].copy_from_slice(&self.pos[axis][from..from + LANES]);
-                for l in 0..LANES {
-                    moved[axis][l] =
-                        self.step[axis][from + l] + half2 * self.acc[self.newest][axis][from + l];
-                }
-            }
-            let margins = self.watch.margins(node, &pos, &moved, step_s, AHEAD);
+            let part = |row: &Row| f64x4::new(lanes(row, from));
+            let pos = self.pos.each_ref().map(part);
+            let bent = self.acc[self.newest].each_ref().map(part);
+            let step = self.step.each_ref().map(part);
+            let moved = [0, 1, 2].map(|axis| step[axis] + bent[axis] * half2);
+            let margins = self.watch.margins(node, pos, moved, step_s, AHEAD);
             for lane in (from..self.ids.len()).take(LANES) {
                 if margins[lane - from] < 0.0 && self.lives[lane] && !self.alone[lane] {
                     let pos = [0, 1, 2].map(|axis| self.pos[axis][lane]);
@@ -338,49 +342,9 @@ impl Block {
 
     /// Accelerations at the places of the block, into a slot.
     fn pull(&mut self, field: &Field, node: &Node, slot: usize) {
-        if field.softened2_m2 > 0.0 {
-            self.pull_by::<true>(field, node, slot);
-        } else {
-            self.pull_by::<false>(field, node, slot);
-        }
-    }
-
-    /// With softening or without: points are pulled by what costs nothing more than that.
-    fn pull_by<const SOFT: bool>(&mut self, field: &Field, node: &Node, slot: usize) {
-        let acc = &mut self.acc[slot];
-        for from in (0..self.width).step_by(LANES) {
-            let (mut x, mut y, mut z) = ([0.0; LANES], [0.0; LANES], [0.0; LANES]);
-            x.copy_from_slice(&self.pos[0][from..from + LANES]);
-            y.copy_from_slice(&self.pos[1][from..from + LANES]);
-            z.copy_from_slice(&self.pos[2][from..from + LANES]);
-            let (mut ax, mut ay, mut az) =
-                ([-node.shift[0]; LANES], [-node.shift[1]; LANES], [-node.shift[2]; LANES]);
-            let (sources, at) = (&field.sources[..field.massive], &node.at[..field.massive]);
-            for (source, at) in sources.iter().zip(at) {
-                for l in 0..LANES {
-                    let d = [at[0] - x[l], at[1] - y[l], at[2] - z[l]];
-                    let mut r2 = d[0] * d[0] + d[1] * d[1] + d[2] * d[2];
-                    if SOFT {
-                        r2 += field.softened2_m2;
-                    }
-                    let w = source.gm / (r2 * r2.sqrt());
-                    ax[l] += w * d[0];
-                    ay[l] += w * d[1];
-                    az[l] += w * d[2];
-                }
-            }
-            if field.bulging() {
-                for l in 0..LANES {
-                    let a = field.bulge_pull(node, [x[l], y[l], z[l]]);
-                    ax[l] += a[0];
-                    ay[l] += a[1];
-                    az[l] += a[2];
-                }
-            }
-            acc[0][from..from + LANES].copy_from_slice(&ax);
-            acc[1][from..from + LANES].copy_from_slice(&ay);
-            acc[2][from..from + LANES].copy_from_slice(&az);
-        }
+        let Self { pulls, watch, pos, acc, width, .. } = self;
+        pulls.take(field, node, |source| watch.slight(source));
+        pulls.set(field, node, pos, &mut acc[slot], *width);
     }
 
     /// Positions some steps after the newest node (before it, down to the oldest one kept, when negative), and velocities if asked for.
@@ -446,4 +410,12 @@ impl Block {
         }
         sum
     }
+}
+
+/// Some numbers of a row, side by side.
+#[inline]
+fn lanes(row: &Row, from: usize) -> [f64; LANES] {
+    let mut lanes = [0.0; LANES];
+    lanes.copy_from_slice(&row[from..from + LANES]);
+    lanes
 }

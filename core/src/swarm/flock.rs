@@ -133,6 +133,8 @@ pub(super) struct Flock {
     /// Tracers lost since this was last emptied.
     pub(super) losses: Vec<Loss>,
     pub(super) digest: u64,
+    /// Steps of tracers since this was last set to nothing, those of the start included.
+    pub(super) steps: usize,
 }
 
 impl Flock {
@@ -183,6 +185,7 @@ impl Flock {
             lost: Vec::new(),
             losses: Vec::new(),
             digest: 0,
+            steps: 0,
         };
         *work += usize::from(START_STEPS) * order.len();
         for group in order.chunk_by(|a, b| a.0 == b.0) {
@@ -209,6 +212,7 @@ impl Flock {
             }
         }
         self.levels.push(Level { step_s, node: FIRST, blocks });
+        self.steps += group.len() * FIRST as usize;
         self.tell();
     }
 
@@ -240,7 +244,7 @@ impl Flock {
 
     /// Some steps of a level, up to a node.
     fn strip(&mut self, eph: &Ephemeris, n: usize, until: u32, work: &mut usize) {
-        let Self { start_s, field, levels, nodes, cells, lost, digest, .. } = self;
+        let Self { start_s, field, levels, nodes, cells, lost, digest, steps, .. } = self;
         let level = &mut levels[n];
         let first = level.node;
         // Strips end at whole multiples: the bodies are found for as many nodes as there is room for.
@@ -249,6 +253,7 @@ impl Flock {
             field.fill(eph, level.time(*start_s, k), node);
         }
         let mut way = Way { field, eph, cells, lost, work: 0 };
+        let mut taken = 0;
         for block in &mut level.blocks {
             for (pair, k) in nodes.windows(2).zip(first + 1..=last) {
                 block.step(&mut way, &pair[0], &pair[1], k, level.step_s);
@@ -256,9 +261,10 @@ impl Flock {
                     *digest = digest.wrapping_add(block.digest(u64::from(k)));
                 }
             }
-            *work += block.ids.len() * (last - first) as usize;
+            taken += block.ids.len() * (last - first) as usize;
         }
-        *work += way.work;
+        *steps += taken;
+        *work += taken + way.work;
         level.node = last;
     }
 

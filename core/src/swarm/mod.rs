@@ -18,6 +18,7 @@ mod flat;
 mod flock;
 mod lone;
 mod path;
+mod pulls;
 mod run;
 mod scale;
 #[cfg(test)]

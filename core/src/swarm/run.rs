@@ -14,6 +14,7 @@ pub struct SwarmRun {
     path: SwarmPath,
     forward: Hand,
     backward: Hand,
+    steps: usize,
 }
 
 /// Where one direction has come to.
@@ -35,7 +36,13 @@ impl SwarmRun {
             setting,
             forward: Hand::default(),
             backward: Hand::default(),
+            steps: 0,
         }
+    }
+
+    /// Steps that its tracers have taken together, each counted.
+    pub fn steps(&self) -> usize {
+        self.steps
     }
 
     /// What is known so far.
@@ -74,7 +81,7 @@ impl SwarmRun {
 
     /// Into the next stretch, through the one that it is in, or as far as the work allows.
     fn go_on(&mut self, eph: &Ephemeris, goal_s: f64, direction: f64, most: usize, work: &mut usize) {
-        let Self { setting, path, forward, backward } = self;
+        let Self { setting, path, forward, backward, steps } = self;
         let afforded = path.afforded();
         let hand = if direction < 0.0 { backward } else { forward };
         let way = path.way_mut(direction);
@@ -97,6 +104,7 @@ impl SwarmRun {
         let there = flock.advance(eph, to_s, most, work);
         way.losses.append(&mut flock.losses);
         way.digest = way.digest.wrapping_add(std::mem::take(&mut flock.digest));
+        *steps += std::mem::take(&mut flock.steps);
         if there {
             way.end_s = to_s;
             if ends {

@@ -1,3 +1,7 @@
+use super::block::ABREAST;
+use super::field::{Field, Node};
+use super::pulls::Pulls;
+use super::watch::Watch;
 use super::*;
 use crate::Vector3;
 use crate::air::Air;
@@ -251,6 +255,44 @@ fn a_belt_among_the_planets_keeps_to_the_15th_order_method() {
     let worst = largest_error(&initial, &[1e6, 0.3 * YEAR_S, 10.0 * YEAR_S, -2.0 * YEAR_S]);
     // Most are off by less than 1e-9; those that Mars passes, by ten times that.
     assert!(worst < 5e-8, "off by {worst:e}");
+}
+
+#[test]
+fn pulls_in_single_precision_are_as_exact_as_they_are_said_to_be() {
+    let initial = solar_system(&PLANETS);
+    let eph = ephemeris(&initial, 0.0, 1e6);
+    let field = Field::new(&initial, BodyId(0), 0.0, true, &eph, 0.0);
+    let mut node = Node::default();
+    field.fill(&eph, 0.0, &mut node);
+    let (step_s, gm) = (524_288.0, initial.bodies[0].gm_m3_s2);
+    let (mut pos, mut moved) = ([[0.0; ABREAST]; 3], [[0.0; ABREAST]; 3]);
+    let mut r = 2.2 * AU;
+    for l in 0..ABREAST {
+        let (sin, cos) = sin_cos(r);
+        (pos[0][l], pos[1][l], pos[2][l]) = (r * cos, r * sin, 0.1 * r * cos);
+        let speed = (gm / r).sqrt();
+        (moved[0][l], moved[1][l]) = (-sin * speed * step_s, cos * speed * step_s);
+        r += 0.008 * AU;
+    }
+    let place = |l: usize| [0, 1, 2].map(|axis| pos[axis][l]);
+    let first = (place(0), [0, 1, 2].map(|axis| moved[axis][0] / step_s));
+    let mut watch = Watch::new(&field, &node, step_s, first);
+    watch.narrow(&node, step_s, 9.0, &pos, &moved, ABREAST);
+    // All but the Sun and Jupiter.
+    let slight = (0..field.massive).filter(|n| watch.slight(*n)).count();
+    assert_eq!(slight, field.massive - 2);
+    let (mut pulls, mut acc) = (Pulls::of(&field), [[0.0; ABREAST]; 3]);
+    pulls.take(&field, &node, |n| watch.slight(n));
+    pulls.set(&field, &node, &pos, &mut acc, ABREAST);
+    let offs: Vec<f64> = (0..ABREAST)
+        .map(|l| {
+            let want = Vector3::from(field.pull_at(&node, place(l), [0.0; 3]));
+            (Vector3::from([0, 1, 2].map(|axis| acc[axis][l])) - want).norm() / want.norm()
+        })
+        .collect();
+    let worst = offs.iter().copied().fold(0.0, f64::max);
+    // Six of them may add up, but bounds are for the worst places; in double precision it would be 1e-16.
+    assert!((1e-14..4e-10).contains(&worst), "off by {worst:e}");
 }
 
 /// The Earth, more or less, and some satellites up to `high_m`.

@@ -16,9 +16,6 @@ pub const TRACERS: usize = 10_000;
 /// How many of them tell where they are in the end.
 pub const TOLD: usize = 20;
 
-/// Step of all of them, s: the engine takes powers of two, and none of these orbits asks for another.
-pub const STEP_S: f64 = 1_048_576.0;
-
 /// Tracers in a belt between 2.2 and 3.2 au, on orbits that are nearly circles, among the Sun and eight planets.
 #[derive(Debug)]
 pub struct Swarm {
@@ -50,7 +47,7 @@ impl Swarm {
     pub fn run(&mut self, until_s: f64) -> Outcome {
         self.run = SwarmRun::new(&self.initial, 0);
         self.run.advance(&self.ephemeris, until_s, usize::MAX);
-        Outcome { steps: TRACERS as f64 * until_s / STEP_S, energy_error: 0.0, pos: Vec::new() }
+        Outcome { steps: self.run.steps() as f64, energy_error: 0.0, pos: Vec::new() }
     }
 
     /// Where some of the tracers are at the end of the last run, relative to the Sun. It takes the time that a jump in a show takes.
