@@ -96,7 +96,7 @@ impl Course<'_> {
                 if fit.done || cost(&fit.residuals) < 0.5 * (0.01 * REACHED) * (0.01 * REACHED) {
                     break;
                 }
-                fit.step(|numbers| self.miss(target, numbers));
+                fit.step(&mut |numbers: &[f64]| self.miss(target, numbers));
             }
             found.push((cost(&fit.residuals), fit.point));
         }

@@ -1,7 +1,7 @@
 //! Least squares within bounds, one iteration at a time.
 //!
-//! The variables run from 0 to 1. Derivatives are central differences: an integration has too many switches (contacts, the
-//! choice of an event) for derivatives carried along to be worth their price.
+//! The variables run from 0 to 1. Derivatives are asked of the problem; where it has none, and where its own lead nowhere (other paths may
+//! have other events), central differences are taken, which cost two trials for each variable.
 
 /// Step of the differences, as part of a variable's range: short beside a near passage, long beside rounding.
 const DIFFERENCE: f64 = 1e-7;
@@ -23,14 +23,40 @@ const LEAST_GAIN: f64 = 1e-9;
 /// A cost below which there is nothing left but rounding; residuals are by the size of what is wanted.
 const ROUNDING: f64 = 1e-26;
 
-/// Residuals at a point; `None` where the point can't be tried.
-pub(super) type Residuals = Option<Vec<f64>>;
+/// What is to be made small.
+pub(super) trait Problem {
+    /// What the derivatives at a point need of its trial.
+    type Kept;
+
+    /// Residuals at a point; `None` where the point can't be tried.
+    fn residuals(&mut self, point: &[f64]) -> Option<(Vec<f64>, Self::Kept)>;
+
+    /// Derivatives of all residuals by each variable; `None` where only differences can tell.
+    fn slopes(&mut self, point: &[f64], kept: Option<&Self::Kept>) -> Option<Vec<Vec<f64>>>;
+}
+
+/// A function of which nothing is known but its values.
+impl<F: FnMut(&[f64]) -> Option<Vec<f64>>> Problem for F {
+    type Kept = ();
+
+    fn residuals(&mut self, point: &[f64]) -> Option<(Vec<f64>, ())> {
+        Some((self(point)?, ()))
+    }
+
+    fn slopes(&mut self, _: &[f64], _: Option<&()>) -> Option<Vec<Vec<f64>>> {
+        None
+    }
+}
 
 /// A search in progress.
 #[derive(Debug, Clone)]
-pub(super) struct Fit {
+pub(super) struct Fit<K = ()> {
     pub(super) point: Vec<f64>,
     pub(super) residuals: Vec<f64>,
+    /// Of the trial at the point, where it was this search's own.
+    kept: Option<K>,
+    /// Whether the problem's own derivatives led nowhere.
+    by_differences: bool,
     damping: f64,
     iterations: usize,
     pub(super) done: bool,
@@ -41,24 +67,40 @@ pub(super) fn cost(residuals: &[f64]) -> f64 {
     0.5 * residuals.iter().map(|r| r * r).sum::<f64>()
 }
 
-impl Fit {
+impl<K> Fit<K> {
     pub(super) const fn new(point: Vec<f64>, residuals: Vec<f64>) -> Self {
-        Self { point, residuals, damping: DAMPING, iterations: 0, done: false }
+        Self {
+            point,
+            residuals,
+            kept: None,
+            by_differences: false,
+            damping: DAMPING,
+            iterations: 0,
+            done: false,
+        }
     }
 
     /// One iteration: derivatives, and the best step that they lead to.
+    pub(super) fn step(&mut self, problem: &mut impl Problem<Kept = K>) {
+        self.iterations += 1;
+        let own = if self.by_differences { None } else { problem.slopes(&self.point, self.kept.as_ref()) };
+        let by_differences = own.is_none();
+        let columns = own.or_else(|| self.differences(problem));
+        if !columns.is_some_and(|columns| self.descend(&columns, problem)) {
+            self.done = by_differences;
+            self.by_differences = true;
+            self.damping = DAMPING;
+        }
+    }
+
+    /// The best step that derivatives lead to; false where they lead nowhere.
     ///
     /// # Source
     /// Levenberg and Marquardt's damping with Marquardt's scaling (J. J. Moré, in Numerical Analysis, ed. G. A. Watson (1978), 105), steps
     /// projected onto the bounds, and variables that lean against a bound left out (C. T. Kelley, Iterative Methods for Optimization
     /// (1999), 5.5).
-    pub(super) fn step(&mut self, mut residuals_at: impl FnMut(&[f64]) -> Residuals) {
-        self.iterations += 1;
+    fn descend(&mut self, columns: &[Vec<f64>], problem: &mut impl Problem<Kept = K>) -> bool {
         let before = cost(&self.residuals);
-        let Some(columns) = self.derivatives(&mut residuals_at) else {
-            self.done = true;
-            return;
-        };
         let slope: Vec<f64> = columns.iter().map(|c| dot(c, &self.residuals)).collect();
         let free: Vec<usize> = (0..self.point.len())
             .filter(|&k| {
@@ -67,7 +109,7 @@ impl Fit {
             })
             .collect();
         for _ in 0..TRIES {
-            let Some(step) = damped(&columns, &slope, &free, self.damping) else { break };
+            let Some(step) = damped(columns, &slope, &free, self.damping) else { break };
             let mut trial = self.point.clone();
             for (&k, by) in free.iter().zip(&step) {
                 trial[k] = (trial[k] + by).clamp(0.0, 1.0);
@@ -75,24 +117,24 @@ impl Fit {
             if trial == self.point {
                 break;
             }
-            match residuals_at(&trial) {
-                Some(residuals) if cost(&residuals) < before => {
+            match problem.residuals(&trial) {
+                Some((residuals, kept)) if cost(&residuals) < before => {
                     let after = cost(&residuals);
                     self.damping = (self.damping * EASE).max(1e-12);
-                    (self.point, self.residuals) = (trial, residuals);
+                    (self.point, self.residuals, self.kept) = (trial, residuals, Some(kept));
                     self.done = before - after < LEAST_GAIN * before
                         || after < ROUNDING
                         || self.iterations >= ITERATIONS;
-                    return;
+                    return true;
                 }
                 _ => self.damping *= STIFFEN,
             }
         }
-        self.done = true;
+        false
     }
 
-    /// Derivatives of the residuals by each variable; `None` where no difference can be taken.
-    fn derivatives(&self, residuals_at: &mut impl FnMut(&[f64]) -> Residuals) -> Option<Vec<Vec<f64>>> {
+    /// Differences of the residuals by each variable; `None` where none can be taken.
+    fn differences(&self, problem: &mut impl Problem<Kept = K>) -> Option<Vec<Vec<f64>>> {
         let at = |k: usize, by: f64| {
             let mut point = self.point.clone();
             point[k] = (point[k] + by).clamp(0.0, 1.0);
@@ -104,8 +146,8 @@ impl Fit {
             for by in [DIFFERENCE, -DIFFERENCE] {
                 let point = at(k, by);
                 // Where one side is out of bounds or can't be tried, the middle is that end.
-                match if point == self.point { None } else { residuals_at(&point) } {
-                    Some(residuals) => ends.push((point[k], residuals)),
+                match if point == self.point { None } else { problem.residuals(&point) } {
+                    Some((residuals, _)) => ends.push((point[k], residuals)),
                     None => ends.push((self.point[k], self.residuals.clone())),
                 }
             }
@@ -167,10 +209,10 @@ fn damped(columns: &[Vec<f64>], slope: &[f64], free: &[usize], damping: f64) -> 
 mod tests {
     use super::*;
 
-    fn solve(start: &[f64], f: impl Fn(&[f64]) -> Residuals) -> Fit {
+    fn solve(start: &[f64], mut f: impl Fn(&[f64]) -> Option<Vec<f64>>) -> Fit {
         let mut fit = Fit::new(start.to_vec(), f(start).unwrap());
         while !fit.done {
-            fit.step(&f);
+            fit.step(&mut f);
         }
         fit
     }
@@ -195,5 +237,49 @@ mod tests {
         assert!((fit.point[0] - 0.5).abs() < 1e-9, "{fit:?}");
         // A flat cost leads nowhere, and ends.
         assert!(solve(&[0.4], |_| Some(vec![3.0])).done);
+    }
+
+    /// The same valley with derivatives of its own, false ones on one side.
+    struct Valley {
+        tried: usize,
+        asked: usize,
+    }
+
+    impl Problem for Valley {
+        type Kept = f64;
+
+        fn residuals(&mut self, x: &[f64]) -> Option<(Vec<f64>, f64)> {
+            self.tried += 1;
+            Some((vec![10.0 * (x[1] - x[0] * x[0]), 0.7 - x[0]], x[0]))
+        }
+
+        fn slopes(&mut self, x: &[f64], kept: Option<&f64>) -> Option<Vec<Vec<f64>>> {
+            self.asked += 1;
+            assert!(kept.is_none_or(|kept| kept.to_bits() == x[0].to_bits()), "of this point");
+            let sign = if x[0] < 0.1 { -1.0 } else { 1.0 };
+            Some(vec![vec![-20.0 * x[0] * sign, -sign], vec![10.0 * sign, 0.0]])
+        }
+    }
+
+    #[test]
+    fn own_derivatives_save_trials_and_false_ones_are_not_relied_on() {
+        let run = |start: [f64; 2]| {
+            let mut valley = Valley { tried: 0, asked: 0 };
+            let (residuals, _) = valley.residuals(&start).unwrap();
+            let mut fit = Fit::new(start.to_vec(), residuals);
+            while !fit.done {
+                fit.step(&mut valley);
+            }
+            assert!((fit.point[0] - 0.7).abs() < 1e-8 && (fit.point[1] - 0.49).abs() < 1e-8, "{fit:?}");
+            valley
+        };
+        let plain = std::cell::Cell::new(0);
+        solve(&[0.2, 0.9], |x| {
+            plain.set(plain.get() + 1);
+            Some(vec![10.0 * (x[1] - x[0] * x[0]), 0.7 - x[0]])
+        });
+        let own = run([0.2, 0.9]);
+        assert!(2 * own.tried < plain.get(), "{} and {}", own.tried, plain.get());
+        assert_eq!(run([0.05, 0.9]).asked, 1, "they led up the hill");
     }
 }

@@ -31,6 +31,7 @@ mod course;
 mod fit;
 mod guess;
 mod put;
+mod slopes;
 #[cfg(test)]
 mod tests;
 mod trial;
@@ -43,7 +44,7 @@ use crate::scenario::edit::Document;
 use crate::scenario::{Aim, ChangeTime, Place, Problem};
 use fit::{Fit, cost};
 use std::fmt;
-use trial::{Trial, scene_m};
+use trial::{Flight, Trial, scene_m};
 
 /// Points sampled for each number that is free, up to a limit.
 const SAMPLES: usize = 40;
@@ -158,7 +159,7 @@ enum Stage {
     /// Points are tried: what the file states, the guesses, and then, once those have been refined, others.
     Trying(Trying),
     /// The starts that are left, nearest last; the one that is refined; and the nearest so far.
-    Refining { starts: Vec<Tried>, fit: Fit, nearest: Tried, sampled: bool },
+    Refining { starts: Vec<Tried>, fit: Box<Fit<Flight>>, nearest: Tried, sampled: bool },
 }
 
 /// Points on trial.
@@ -312,16 +313,12 @@ impl Stage {
                     let why = trying.why.take().unwrap_or_default();
                     return Err(AimFailure::Nothing { place: trial.aim.place, form: form(trial.aim), why });
                 };
-                let fit = Fit::new(nearest.0.clone(), nearest.1.clone());
+                let fit = Box::new(Fit::new(nearest.0.clone(), nearest.1.clone()));
                 *self = Self::Refining { starts, fit, nearest, sampled };
                 Ok(None)
             }
             Self::Refining { starts, fit, nearest, sampled } => {
-                fit.step(|point| {
-                    *trials += 1;
-                    let misses = trial.misses(point, None).ok()?;
-                    Some(residuals(&misses))
-                });
+                fit.step(&mut Flights { trial, trials });
                 if !fit.done {
                     return Ok(None);
                 }
@@ -333,7 +330,7 @@ impl Stage {
                     *nearest = (fit.point.clone(), fit.residuals.clone());
                 }
                 if let Some((point, residuals)) = starts.pop() {
-                    *fit = Fit::new(point, residuals);
+                    **fit = Fit::new(point, residuals);
                     return Ok(None);
                 }
                 if *sampled {
@@ -345,6 +342,31 @@ impl Stage {
                 Ok(None)
             }
         }
+    }
+}
+
+/// What is refined: trials, each of which is counted.
+struct Flights<'a> {
+    trial: &'a Trial<'a>,
+    trials: &'a mut usize,
+}
+
+impl fit::Problem for Flights<'_> {
+    type Kept = Flight;
+
+    fn residuals(&mut self, point: &[f64]) -> Option<(Vec<f64>, Flight)> {
+        *self.trials += 1;
+        let flight = self.trial.fly(point, None).ok()?;
+        let misses = self.trial.compare(&flight).ok()?;
+        Some((residuals(&misses), flight))
+    }
+
+    fn slopes(&mut self, point: &[f64], kept: Option<&Flight>) -> Option<Vec<Vec<f64>>> {
+        if let Some(flight) = kept {
+            return self.trial.slopes(point, flight);
+        }
+        let (_, flight) = self.residuals(point)?;
+        self.trial.slopes(point, &flight)
     }
 }
 

@@ -93,11 +93,11 @@ impl Trial<'_> {
         (0.0..=1.0).contains(&share).then_some(share)
     }
 
-    /// What the numbers at a point lead to.
+    /// The paths that the numbers at a point lead to.
     ///
     /// # Errors
-    /// Why there is nothing to compare.
-    pub(super) fn misses(&self, point: &[f64], digits: Option<usize>) -> Result<Vec<Miss>, String> {
+    /// Why there are none.
+    pub(super) fn fly(&self, point: &[f64], digits: Option<usize>) -> Result<Flight, String> {
         let document = self.written(point, digits).map_err(|e| e.to_string())?;
         let parsed = document.scenario();
         let Some(scenario) = parsed.scenario else {
@@ -109,13 +109,52 @@ impl Trial<'_> {
         if !propagation.advance(until_s, STEPS).map_err(|stopped| stopped.to_string())? {
             return Err("it takes too long to integrate".to_owned());
         }
-        let view = View { initial: &initial, ephemeris: propagation.ephemeris(), scene_m: self.scene_m };
+        Ok(Flight { initial, ephemeris: propagation.into_ephemeris() })
+    }
+
+    /// What a flight misses.
+    ///
+    /// # Errors
+    /// Why there is nothing to compare.
+    pub(super) fn compare(&self, flight: &Flight) -> Result<Vec<Miss>, String> {
+        let view = self.view(flight);
         let mut misses = Vec::new();
         for want in &self.aim.want {
             view.compare(want, &mut misses)?;
         }
         Ok(misses)
     }
+
+    /// What the numbers at a point lead to.
+    ///
+    /// # Errors
+    /// Why there is nothing to compare.
+    pub(super) fn misses(&self, point: &[f64], digits: Option<usize>) -> Result<Vec<Miss>, String> {
+        self.compare(&self.fly(point, digits)?)
+    }
+
+    pub(super) fn view<'a>(&self, flight: &'a Flight) -> View<'a> {
+        View { initial: &flight.initial, ephemeris: &flight.ephemeris, scene_m: self.scene_m }
+    }
+}
+
+/// The paths of one trial.
+#[derive(Debug, Clone)]
+pub(super) struct Flight {
+    pub(super) initial: InitialState,
+    pub(super) ephemeris: Ephemeris,
+}
+
+/// One body relative to another at the instant of which something is wanted.
+#[derive(Debug, Clone)]
+pub(super) struct Moment {
+    pub(super) body: BodyId,
+    pub(super) about: BodyId,
+    pub(super) t_s: f64,
+    /// Before what a contact does.
+    pub(super) state: State,
+    /// Of an event: what kind.
+    pub(super) kind: Option<EventKind>,
 }
 
 /// How far the bodies of an aim are from their primaries, and from what they are to be compared with, at the start, m: the size of the scene.
@@ -149,8 +188,8 @@ pub(super) fn horizon_s(want: &Want) -> f64 {
     }
 }
 
-/// The integrated paths of a trial.
-struct View<'a> {
+/// A flight as outcomes see it.
+pub(super) struct View<'a> {
     initial: &'a InitialState,
     ephemeris: &'a Ephemeris,
     scene_m: f64,
@@ -192,25 +231,14 @@ impl View<'_> {
         until_s: f64,
         misses: &mut Vec<Miss>,
     ) -> Result<(), String> {
-        let mut found = events::find(self.ephemeris, self.initial, &(&event).into(), 0.0, until_s);
-        found.retain(|e| e.t_s > START_S);
         let of = event.said(|body| self.initial.name(body));
         if let [Outcome::Count(wanted)] = want.outcomes[..] {
             let allowed = allowed(want, Outcome::Count(wanted));
+            let found = self.events(&event, until_s);
             misses.push(plain(format!("count of {of}"), count(found.len()), count(wanted), allowed));
             return Ok(());
         }
-        let at_s = want.outcomes.iter().find_map(|outcome| match outcome {
-            Outcome::At(at) => Some(at.s()),
-            _ => None,
-        });
-        let meant = match at_s {
-            Some(at_s) if event.nth == 1 => {
-                found.iter().min_by(|a, b| (a.t_s - at_s).abs().total_cmp(&(b.t_s - at_s).abs()))
-            }
-            _ => found.get(event.nth - 1),
-        };
-        let meant = meant.ok_or_else(|| format!("no {of} within {}", time_text(until_s)))?;
+        let meant = self.meant(want, &event, until_s)?;
         let about = event.other.or(meant.other).or(self.primary(event.body));
         let state = self.relative(event.body, about, meant.t_s)?;
         // What has touched may rest by then: its speed is that of the contact.
@@ -230,6 +258,53 @@ impl View<'_> {
             }
         }
         Ok(())
+    }
+
+    /// The events of a kind after the start.
+    fn events(&self, event: &EventRef, until_s: f64) -> Vec<events::Event> {
+        let mut found = events::find(self.ephemeris, self.initial, &event.into(), 0.0, until_s);
+        found.retain(|e| e.t_s > START_S);
+        found
+    }
+
+    /// The event of which something is wanted.
+    fn meant(&self, want: &Want, event: &EventRef, until_s: f64) -> Result<events::Event, String> {
+        let found = self.events(event, until_s);
+        let at_s = want.outcomes.iter().find_map(|outcome| match outcome {
+            Outcome::At(at) => Some(at.s()),
+            _ => None,
+        });
+        let meant = match at_s {
+            Some(at_s) if event.nth == 1 => {
+                found.iter().min_by(|a, b| (a.t_s - at_s).abs().total_cmp(&(b.t_s - at_s).abs()))
+            }
+            _ => found.get(event.nth - 1),
+        };
+        let of = || event.said(|body| self.initial.name(body));
+        meant.copied().ok_or_else(|| format!("no {} within {}", of(), time_text(until_s)))
+    }
+
+    /// The instant of which something is wanted; `None` for a count, which is of none.
+    ///
+    /// # Errors
+    /// Why there is no such instant.
+    pub(super) fn moment(&self, want: &Want) -> Result<Option<Moment>, String> {
+        let (body, other, t_s, kind) = match want.of {
+            Wanted::Event { event, until } => {
+                if matches!(want.outcomes[..], [Outcome::Count(_)]) {
+                    return Ok(None);
+                }
+                let meant = self.meant(want, &event, until.s())?;
+                (event.body, event.other.or(meant.other), meant.t_s, Some(event.kind))
+            }
+            Wanted::Instant { body, about, at } => (body, about, at.s(), None),
+        };
+        let about = other
+            .or(self.primary(body))
+            .ok_or_else(|| format!("{} has no primary", self.initial.name(body)))?;
+        let before_s = if kind == Some(EventKind::Contact) { t_s.next_down() } else { t_s };
+        let state = self.relative(body, Some(about), before_s)?;
+        Ok(Some(Moment { body, about, t_s, state, kind }))
     }
 
     /// By how much an outcome of position and velocity is missed; `speed` stands for the state's where it is known better.
@@ -261,7 +336,7 @@ impl View<'_> {
                     got: speed_text(got),
                     off: speed_text((got - wanted).abs()),
                     share: (got - wanted) / allowed,
-                    residual: vec![(got - wanted) / wanted.max(SPEED_M_S / PART)],
+                    residual: vec![(got - wanted) / speed_size(Speed::from_m_s(wanted))],
                 }
             }
             Outcome::Longitude(wanted) => {
@@ -301,6 +376,11 @@ fn allowed(want: &Want, outcome: Outcome) -> f64 {
         // Half an event: whole numbers are met or not.
         Outcome::Count(_) => 0.5,
     })
+}
+
+/// By what differences of a speed are divided to be compared with others, m/s.
+pub(super) fn speed_size(wanted: Speed) -> f64 {
+    wanted.m_s().max(SPEED_M_S / PART)
 }
 
 fn angle_miss(what: String, got_rad: f64, wanted: Angle, allowed: f64) -> Miss {

@@ -21,6 +21,7 @@ mod tests;
 mod thin;
 mod touch;
 pub mod track;
+pub mod variations;
 mod way;
 
 pub use crate::integrate::PER_BODY;

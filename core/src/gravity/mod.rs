@@ -12,12 +12,14 @@ mod oblateness;
 mod post_newtonian;
 mod resting;
 mod softening;
+mod tide;
 
 pub(crate) use drag::Drags;
 use newton::Newton;
 pub(crate) use oblateness::Bulge;
 use post_newtonian::PostNewtonian;
 use resting::Resting;
+pub(crate) use tide::Tides;
 
 /// Everything that pulls on the bodies of a scenario.
 #[derive(Debug, Clone, PartialEq)]

@@ -1,6 +1,8 @@
 //! The pull of a body's equatorial bulge.
 
+use crate::Vector3;
 use crate::initial::Oblate;
+use nalgebra::Matrix3;
 
 /// A body whose equator bulges, by its second zonal harmonic.
 #[derive(Debug, Clone, PartialEq)]
@@ -36,6 +38,20 @@ impl Bulge {
         [along_r * r[0] + along_p * p[0], along_r * r[1] + along_p * p[1], along_r * r[2] + along_p * p[2]]
     }
 
+    /// The derivatives of [`Bulge::pull`] by `r`, a symmetric matrix: with c = 3/2 J2 R² / r⁵ and s = r·p / r,
+    /// -c [(1 - 5 s²) + 2 p pᵀ - 10 s (r pᵀ + p rᵀ) / r + 5 (7 s² - 1) r rᵀ / r²].
+    pub(super) fn gradient(&self, r: Vector3<f64>) -> Matrix3<f64> {
+        let p = Vector3::from(self.pole);
+        let square = r.norm_squared();
+        let rp = r.dot(&p);
+        let s2 = rp * rp / square;
+        let crossed = r * p.transpose();
+        let sum = Matrix3::identity() * (1.0 - 5.0 * s2) + p * p.transpose() * 2.0
+            - (crossed + crossed.transpose()) * (10.0 * rp / square)
+            + r * r.transpose() * (5.0 * (7.0 * s2 - 1.0) / square);
+        sum * (-self.strength_m2 / (square * square * square.sqrt()))
+    }
+
     /// Adds what the bulge gives to all other bodies, and the reaction of the massive ones on its own body.
     pub(super) fn add(&self, gms: &[f64], pos: &[f64], out: &mut [f64]) {
         let c = 3 * self.body;
@@ -61,7 +77,6 @@ impl Bulge {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::Vector3;
     use crate::scenario::BodyId;
 
     fn at(pole: [f64; 3], r: [f64; 3]) -> [f64; 6] {

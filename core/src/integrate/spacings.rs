@@ -128,7 +128,7 @@ pub(crate) const POSITION: [[f64; 8]; 8] = {
 
 /// Weights of a0, g0, … g6 in the change of position over the first h of a step beyond h v0, at each spacing, in units of the
 /// step squared: the double integrals of 1, h, h (h - h1), …
-pub(super) const POSITION_FROM_G: [[f64; 8]; 8] = from_g(&POSITION);
+pub(crate) const POSITION_FROM_G: [[f64; 8]; 8] = from_g(&POSITION);
 
 /// As [`POSITION_FROM_G`], in the change of velocity, in units of the step.
 pub(super) const VELOCITY_FROM_G: [[f64; 8]; 8] = from_g(&VELOCITY);

@@ -13,6 +13,7 @@ mod orbits;
 mod relativity;
 mod softening;
 mod thin;
+mod variations;
 
 /// A point.
 fn body(gm_m3_s2: f64, pos: [f64; 3], vel: [f64; 3]) -> InitialBody {
