@@ -6,8 +6,9 @@ use std::path::Path;
 use std::time::{Duration, SystemTime, UNIX_EPOCH};
 
 use anyhow::{Context as _, Result};
-use fallaround_core::ephemeris::{Ephemeris, Propagation};
+use fallaround_core::ephemeris::{Ephemeris, Propagation, Track};
 use fallaround_core::initial::InitialState;
+use fallaround_core::integrate::long_steps::describe;
 use fallaround_core::scenario::{self, BodyId, Place, Problem, Scenario, Severity, dated};
 use fallaround_core::show::{Rehearsal, Show};
 use indicatif::{ProgressBar, ProgressStyle};
@@ -123,7 +124,27 @@ impl Resolved {
             }
         }
         bar.finish_and_clear();
-        Ok(propagation.into_ephemeris())
+        let ephemeris = propagation.into_ephemeris();
+        for track in [ephemeris.forward(), ephemeris.backward()] {
+            self.tell_long_steps(track);
+        }
+        Ok(ephemeris)
+    }
+
+    /// Says beside the data from when on they are less than exact.
+    fn tell_long_steps(&self, track: &Track) {
+        let (Some(first), Some(choice)) = (track.long_stretches().next(), track.choice()) else { return };
+        let place = track.long_stretches().map(|stretch| stretch.errors.place).fold(0.0, f64::max);
+        eprintln!(
+            "note: beyond {:.6e} s states are those of long steps, as exact paths take too much memory.",
+            first.from_s
+        );
+        for sentence in describe(&self.initial, &choice, track.end_s() - first.from_s) {
+            eprintln!("      {sentence}");
+        }
+        eprintln!(
+            "      Between the states kept of them, places are within {place:.0e} of the distance from the centre."
+        );
     }
 
     /// The body of a name.
