@@ -16,5 +16,6 @@ mod kirkwood;
 mod planets;
 mod routh;
 mod satellites;
+mod secular;
 mod transfers;
 mod transits;
