@@ -178,7 +178,7 @@ impl Checking {
         let todo = Todo::Second(Box::new(Second::new(&show)));
         let report = Report {
             beats: vec![BeatReport::default(); show.plan.beats.len()],
-            bytes: show.ephemeris.bytes() + show.swarms.iter().map(|path| path.bytes()).sum::<usize>(),
+            bytes: show.bytes(),
             most_bytes: SHOW_BYTES,
             method: method::told(&show),
             ..Report::default()

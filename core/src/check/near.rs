@@ -17,6 +17,9 @@ const SKIMMED_RADII: f64 = 1.1;
 /// don't pass each other.
 const SAME_PLACE: f64 = 1e-9;
 
+/// An event nearer to the scenario's start than this is the start itself, s.
+const START_S: f64 = 1e-3;
+
 /// Steps of the integrator in which passes of a pair are looked for at a time.
 const STEPS: f64 = 2000.0;
 
@@ -133,7 +136,8 @@ impl Pair {
                 events::find(&show.ephemeris, &show.initial, &self.query, from_s, until_s)
             })
             .collect::<Vec<_>>();
-        for t_s in passes.iter().map(|event| event.t_s) {
+        // What starts at its nearest doesn't pass.
+        for t_s in passes.iter().map(|event| event.t_s).filter(|t_s| t_s.abs() > START_S) {
             let Some(state) = show.ephemeris.relative(body, other, t_s) else { continue };
             if resting(show, body, other, t_s) {
                 continue;

@@ -36,3 +36,10 @@ pub struct Show {
     /// When each beat starts, in show time and model time.
     pub plan: Plan,
 }
+
+impl Show {
+    /// Memory that its paths take, those of swarms included, bytes.
+    pub fn bytes(&self) -> usize {
+        self.ephemeris.bytes() + self.swarms.iter().map(SwarmPath::bytes).sum::<usize>()
+    }
+}
