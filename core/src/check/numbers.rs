@@ -5,7 +5,7 @@
 //! where a file states more numbers than there is time for, the first are tried. What is not tried is named, with the reason.
 
 use super::finding::{Finding, Topic, Weight};
-use super::report::{BeatReport, Encounter, LeftOut, Lever, Report, Why};
+use super::report::{BeatReport, Encounter, LeftOut, Lever, Mover, Report, Shift, Why};
 use super::sample::{Places, Sample};
 use super::sight::{self, called};
 use super::stated::{self, Found};
@@ -32,6 +32,10 @@ const SOWN: f64 = 10.0;
 /// after hundreds of rounds stays far below.
 const WARNED_PX: f64 = 0.01;
 
+/// What moves by fewer times the part of its distance by which the number was changed does not hang on digits: it is the view that is close to
+/// something far from its centre, such as the ground.
+const GROWN: f64 = 10.0;
+
 /// Up to here, px, larger changes do as much more; beyond, the body is simply elsewhere.
 const FAR_PX: f64 = 1.0;
 
@@ -47,7 +51,8 @@ const KEEP: &str = "the show is the same from this file on every computer, but c
 #[derive(Debug)]
 pub(super) struct Numbers {
     document: Document,
-    solar: Solar,
+    /// The solar system at the date, once a number is tried.
+    solar: Option<Solar>,
     found: Vec<Found>,
     /// The next to be tried, and how many there is time for; not known while the tracers are being looked at.
     next: usize,
@@ -70,7 +75,7 @@ impl Numbers {
         found.sort_by_key(|one| one.at.value == 0.0);
         Self {
             document,
-            solar: Solar::of(&show.scenario),
+            solar: None,
             found,
             next: 0,
             to_try: None,
@@ -96,7 +101,8 @@ impl Numbers {
             return true;
         };
         let Some(trial) = &mut self.current else {
-            self.current = start(&self.document, found, show, &self.solar);
+            let solar = self.solar.get_or_insert_with(|| Solar::of(&show.scenario));
+            self.current = start(&self.document, found, show, solar);
             if self.current.is_none() {
                 self.left_out.push((self.next, Why::Alone));
                 self.next += 1;
@@ -200,6 +206,7 @@ impl Numbers {
         }
         if let Some(lever) = self.levers.first()
             && let Some((beat, shift)) = lever.worst().filter(|(_, shift)| shift.px > WARNED_PX)
+            && grown(show, beat, &shift) > GROWN
         {
             findings.push(Finding {
                 weight: Weight::Warning,
@@ -228,6 +235,26 @@ fn start(document: &Document, found: &Found, show: &Show, solar: &Solar) -> Opti
         found.at.put(&mut changed, found.at.value * by).ok()?;
         Trial::start(changed.text(), show, solar)
     })
+}
+
+/// How many times the part by which the number was changed something moves, in parts of its distance from its primary, or from the barycentre.
+fn grown(show: &Show, beat: usize, shift: &Shift) -> f64 {
+    let far_m = match shift.of {
+        Mover::Body(body) => {
+            let t_s = sight::beats(show).get(beat).map_or(0.0, |seen| seen.model_s(shift.beat_s));
+            let primary = show.initial.bodies.get(body.0).and_then(|one| one.primary);
+            let state = match primary {
+                Some(primary) => show.ephemeris.relative(body, primary, t_s),
+                None => show.ephemeris.state(body, t_s),
+            };
+            state.map_or(0.0, |state| state.pos.norm())
+        }
+        Mover::Tracer(swarm) => {
+            let places = show.initial.swarms.get(swarm.0).map_or(&[][..], |swarm| &swarm.pos);
+            places.iter().map(|place| place.norm()).fold(0.0, f64::max)
+        }
+    };
+    shift.m / (PART * far_m)
 }
 
 /// Encounters that hang on digits that authors don't state.

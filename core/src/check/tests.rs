@@ -155,6 +155,17 @@ fn three_bodies_that_pass_closely_are_told_as_sensitive() {
 }
 
 #[test]
+fn the_last_digits_of_a_radius_are_not_told_of_a_close_view_of_the_ground() {
+    // A billionth of the radius are 1.7 mm, of which 150 m show 0.0125 px: all that lies on the ground moves by as much, and no more.
+    let beat = "[[beat]]\ntitle = \"Down\"\nclock = { span = \"30 s\", lasts = \"30 s\" }\n\
+                view = { centre = { about = \"Skerry\", offset = [\"1737.06 km\", \"0 km\", \"0 km\"] }, span = \"150 m\" }\n";
+    let proven = proven(BALL, beat);
+    let shift = lever(&proven, Owner::Body(BodyId(0)), "radius").shifts[0].expect("in the picture");
+    assert!(shift.px > 0.01 && (shift.m / 1.737e-3 - 1.0).abs() < 0.1, "{shift:?}");
+    assert!(about(&proven, Topic::Sensitivity).is_empty(), "{:#?}", proven.report.findings);
+}
+
+#[test]
 fn a_dance_that_forgets_its_start_is_not_ready() {
     // Roundings of 1e-16 grow to a thousandth of an au or so in it, by which pair goes round another at last in a period of its own:
     // after twenty years more it is somewhere else on its orbit, which is tens of pixels wide.

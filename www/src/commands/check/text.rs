@@ -4,6 +4,7 @@ use std::fmt::Write as _;
 use std::mem::discriminant;
 
 use fallaround_core::check::{BeatReport, Finding, Number, Report, Why};
+use fallaround_core::ephemeris::{Contact, Outcome};
 use fallaround_core::show::Show;
 use fallaround_core::units::number;
 
@@ -31,16 +32,7 @@ pub(super) fn of(file: &str, shown: &Shown) -> String {
     }
     whole(shown, &mut line);
     beats(show, report, &mut line);
-    for contact in show.ephemeris.contacts() {
-        line(format!(
-            "  contact      {} {} {} at {}, {:.1} m/s",
-            show.initial.name(contact.body),
-            outcome(contact.outcome),
-            show.initial.name(contact.onto),
-            time(contact.t_s),
-            contact.speed_m_s
-        ));
-    }
+    contacts(show, &mut line);
     for one in &report.encounters {
         let hill = one.hill_radii.map(|hill| format!(", {} of its Hill radii", number::with_digits(hill, 2)));
         line(format!(
@@ -54,6 +46,37 @@ pub(super) fn of(file: &str, shown: &Shown) -> String {
         ));
     }
     out
+}
+
+/// The contacts; a body that bounces on and on is told of once.
+fn contacts(show: &Show, line: &mut impl FnMut(String)) {
+    let bouncing = |a: &Contact, b: &Contact| {
+        a.outcome == Outcome::Bounced && (a.body, a.onto, a.outcome) == (b.body, b.onto, b.outcome)
+    };
+    for alike in show.ephemeris.contacts().chunk_by(bouncing) {
+        let (Some(first), Some(last)) = (alike.first(), alike.last()) else { continue };
+        let what = format!(
+            "{} {} {}",
+            show.initial.name(first.body),
+            outcome(first.outcome),
+            show.initial.name(first.onto)
+        );
+        line(match alike.len() {
+            1 => format!("  contact      {what} at {}, {}", time(first.t_s), speed(first.speed_m_s)),
+            times => format!(
+                "  contact      {what} {times} times, from {} ({}) to {} ({})",
+                time(first.t_s),
+                speed(first.speed_m_s),
+                time(last.t_s),
+                speed(last.speed_m_s)
+            ),
+        });
+    }
+}
+
+/// A speed of contact.
+fn speed(m_s: f64) -> String {
+    format!("{} m/s", number::with_digits(m_s, if m_s < 1000.0 { 3 } else { 4 }))
 }
 
 /// As editors read it.
@@ -305,6 +328,20 @@ mod tests {
         assert_eq!(time(90.0), "90.000 s");
         assert_eq!(time(-86_400.0 * 3.0), "-3.000 d");
         assert_eq!(time(31_557_600.0 * 12.5), "12.500 yr");
+    }
+
+    #[test]
+    fn a_ball_that_bounces_on_and_on_is_told_of_once() {
+        let text = "format = 1\ntitle = \"T\"\n[[body]]\nname = \"Skerry\"\nmass = \"1 Moon masses\"\nradius = \"1737 km\"\n\
+                    surface = \"bounce\"\nrestitution = 0.5\n[[body]]\nname = \"Ball\"\ndrop = { onto = \"Skerry\", height = \"100 m\" }\n\
+                    [[beat]]\ntitle = \"Fall\"\nclock = { span = \"90 s\", lasts = \"9 s\" }\nview = { centre = \"Ball\", span = \"300 m\" }\n";
+        let show = fallaround_core::show::Rehearsal::whole(text).unwrap();
+        let mut lines = Vec::new();
+        contacts(&show, &mut |line| lines.push(line));
+        let [bounces, rest] = lines.as_slice() else { panic!("{lines:#?}") };
+        assert!(bounces.starts_with("  contact      Ball bounces off Skerry 1"), "{bounces}");
+        assert!(bounces.contains(" times, from 11.095 s (18 m/s) to "), "{bounces}");
+        assert!(rest.starts_with("  contact      Ball comes to rest on Skerry at "), "{rest}");
     }
 
     #[test]
