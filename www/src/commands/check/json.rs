@@ -12,7 +12,7 @@ const LEVERS: usize = 5;
 
 /// The keys of a report, by the alphabet.
 #[cfg(test)]
-pub(super) const KEYS: [&str; 20] = [
+pub(super) const KEYS: [&str; 22] = [
     "beats",
     "bodies",
     "bytes",
@@ -25,6 +25,8 @@ pub(super) const KEYS: [&str; 20] = [
     "from_s",
     "holds",
     "lasts_s",
+    "long_steps",
+    "method",
     "most_bytes",
     "numbers",
     "path_tolerance",

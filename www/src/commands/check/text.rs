@@ -197,7 +197,7 @@ fn last_digits(show: &Show, report: &Report, line: &mut impl FnMut(String)) {
     }
     let kinds = [
         (Why::NoTime, "not tried, for want of time"),
-        (Why::Alone, "not tried, as the file takes no number so near"),
+        (Why::Alone, "not tried, as no number so near will do"),
         (Why::Zero, "not tried, as a billionth of 0 is 0"),
         (Why::Breaks(String::new()), "tried, and no show came of it"),
     ];
