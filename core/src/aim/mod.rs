@@ -30,6 +30,7 @@
 mod course;
 mod fit;
 mod guess;
+mod outcome;
 mod put;
 mod slopes;
 #[cfg(test)]
@@ -37,7 +38,7 @@ mod tests;
 mod trial;
 mod wording;
 
-pub use trial::Miss;
+pub use outcome::Miss;
 
 use crate::resolve::Solar;
 use crate::scenario::edit::Document;
@@ -80,7 +81,7 @@ pub enum AimFailure {
     Missed {
         /// Where the aim stands in the text.
         place: Place,
-        /// What is aimed with: "throw", "orbit" ...
+        /// What is aimed with: "throw", "orbit", "start" (of a place) ...
         form: String,
         /// What the nearest trial misses, those outcomes first that it misses most.
         nearest: Vec<Miss>,
@@ -169,6 +170,8 @@ struct Trying {
     guesses: Option<Vec<Vec<f64>>>,
     /// How many points other than guesses so far.
     next: usize,
+    /// Whether the best of what the file states and the guesses have been refined.
+    refined: bool,
     /// Those that could be compared.
     tried: Vec<Tried>,
     /// Why the first of the rest couldn't.
@@ -233,7 +236,7 @@ impl Aiming {
 
     fn progress(&self) -> Progress {
         let within = match (&self.stage, self.aims.get(self.current)) {
-            (Stage::Trying(trying), Some(aim)) if trying.guesses.as_ref().is_some_and(Vec::is_empty) => {
+            (Stage::Trying(trying), Some(aim)) if trying.refined => {
                 GUESSING + (0.5 - GUESSING) * share(trying.next, samples(aim) + 1)
             }
             (Stage::Refining { sampled: false, .. }, _) => GUESSING,
@@ -263,10 +266,11 @@ impl Trying {
     /// The next point, if there is one.
     fn point(&mut self, trial: &Trial<'_>) -> Option<Vec<f64>> {
         // The first point is what the file states; then come the guesses.
-        if self.next > 0
-            && let Some(guess) = self.guesses.get_or_insert_with(|| guess::points(trial)).pop()
-        {
-            return Some(guess);
+        if self.next > 0 && !self.refined {
+            return self
+                .guesses
+                .get_or_insert_with(|| guess::points(trial).into_iter().rev().collect())
+                .pop();
         }
         self.next += 1;
         match self.next - 1 {
@@ -301,9 +305,11 @@ impl Stage {
                         }
                     }
                 }
-                let guessed = trying.next == 1
-                    && trying.guesses.as_ref().is_some_and(Vec::is_empty)
-                    && !trying.tried.is_empty();
+                let guessed = trying.guesses.as_ref().is_some_and(Vec::is_empty) && !trying.refined;
+                if guessed && trying.tried.is_empty() {
+                    trying.refined = true;
+                    return Ok(None);
+                }
                 let sampled = trying.next > samples(trial.aim);
                 if !sampled && !guessed {
                     return Ok(None);
@@ -338,7 +344,8 @@ impl Stage {
                 }
                 // The guesses led nowhere: the whole range, and what came nearest so far.
                 let tried = vec![nearest.clone()];
-                *self = Self::Trying(Trying { guesses: Some(Vec::new()), next: 1, tried, why: None });
+                let trying = Trying { next: 1, refined: true, tried, ..Trying::default() };
+                *self = Self::Trying(trying);
                 Ok(None)
             }
         }
@@ -387,7 +394,10 @@ fn missed(trial: &Trial<'_>, point: &[f64]) -> AimFailure {
 
 /// What an aim is aimed with: the form whose numbers are free.
 fn form(aim: &Aim) -> String {
-    aim.free.first().and_then(|free| free.keys.first()).map_or("aim", |form| *form).to_owned()
+    match aim.free.first().and_then(|free| free.keys.first()) {
+        Some(&"place") => "start".to_owned(),
+        form => form.map_or("aim", |form| *form).to_owned(),
+    }
 }
 
 /// The text with the numbers of a point, in as few digits as meet the aim.

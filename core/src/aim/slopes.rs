@@ -7,14 +7,15 @@
 //! A count does not change in steps so small. There are none, and differences of whole trials are taken instead, for a ratio of periods,
 //! for events other than apsides, passages, contacts, nodes and crossings of a distance, and wherever the variations have none.
 
+use super::outcome::{Moment, speed_size};
 use super::put::put;
-use super::trial::{Flight, Moment, Trial};
+use super::trial::{Flight, Trial};
 use crate::Vector3;
 use crate::ephemeris::State;
 use crate::ephemeris::variations::{StartVariation, Variations};
 use crate::initial::InitialState;
 use crate::resolve::resolve_among;
-use crate::scenario::{EventKind, Free, Outcome, Scenario, Want};
+use crate::scenario::{EventKind, Free, Outcome, Scenario};
 
 /// Step of the differences of the start, as part of a number's range: what numbers resolve to is smooth, and known to rounding.
 const DIFFERENCE: f64 = 1e-5;
@@ -45,7 +46,10 @@ impl Trial<'_> {
             for (start, slopes) in slopes[index].iter_mut().enumerate() {
                 let varied = variations.relative(start, moment.body, moment.about);
                 let turn = Turn { moment, varied, acc, scene_m: self.scene_m };
-                *slopes = turn.slopes(want)?;
+                *slopes = turn.slopes(&view.outcomes(want, moment))?;
+                if moment.touches() {
+                    slopes.extend([0.0; 3]);
+                }
             }
         }
         let column = |start: usize| slopes.iter().flat_map(|want| want[start].iter().copied()).collect();
@@ -87,15 +91,15 @@ struct Turn<'a> {
 }
 
 impl Turn<'_> {
-    /// Derivatives of the residuals of a want, in their order.
-    fn slopes(&self, want: &Want) -> Option<Vec<f64>> {
+    /// Derivatives of the residuals of outcomes, in their order.
+    fn slopes(&self, outcomes: &[Outcome]) -> Option<Vec<f64>> {
         let State { pos, vel } = self.moment.state;
         let later = self.later()?;
         // At the event's own time.
         let (by_pos, by_vel) = (self.varied.pos + vel * later, self.varied.vel + self.acc * later);
         let r = pos.norm();
         let mut slopes = Vec::new();
-        for outcome in &want.outcomes {
+        for outcome in outcomes {
             match *outcome {
                 Outcome::At(at) => slopes.push(later / at.s()),
                 Outcome::Distance(wanted) => {
@@ -105,7 +109,7 @@ impl Turn<'_> {
                     slopes.extend((change / self.scene_m).iter());
                 }
                 Outcome::Speed(wanted) => {
-                    slopes.push(vel.dot(&by_vel) / vel.norm() / super::trial::speed_size(wanted));
+                    slopes.push(vel.dot(&by_vel) / vel.norm() / speed_size(wanted));
                 }
                 Outcome::Longitude(_) => {
                     slopes.push((pos.x * by_pos.y - pos.y * by_pos.x) / (pos.x * pos.x + pos.y * pos.y));

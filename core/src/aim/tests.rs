@@ -369,3 +369,49 @@ fn two_bodies_are_led_to_one_place() {
     assert!((apart(3, 1) - 5e7).abs() <= 50.0 && (apart(4, 3) - 2e7).abs() <= 20.0, "{:?}", solved.misses);
     assert!(solved.trials < 200, "{}", solved.trials);
 }
+
+#[test]
+fn a_stone_is_led_onto_a_moon_that_most_throws_miss() {
+    let text = format!(
+        "{}\n[[body]]\nname = \"Stone\"\nthrow = {{ from = \"Brae\", height = \"200 km\", speed = \"11 km/s\", elevation = \"5 deg\", heading = \"80 deg\", longitude = \"-100 deg\" }}\n\
+         [[aim]]\nwant = [{{ event = \"contact of Stone with Moonlet\", at = \"3 d\" }}]\n\
+         free = [\n  {{ body = \"Stone\", quantity = \"throw.speed\", from = \"10.5 km/s\", to = \"12.5 km/s\" }},\n  \
+         {{ body = \"Stone\", quantity = \"throw.elevation\", from = \"0 deg\", to = \"90 deg\" }},\n  \
+         {{ body = \"Stone\", quantity = \"throw.heading\", from = \"0 deg\", to = \"360 deg\" }},\n]\n",
+        MOON.replace("mass = \"1e15 kg\"", "mass = \"1 Moon masses\"\nradius = \"1737 km\"")
+    );
+    let solved = solve(&text).unwrap();
+    assert!(solved.trials < 60, "{}", solved.trials);
+    let (t_s, speed_m_s, _) = first(&solved.text, 4.0 * 86_400.0, EventKind::Contact, 3, 1);
+    assert!((t_s - 3.0 * 86_400.0).abs() <= 1.0, "{t_s}");
+    // What falls onto the Moon from afar is at least as fast as what escapes from it, 2.375 km/s.
+    assert!(speed_m_s > 2375.0, "{speed_m_s}");
+}
+
+#[test]
+fn what_never_happens_is_told_with_how_far_it_is_from_happening() {
+    let text = format!(
+        "{}[[aim]]\nwant = [{{ event = \"contact of Ball with Skerry\", until = \"3 h\", longitude = \"40 deg\" }}]\n\
+         free = [{{ body = \"Ball\", quantity = \"throw.speed\", from = \"3 km/s\", to = \"4 km/s\" }}]\n",
+        AIRLESS.replace("45 deg", "90 deg").replace("0.9 km/s", "3.5 km/s")
+    );
+    let failure = solve(&text).unwrap_err();
+    let AimFailure::Missed { nearest, .. } = &failure else { panic!("{failure:?}") };
+    // All of them escape (2.4 km/s); the slowest is nearest at the end.
+    let (gm, r) = (4.902_800_118e12, 1.739e6);
+    let (pos, _) =
+        crate::conic::propagate(crate::Vector3::x() * r, crate::Vector3::x() * 3e3, gm, 10_800.0).unwrap();
+    let off = Length::parse(&nearest[0].off).unwrap().m();
+    assert!((off - (pos.norm() - 1.737e6)).abs() < 1e-4 * off, "{off} {}", pos.norm());
+    let said = failure.to_string();
+    assert!(said.starts_with("no such throw: nearest miss "), "{said}");
+    assert!(said.ends_with("(no contact of Ball with Skerry within 3 h)"), "{said}");
+    // A place has a start, and an apsis that is still to come is nearer the sooner it comes.
+    let text = format!(
+        "{MOON}[[aim]]\nwant = [{{ event = \"apoapsis of Shot\", until = \"1 d\", distance = \"400000 km\" }}]\n\
+         free = [{{ body = \"Shot\", quantity = \"place.velocity.y\", from = \"10.6 km/s\", to = \"10.66 km/s\" }}]\n"
+    );
+    let said = solve(&text).unwrap_err().to_string();
+    assert!(said.starts_with("no such start: nearest miss "), "{said}");
+    assert!(said.ends_with("(no apoapsis of Shot within 1 d)"), "{said}");
+}
