@@ -123,3 +123,18 @@ fn no_step_of_a_check_takes_the_whole_show() {
     }
     assert!(calls >= least + beats * 1800 / 200 + beats * 25 + (beats - 1) * 150, "{calls} calls");
 }
+
+#[test]
+fn small_steps_find_the_same_of_swarms_and_of_changes_that_wait() {
+    let swarm = "[[body]]\nname = \"Dust\"\nswarm = { belt = \"Orla\", from = \"1 au\", to = \"2 au\", eccentricity = 0.1, count = 300 }\n";
+    let change = "[[change]]\nat = { beat = \"R\", after = \"30 d\" }\nkick = \"Fenn\"\nspeed = \"2 km/s\"\n";
+    let first = "[[beat]]\ntitle = \"First\"\nclock = { pace = \"1 d/s\", lasts = \"20 s\" }\nview = { centre = \"Orla\", span = \"6 au\" }\n";
+    let text = format!("{QUIET}{swarm}{change}{first}{REACH}");
+    let whole = Proof::whole(&text).expect("a scenario").report;
+    // The pace and the length of the first beat say when the second one starts, for which the change waits.
+    let of_beat = whole.levers.iter().filter(|lever| lever.number.owner == Owner::Beat(0)).count();
+    assert_eq!(of_beat, 2, "{:#?}", whole.levers);
+    let mut proof = Proof::start(&text).expect("a scenario");
+    while !proof.work(7).expect("progress").done {}
+    assert_eq!(proof.finish().expect("done").report, whole);
+}
