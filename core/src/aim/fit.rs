@@ -18,7 +18,7 @@ const TRIES: usize = 14;
 const ITERATIONS: usize = 60;
 
 /// An iteration that saves less than this part of the cost is the last.
-const LEAST_GAIN: f64 = 1e-9;
+const LEAST_GAIN: f64 = 1e-5;
 
 /// A cost below which there is nothing left but rounding; residuals are by the size of what is wanted.
 const ROUNDING: f64 = 1e-26;

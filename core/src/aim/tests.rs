@@ -415,3 +415,24 @@ fn what_never_happens_is_told_with_how_far_it_is_from_happening() {
     assert!(said.starts_with("no such start: nearest miss "), "{said}");
     assert!(said.ends_with("(no apoapsis of Shot within 1 d)"), "{said}");
 }
+
+#[test]
+fn hohmanns_first_kick_is_found_from_where_it_leads() {
+    // D. A. Vallado, Fundamentals of Astrodynamics and Applications, 4th ed. (2013), example 6-1 (from memory): from 191.344 11 km to
+    // 35,781.348 57 km above the Earth, the first kick 2.457 038 km/s, the way 315.403 min.
+    let text = "format = 1\ntitle = \"Upwards\"\n[[body]]\nname = \"Earth\"\ngm = \"398600.4418 km^3/s^2\"\nradius = \"6378.137 km\"\n\
+         [[body]]\nname = \"Ship\"\nthrow = { from = \"Earth\", height = \"191.34411 km\", speed = \"7.79 km/s\", elevation = \"0 deg\" }\n\
+         [[aim]]\nwant = [{ event = \"apoapsis of Ship\", until = \"6 h\", distance = \"42159.48557 km\" }]\n\
+         free = [{ body = \"Ship\", quantity = \"throw.speed\", from = \"7.7 km/s\", to = \"10.6 km/s\" }]\n";
+    let solved = solve(text).unwrap();
+    let (initial, eph) = paths(&solved.text, 6.0 * 3600.0);
+    let circle = (398_600.441_8e9_f64 / 6_569_481.11).sqrt();
+    let kick = initial.bodies[1].vel.norm() - circle;
+    // A millionth of the apoapsis is some 0.02 m/s; the book rounds its constants too.
+    assert!((kick - 2_457.038).abs() < 0.05, "{kick} m/s");
+    let query = events::Query::new(EventKind::Apoapsis, BodyId(1), None);
+    let t_s = events::find(&eph, &initial, &query, 1.0, 6.0 * 3600.0)[0].t_s;
+    assert!((t_s - 315.403 * 60.0).abs() < 0.1, "{} min", t_s / 60.0);
+    // From what is stated, straight there.
+    assert!(solved.trials < 20, "{}", solved.trials);
+}
