@@ -12,6 +12,7 @@
 //! Multiple Time Scales (1985), 377 (the time scale from derivatives of the acceleration), with the factor that T. Pham,
 //! H. Rein & D. S. Spiegel, Open J. Astrophys. 7 (2024), use for such time scales: the seventh root of 7! times the tolerance.
 
+use super::from_memory;
 use super::spacings::{
     B_FROM_G, BINOMIAL, G_FROM_B, INVERSE, POSITION_FROM_G, SPACINGS, VELOCITY_FROM_G, position_weights,
     velocity_weights,
@@ -415,13 +416,6 @@ impl Radau {
 #[inline]
 pub(crate) fn time_scale_square([a, jerk, snap, crackle]: [f64; 4]) -> f64 {
     ((a * snap).sqrt() + jerk) / ((jerk * crackle).sqrt() + snap)
-}
-
-/// A table, to be read from where it lies: as constants in the code, its numbers would be made anew for each use in wasm,
-/// which takes longer than what they are used for.
-#[inline]
-fn from_memory<T>(table: &T) -> &T {
-    std::hint::black_box(table)
 }
 
 /// As many numbers of a slice as are worked on side by side.

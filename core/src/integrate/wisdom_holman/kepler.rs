@@ -11,6 +11,7 @@
 use super::rows::{Rows, by_lanes, lanes, lanes3};
 use crate::Vector3;
 use crate::conic;
+use crate::integrate::from_memory;
 
 /// Largest |β s²| for which the series below hold to the last place. A step of a twentieth of the period that belongs to periapsis
 /// stays below a third of it.
@@ -76,6 +77,7 @@ fn fast<const N: usize>(
     let ([x, y, z], [u, v, w]) = (lanes3::<N>(&rows.pos, first), lanes3::<N>(&rows.vel, first));
     let (mut moved, mut kicked) = ([[0.0; N]; 3], [[0.0; N]; 3]);
     let mut held = [0.0; N];
+    let [c2s, c3s] = from_memory(&SERIES);
     for l in 0..N {
         let gm = gms[l];
         let r0 = (x[l] * x[l] + y[l] * y[l] + z[l] * z[l]).sqrt();
@@ -86,12 +88,11 @@ fn fast<const N: usize>(
         let zeta = v2 * r0 - gm;
         let h = h_s - h_s * slowing * beta;
         let (e, k, t) = (eta * inv_r0, zeta * inv_r0, h * inv_r0);
-        let s = t * (1.0 - t * (0.5 * e - t * (0.5 * e * e - k * (1.0 / 6.0))));
+        let s = t * (1.0 - t * (0.5 * e - t * (0.5 * e * e - k * c3s[0])));
         // Halley's step; what the series lack is far less than what the step leaves.
         let q = beta * s * s;
         let q2 = q * q;
-        let c3 = (1.0 / 6.0 - q * (1.0 / 120.0)) + q2 * (1.0 / 5_040.0 - q * (1.0 / 362_880.0));
-        let c2 = (0.5 - q * (1.0 / 24.0)) + q2 * (1.0 / 720.0 - q * (1.0 / 40_320.0));
+        let (c2, c3) = (low(c2s, q, q2), low(c3s, q, q2));
         let (g2, g3) = (s * s * c2, s * s * s * c3);
         let (g0, g1) = (1.0 - beta * g2, s - beta * g3);
         let late = r0 * s + eta * g2 + zeta * g3 - h;
@@ -99,7 +100,7 @@ fn fast<const N: usize>(
         let s = s - late * r / (r * r - 0.5 * late * (eta * g0 + zeta * g1));
         // Newton's.
         let q = beta * s * s;
-        let (c2, c3) = (c2_series(q), c3_series(q));
+        let (c2, c3) = (series(c2s, q), series(c3s, q));
         let (g2, g3) = (s * s * c2, s * s * s * c3);
         let (g0, g1) = (1.0 - beta * g2, s - beta * g3);
         let late = r0 * s + eta * g2 + zeta * g3 - h;
@@ -128,23 +129,41 @@ fn fast<const N: usize>(
     held.iter().filter(|&&held| held != 0.0).count()
 }
 
-/// Stumpff's c2 for |q| <= [`LARGEST_ARGUMENT`]: the first term left out is below 1e-17 of it. Terms are taken in pairs, which
+/// Coefficients of Stumpff's c2 and c3, without their signs.
+const SERIES: [[f64; 7]; 2] = [
+    [
+        0.5,
+        1.0 / 24.0,
+        1.0 / 720.0,
+        1.0 / 40_320.0,
+        1.0 / 3_628_800.0,
+        1.0 / 479_001_600.0,
+        1.0 / 87_178_291_200.0,
+    ],
+    [
+        1.0 / 6.0,
+        1.0 / 120.0,
+        1.0 / 5_040.0,
+        1.0 / 362_880.0,
+        1.0 / 39_916_800.0,
+        1.0 / 6_227_020_800.0,
+        1.0 / 1_307_674_368_000.0,
+    ],
+];
+
+/// A series of Stumpff for |q| <= [`LARGEST_ARGUMENT`]: the first term left out is below 1e-17 of it. Terms are taken in pairs, which
 /// don't wait for each other.
 #[inline]
-fn c2_series(q: f64) -> f64 {
+fn series(c: &[f64; 7], q: f64) -> f64 {
     let q2 = q * q;
-    let low = (0.5 - q * (1.0 / 24.0)) + q2 * (1.0 / 720.0 - q * (1.0 / 40_320.0));
-    let high = (1.0 / 3_628_800.0 - q * (1.0 / 479_001_600.0)) + q2 * (1.0 / 87_178_291_200.0);
-    low + (q2 * q2) * high
+    let high = (c[4] - q * c[5]) + q2 * c[6];
+    low(c, q, q2) + (q2 * q2) * high
 }
 
-/// Stumpff's c3, likewise.
+/// Its first four terms.
 #[inline]
-fn c3_series(q: f64) -> f64 {
-    let q2 = q * q;
-    let low = (1.0 / 6.0 - q * (1.0 / 120.0)) + q2 * (1.0 / 5_040.0 - q * (1.0 / 362_880.0));
-    let high = (1.0 / 39_916_800.0 - q * (1.0 / 6_227_020_800.0)) + q2 * (1.0 / 1_307_674_368_000.0);
-    low + (q2 * q2) * high
+fn low(c: &[f64; 7], q: f64, q2: f64) -> f64 {
+    (c[0] - q * c[1]) + q2 * (c[2] - q * c[3])
 }
 
 #[cfg(test)]

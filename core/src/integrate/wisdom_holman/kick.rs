@@ -65,10 +65,14 @@ impl Sums {
         Self { first: rows(), second: rows() }
     }
 
+    /// Some planets after the others: filling row by row, or copying rows, would be left to the browser in wasm, and takes longer there
+    /// than a few numbers are worth.
     fn clear(&mut self) {
-        for row in self.first.iter_mut().chain(&mut self.second) {
-            row.fill(0.0);
-        }
+        by_lanes!(self.first[0].len(), first, N => {
+            for row in self.first.iter_mut().chain(&mut self.second) {
+                row[first..first + N].copy_from_slice(&[0.0; N]);
+            }
+        });
     }
 
     fn fold(&mut self, bodies: usize) {
@@ -80,11 +84,19 @@ impl Sums {
             for (sum, one) in first.iter_mut().zip(again) {
                 *sum += one;
             }
-            let (once, again) = first.split_at_mut(bodies);
-            let wrapped = again.len();
-            again.copy_from_slice(&once[..wrapped]);
         }
+        wrap(&mut self.first, bodies);
     }
+}
+
+/// Lets rows go round: what lies beyond the bodies is what they begin with.
+fn wrap(rows: &mut [Vec<f64>; 3], bodies: usize) {
+    by_lanes!(bodies / 2, first, N => {
+        for row in rows.iter_mut() {
+            let once: [f64; N] = lanes(row, first);
+            row[bodies + first..bodies + first + N].copy_from_slice(&once);
+        }
+    });
 }
 
 /// What a kick noticed.
@@ -186,7 +198,7 @@ impl Kick {
         let mut steepest = 0.0;
         let mut all = [0.0; 3];
         by_lanes!(self.bodies(), first, N => {
-            steepest = self.centre::<N>(first, h_s, bend, sigma, rows, &mut all).max(steepest);
+            steepest = larger(steepest, self.centre::<N>(first, h_s, bend, sigma, rows, &mut all));
         });
         self.shift = std::array::from_fn(|axis| h_s * sigma[axis] + all[axis]);
         Noticed { near, steepest: steepest * h_s * h_s }
@@ -217,11 +229,12 @@ impl Kick {
     /// Accelerations, and where asked how they change; gives the number of near pairs.
     fn pulls(&mut self, rows: &Rows, whole: bool) -> usize {
         let n = self.bodies();
-        for (around, pos) in self.around.iter_mut().zip(&rows.pos) {
-            let wrapped = around.len() - n;
-            around[..n].copy_from_slice(pos);
-            around[n..].copy_from_slice(&pos[..wrapped]);
-        }
+        by_lanes!(n, first, N => {
+            for (around, pos) in self.around.iter_mut().zip(&rows.pos) {
+                around[first..first + N].copy_from_slice(&lanes::<N>(pos, first));
+            }
+        });
+        wrap(&mut self.around, n);
         self.acc.clear();
         let (mut near, mut pair) = (0, 0);
         for apart in 1..=n / 2 {
@@ -338,7 +351,7 @@ impl Kick {
                 all[axis] += shift[axis][l];
             }
         }
-        steep.into_iter().fold(0.0, f64::max)
+        steep.into_iter().fold(0.0, larger)
     }
 }
 
@@ -379,6 +392,12 @@ pub(super) fn slip<const N: usize>(first: usize, h_s: f64, rows: &mut Rows) {
         }
     }
     rows.add_pos::<N>(first, &moved);
+}
+
+/// The larger of two numbers, or the first; in wasm `f64::max` is a call.
+#[inline]
+fn larger(a: f64, b: f64) -> f64 {
+    if b > a { b } else { a }
 }
 
 /// Sum of products, four sums side by side.
