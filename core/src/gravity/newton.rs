@@ -18,6 +18,8 @@ struct Bodies {
     z: Two,
     /// GM, m³/s²; 0 for a tracer.
     gm: Two,
+    /// What each pulls the other by: the GM of the second, and that of the first with the other sign.
+    each_other: Two,
     /// The pull on them.
     ax: Two,
     ay: Two,
@@ -32,6 +34,7 @@ const EMPTY: Bodies = Bodies {
     y: [NOBODY; 2],
     z: [NOBODY; 2],
     gm: [0.0; 2],
+    each_other: [0.0; 2],
     ax: [0.0; 2],
     ay: [0.0; 2],
     az: [0.0; 2],
@@ -50,9 +53,12 @@ pub(super) struct Newton {
     twos: Vec<Bodies>,
     /// How many of the twos have mass.
     massive: usize,
-    /// Where each body is in `twos`: which two, which of them.
-    places: Vec<(usize, usize)>,
+    /// Which bodies each of the twos is; [`NONE`] where there is no second.
+    bodies: Vec<[usize; 2]>,
 }
+
+/// No body.
+const NONE: usize = usize::MAX;
 
 impl Newton {
     /// Bodies by their GM, m³/s²; 0 for a tracer.
@@ -60,25 +66,29 @@ impl Newton {
         let with_mass = gms.iter().filter(|gm| **gm != 0.0).count();
         let massive = with_mass.div_ceil(2);
         let mut twos = vec![EMPTY; massive + (gms.len() - with_mass).div_ceil(2)];
+        let mut bodies = vec![[NONE; 2]; twos.len()];
         let (mut next_massive, mut next_tracer) = (0, 2 * massive);
-        let mut places = Vec::with_capacity(gms.len());
-        for &gm in gms {
+        for (body, &gm) in gms.iter().enumerate() {
             let next = if gm != 0.0 { &mut next_massive } else { &mut next_tracer };
-            let place = (*next / 2, *next % 2);
-            twos[place.0].gm[place.1] = gm;
-            places.push(place);
+            twos[*next / 2].gm[*next % 2] = gm;
+            bodies[*next / 2][*next % 2] = body;
             *next += 1;
         }
-        Self { twos, massive, places }
+        for two in &mut twos {
+            two.each_other = [two.gm[1], -two.gm[0]];
+        }
+        Self { twos, massive, bodies }
     }
 
     /// Sets the accelerations of all bodies.
     pub(super) fn set(&mut self, pos: &[f64], out: &mut [f64]) {
-        for (&(two, l), pos) in self.places.iter().zip(pos.chunks_exact(3)) {
-            let two = &mut self.twos[two];
-            (two.x[l], two.y[l], two.z[l]) = (pos[0], pos[1], pos[2]);
-        }
-        for two in &mut self.twos {
+        let (pos, _) = pos.as_chunks::<3>();
+        for (two, bodies) in self.twos.iter_mut().zip(&self.bodies) {
+            for (l, body) in bodies.iter().enumerate() {
+                if let Some(pos) = pos.get(*body) {
+                    (two.x[l], two.y[l], two.z[l]) = (pos[0], pos[1], pos[2]);
+                }
+            }
             (two.ax, two.ay, two.az) = ([0.0; 2], [0.0; 2], [0.0; 2]);
         }
         // All of these at once: each waits for its root and its quotient, and they needn't wait for one another.
@@ -92,14 +102,34 @@ impl Newton {
             let (here, later) = self.twos.split_at_mut(i + 1);
             here[i].pull_later(later);
         }
-        for (&(two, l), out) in self.places.iter().zip(out.chunks_exact_mut(3)) {
-            let two = &self.twos[two];
-            (out[0], out[1], out[2]) = (two.ax[l], two.ay[l], two.az[l]);
+        for (two, bodies) in self.twos.iter().zip(&self.bodies) {
+            two.tell(*bodies, out);
         }
     }
 }
 
 impl Bodies {
+    /// Writes what pulls on them to where bodies have three numbers each: as whole vectors where the second stands next to the first.
+    #[inline]
+    fn tell(&self, [one, two]: [usize; 2], out: &mut [f64]) {
+        let ([ax, bx], [ay, by], [az, bz]) = (self.ax, self.ay, self.az);
+        if one + 1 == two
+            && let Some(both) = out.get_mut(3 * one..3 * one + 6)
+            && let [first, second, third] = both.as_chunks_mut::<2>().0
+        {
+            *first = f64x2::new([ax, ay]).to_array();
+            *second = f64x2::new([az, bx]).to_array();
+            *third = f64x2::new([by, bz]).to_array();
+            return;
+        }
+        let (out, _) = out.as_chunks_mut::<3>();
+        for (body, pull) in [(one, [ax, ay, az]), (two, [bx, by, bz])] {
+            if let Some(out) = out.get_mut(body) {
+                *out = pull;
+            }
+        }
+    }
+
     /// The pairs that two twos are themselves.
     #[inline]
     fn pull_each_other(one: &mut Self, two: &mut Self) {
@@ -109,7 +139,7 @@ impl Bodies {
         let r2 = x * x + y * y + z * z;
         let w = (f64x2::ONE / (r2 * r2.sqrt())).to_array();
         for (l, bodies) in [one, two].into_iter().enumerate() {
-            let by = f64x2::new([bodies.gm[1], -bodies.gm[0]]) * w[l];
+            let by = f64x2::new(bodies.each_other) * w[l];
             bodies.add(by * x.to_array()[l], by * y.to_array()[l], by * z.to_array()[l]);
         }
     }

@@ -11,28 +11,31 @@ use wide::{f32x4, f64x2};
 /// What pulls on the tracers of a block, at one node: places and GMs.
 #[derive(Debug, Clone, Default)]
 pub(super) struct Pulls {
-    /// In double precision.
-    whole: Vec<[f64x2; 4]>,
-    /// In single precision.
-    slight: Vec<[f32x4; 4]>,
+    /// Room for all in double precision, and how many are in it.
+    whole: (Vec<[f64x2; 4]>, usize),
+    /// The same in single precision.
+    slight: (Vec<[f32x4; 4]>, usize),
 }
 
 impl Pulls {
     /// With room for all bodies of a field.
     pub(super) fn of(field: &Field) -> Self {
-        Self { whole: Vec::with_capacity(field.massive), slight: Vec::with_capacity(field.massive) }
+        let bodies = field.massive;
+        Self { whole: (vec![[f64x2::ZERO; 4]; bodies], 0), slight: (vec![[f32x4::ZERO; 4]; bodies], 0) }
     }
 
     /// Takes the bodies from a node; `slight` says which of them are.
     pub(super) fn take(&mut self, field: &Field, node: &Node, slight: impl Fn(usize) -> bool) {
-        self.whole.clear();
-        self.slight.clear();
+        let Self { whole, slight: slights } = self;
+        (whole.1, slights.1) = (0, 0);
         for (n, (source, at)) in field.sources[..field.massive].iter().zip(&node.at).enumerate() {
             let body = [at[0], at[1], at[2], source.gm];
             if slight(n) {
-                self.slight.push(body.map(|number| f32x4::splat(single(number))));
+                slights.0[slights.1] = body.map(|number| f32x4::splat(single(number)));
+                slights.1 += 1;
             } else {
-                self.whole.push(body.map(f64x2::splat));
+                whole.0[whole.1] = body.map(f64x2::splat);
+                whole.1 += 1;
             }
         }
     }
@@ -52,7 +55,7 @@ impl Pulls {
             } else {
                 self.add_whole::<false>([x, y, z], softened2_m2, &mut sum);
             }
-            if !self.slight.is_empty() {
+            if self.slight.1 > 0 {
                 let slight = self.sum_slight([x, y, z]);
                 for (sum, slight) in sum.iter_mut().zip(slight) {
                     for l in 0..LANES {
@@ -82,7 +85,7 @@ impl Pulls {
     ) {
         let [x, y, z] = place.map(twos);
         let [mut ax, mut ay, mut az] = sum.each_ref().map(twos);
-        for &[at_x, at_y, at_z, gm] in &self.whole {
+        for &[at_x, at_y, at_z, gm] in &self.whole.0[..self.whole.1] {
             for l in 0..2 {
                 let (dx, dy, dz) = (at_x - x[l], at_y - y[l], at_z - z[l]);
                 let mut r2 = dx * dx + dy * dy + dz * dz;
@@ -103,7 +106,7 @@ impl Pulls {
     fn sum_slight(&self, place: [&[f64; LANES]; 3]) -> [[f32; LANES]; 3] {
         let [x, y, z] = place.map(|row| f32x4::new(row.map(single)));
         let [mut ax, mut ay, mut az] = [f32x4::ZERO; 3];
-        for &[at_x, at_y, at_z, gm] in &self.slight {
+        for &[at_x, at_y, at_z, gm] in &self.slight.0[..self.slight.1] {
             let (dx, dy, dz) = (at_x - x, at_y - y, at_z - z);
             // The cube of a distance would be beyond single precision.
             let near = f32x4::ONE / (dx * dx + dy * dy + dz * dz).sqrt();
