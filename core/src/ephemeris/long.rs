@@ -86,13 +86,14 @@ impl Long {
         if steps.trouble_within(TRY_AGAIN).is_some() {
             return;
         }
+        let united = members.united.iter().map(|&(body, host)| Rider { body, host, offset: [0.0; 3] });
+        let riders: Vec<Rider> = run.riders().chain(united).collect();
+        let company = Company { members: &members.bodies, gms: &members.gms, centre, riders: &riders };
+        let Some(knots) = Knots::start(&company, t_s, &members.pos, &members.vel) else { return };
         // Companions stay with their hosts from now on, whatever comes.
         for &(moon, host) in &members.united {
             run.unite(initial, moon, host);
         }
-        let riders: Vec<Rider> = run.riders().collect();
-        let company = Company { members: &members.bodies, gms: &members.gms, centre, riders: &riders };
-        let Some(knots) = Knots::start(&company, t_s, &members.pos, &members.vel) else { return };
         thinner.close(track, t_s, run.hosts());
         let place =
             |body: &usize| members.bodies.iter().position(|member| member == body).unwrap_or_default();
