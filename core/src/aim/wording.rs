@@ -13,7 +13,11 @@ fn text(value: f64, units: &[(f64, &str)]) -> String {
 }
 
 pub(super) fn length_text(m: f64) -> String {
-    text(m, &[(AU_M, "au"), (1e3, "km"), (1.0, "m")])
+    // From a tenth of it on: people don't say "fifteen million kilometres" in digits.
+    if m.abs() >= 0.1 * AU_M {
+        return format!("{} au", with_digits(m / AU_M, DIGITS));
+    }
+    text(m, &[(1e3, "km"), (1.0, "m")])
 }
 
 pub(super) fn speed_text(m_s: f64) -> String {

@@ -148,7 +148,7 @@ pub struct Number {
 }
 
 impl Number {
-    /// Of what it is, as people call it: "Fenn", "change 2", "beat 3", "[physics]".
+    /// Of what it is, as people call it: Fenn, change 2, beat 3, `[physics]`.
     pub fn of(&self, show: &Show) -> String {
         match self.owner {
             Owner::Physics => "[physics]".to_owned(),
