@@ -51,11 +51,12 @@ impl fmt::Display for Stopped {
             }
             Why::TooLong { against } => {
                 let at = time(t_s.abs());
-                write!(
-                    f,
-                    "the paths take too much memory after {at}; show less time, fewer bodies, or wider orbits. {}",
-                    against.join(" ")
-                )
+                write!(f, "the paths take too much memory after {at}")?;
+                let against = against.join(" ");
+                if !against.is_empty() {
+                    write!(f, ", and can't go on by long steps ({})", against.trim_end_matches('.'))?;
+                }
+                f.write_str("; show less time, fewer bodies, or wider orbits")
             }
         }
     }

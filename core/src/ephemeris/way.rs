@@ -121,7 +121,7 @@ impl Way {
         let against = match &self.choice {
             Some(Err(reasons)) => reasons.clone(),
             Some(Ok(choice)) => vec![format!(
-                "By long steps they would be off by more than {MOST_ERROR} of the distance from {}, or bodies pass each other too often.",
+                "Between the states kept they would be off by more than {MOST_ERROR} of the distance from {}, or bodies pass each other too often.",
                 initial.bodies[choice.centre].name
             )],
             None => Vec::new(),

@@ -11,7 +11,7 @@ use crate::conic::{ConicError, Elements, elements_from_state};
 use crate::initial::InitialState;
 use crate::math::float::cbrt;
 use std::f64::consts::TAU;
-use told::{left_out, tell};
+use told::{LeftOut, left_out, tell};
 
 /// Steps in the period of a circle at the lowest periapsis. The method's limit is [`STEPS_PER_PERIAPSIS`]; a third more keeps it
 /// while orbits change.
@@ -233,8 +233,12 @@ fn forces(initial: &InitialState, members: &Members, centre: usize, against: &mu
             against.push(format!("Air slows {name}, which long steps don't know of."));
         }
     }
-    let much = left_out(initial, members, centre).into_iter().filter(|(share, _)| *share > LEFT_OUT);
-    against.extend(much.map(|(_, sentence)| sentence));
+    let much = left_out(initial, members, centre).into_iter().filter(|force| force.share > LEFT_OUT);
+    against.extend(
+        much.map(|LeftOut { what, share }| {
+            format!("{what} can't be left out: it is {share:.0e} of the pull.")
+        }),
+    );
 }
 
 /// Orbit of a member about the centre.

@@ -23,13 +23,25 @@ pub fn describe(initial: &InitialState, choice: &Choice, span_s: f64) -> Vec<Str
         ));
     }
     if let Some(centre) = members.bodies.iter().position(|body| *body == choice.centre) {
-        sentences.extend(left_out(initial, &members, centre).into_iter().map(|(_, sentence)| sentence));
+        sentences.extend(
+            left_out(initial, &members, centre)
+                .into_iter()
+                .map(|LeftOut { what, share }| format!("{what} is left out: some {share:.0e} of the pull.")),
+        );
     }
     sentences
 }
 
-/// Forces that are left out: by how much of the pull, and a sentence about each.
-pub(super) fn left_out(initial: &InitialState, members: &Members, centre: usize) -> Vec<(f64, String)> {
+/// A force that long steps leave out.
+pub(super) struct LeftOut {
+    /// What it is, as the start of a sentence.
+    pub(super) what: String,
+    /// How much of the pull it is, near the nearest body.
+    pub(super) share: f64,
+}
+
+/// The forces that are left out.
+pub(super) fn left_out(initial: &InitialState, members: &Members, centre: usize) -> Vec<LeftOut> {
     let mut found = Vec::new();
     let name = |place: usize| initial.bodies[members.bodies[place]].name.as_str();
     let nearest = |to: usize| {
@@ -39,23 +51,20 @@ pub(super) fn left_out(initial: &InitialState, members: &Members, centre: usize)
     for oblate in &initial.forces.oblate {
         let Some(place) = members.bodies.iter().position(|body| *body == oblate.body.0) else { continue };
         let flat = oblate.radius_m / nearest(place);
-        let share = 1.5 * oblate.j2 * flat * flat;
-        let sentence = format!("The bulge of {} is left out: {share:.0e} of its pull.", name(place));
-        found.push((share, sentence));
+        found.push(LeftOut {
+            what: format!("The bulge of {}", name(place)),
+            share: 1.5 * oblate.j2 * flat * flat,
+        });
     }
     if initial.forces.relativity {
         let heaviest = (0..members.gms.len())
             .filter(|&place| place != centre)
             .map(|place| members.gms[place])
             .fold(0.0, f64::max);
-        let share = heaviest / (C_M_S * C_M_S * nearest(centre));
-        found.push((
-            share,
-            format!(
-                "Relativity is that of {} alone; that between the others is left out: some {share:.0e} of the pull.",
-                name(centre)
-            ),
-        ));
+        found.push(LeftOut {
+            what: format!("Relativity but for that of {}", name(centre)),
+            share: heaviest / (C_M_S * C_M_S * nearest(centre)),
+        });
     }
     found
 }
