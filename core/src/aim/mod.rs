@@ -40,6 +40,7 @@ mod wording;
 
 pub use outcome::Miss;
 
+use crate::math::counts::number_from;
 use crate::resolve::Solar;
 use crate::scenario::edit::Document;
 use crate::scenario::{Aim, ChangeTime, Place, Problem};
@@ -254,8 +255,7 @@ impl Aiming {
 }
 
 fn share(part: usize, whole: usize) -> f64 {
-    let number = |n: usize| u32::try_from(n).map_or(f64::MAX, f64::from);
-    number(part) / number(whole)
+    number_from(part) / number_from(whole)
 }
 
 fn samples(aim: &Aim) -> usize {

@@ -4,6 +4,7 @@ use super::wording::{angle_text, length_text, speed_text, time_text};
 use crate::ephemeris::osculating::osculating;
 use crate::ephemeris::{Ephemeris, State, events};
 use crate::initial::InitialState;
+use crate::math::counts::number_from;
 use crate::math::float::{asin, atan2};
 use crate::scenario::{BodyId, EventKind, EventRef, Outcome, Want, Wanted};
 use crate::units::{Angle, Length, Speed, number};
@@ -120,7 +121,12 @@ impl View<'_> {
         if let [Outcome::Count(wanted)] = want.outcomes[..] {
             let allowed = allowed(want, Outcome::Count(wanted));
             let found = self.events(&event, until_s);
-            misses.push(plain(format!("count of {of}"), count(found.len()), count(wanted), allowed));
+            misses.push(plain(
+                format!("count of {of}"),
+                number_from(found.len()),
+                number_from(wanted),
+                allowed,
+            ));
             return Ok(());
         }
         let Some(moment) = self.moment(want)? else { return Ok(()) };
@@ -364,8 +370,4 @@ fn plain(what: String, got: f64, wanted: f64, allowed: f64) -> Miss {
         share: (got - wanted) / allowed,
         residual: vec![(got - wanted) / wanted.max(1.0)],
     }
-}
-
-fn count(n: usize) -> f64 {
-    u32::try_from(n).map_or(f64::MAX, f64::from)
 }

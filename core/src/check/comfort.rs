@@ -9,6 +9,7 @@ use super::flash::Meter;
 use super::reach::Player;
 use super::report::BeatReport;
 use super::sight::{self, FRAME_S, called};
+use crate::math::counts::number_from;
 use crate::math::float;
 use crate::picture::view::Camera;
 use crate::picture::{Composer, Options, Screen, passage};
@@ -95,8 +96,7 @@ impl Comfort {
     pub(super) fn fraction(&self, show: &Show) -> f64 {
         match &self.hammered {
             Some(Hammer { beat, .. }) => {
-                let count = |n: usize| u32::try_from(n).map_or(0.0, f64::from);
-                0.5 + 0.5 * count(*beat) / count(show.plan.beats.len().max(*beat))
+                0.5 + 0.5 * number_from(*beat) / number_from(show.plan.beats.len().max(*beat))
             }
             None => (0.5 * self.clock.clock.show_s() / show.plan.lasts_s().max(1.0)).min(0.5),
         }

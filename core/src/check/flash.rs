@@ -7,6 +7,7 @@
 //!
 //! The picture is looked at in cells of a fortieth of its height. Only what fills area counts: discs, areas and the veil.
 
+use crate::math::counts::number_from;
 use crate::math::float;
 use crate::picture::{Colour, DisplayList, Shape};
 
@@ -95,17 +96,18 @@ fn worst_block(flashing: &[bool]) -> f64 {
             worst = worst.max(rows.flatten().filter(|one| **one).count());
         }
     }
-    let count = |n: usize| u32::try_from(n).map_or(0.0, f64::from);
-    count(worst) / count(width * height)
+    number_from(worst) / number_from(width * height)
 }
 
 /// Relative luminance of every cell, from its middle.
 fn luminances(list: &DisplayList) -> Vec<f32> {
     let mut cells = vec![list.ground; ACROSS * DOWN];
-    let count = |n: usize| u32::try_from(n).map_or(0.0, f64::from);
     let middle = |index: usize| {
         let (column, row) = (index % ACROSS, index / ACROSS);
-        [(count(column) + 0.5) / count(ACROSS) * list.width, (count(row) + 0.5) / count(DOWN) * list.height]
+        [
+            (number_from(column) + 0.5) / number_from(ACROSS) * list.width,
+            (number_from(row) + 0.5) / number_from(DOWN) * list.height,
+        ]
     };
     for item in &list.items {
         let mut lay = |inside: &dyn Fn([f64; 2]) -> bool, fill: Colour| {

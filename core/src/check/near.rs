@@ -3,6 +3,7 @@
 use super::report::Encounter;
 use crate::ephemeris::events::{self, Query};
 use crate::ephemeris::{Ephemeris, Track};
+use crate::math::counts::number_from;
 use crate::math::float;
 use crate::scenario::{BodyId, EventKind};
 use crate::show::{PlannedBeat, Show};
@@ -68,8 +69,7 @@ impl Near {
 
     /// Share of the pairs looked at, 0 to 1.
     pub(super) fn fraction(&self, show: &Show) -> f64 {
-        let count = |n: usize| u32::try_from(n).map_or(0.0, f64::from);
-        (count(self.pair[0]) / count(show.initial.listed.max(1))).min(1.0)
+        (number_from(self.pair[0]) / number_from(show.initial.listed.max(1))).min(1.0)
     }
 
     /// The nearest of every pair that comes near, the nearest (in the measure that made it near) first.
@@ -84,7 +84,7 @@ impl Near {
 fn pieces(show: &Show, planned: &PlannedBeat) -> u32 {
     const MOST: f64 = 10_000.0;
     let eph = &show.ephemeris;
-    let steps = u32::try_from(eph.forward().len() + eph.backward().len()).map_or(f64::MAX, f64::from);
+    let steps = number_from(eph.forward().len() + eph.backward().len());
     let share = (planned.until_s - planned.from_s).abs() / (eph.until_s() - eph.from_s());
     (share * steps / STEPS).ceil().clamp(1.0, MOST) as u32
 }

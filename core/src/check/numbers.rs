@@ -10,6 +10,7 @@ use super::sample::{Places, Sample};
 use super::sight::{self, called};
 use super::stated::{self, Found};
 use super::trial::{PIECES, TRACER_STEPS, Trial};
+use crate::math::counts::number_from;
 use crate::resolve::Solar;
 use crate::scenario::ChangeTime;
 use crate::scenario::edit::Document;
@@ -145,23 +146,23 @@ impl Numbers {
 
     /// How many numbers there is time for.
     fn affordable(&self, show: &Show) -> usize {
-        let bodies = count(show.initial.bodies.len());
-        let steps = count(show.ephemeris.forward().len() + show.ephemeris.backward().len());
+        let bodies = number_from(show.initial.bodies.len());
+        let steps = number_from(show.ephemeris.forward().len() + show.ephemeris.backward().len());
         // To find when a change is made, all before it is integrated once more.
         let waits = |change: &&crate::scenario::Change| !matches!(change.at, ChangeTime::Time(_));
-        let runs = 1.0 + count(show.scenario.changes.iter().filter(waits).count());
+        let runs = 1.0 + number_from(show.scenario.changes.iter().filter(waits).count());
         let of_bodies = runs * steps * (bodies + 0.5 * bodies * (bodies - 1.0));
-        let pulling = count(show.initial.bodies.iter().filter(|body| body.gm_m3_s2 > 0.0).count());
-        let sown = count(show.initial.swarms.iter().map(|swarm| swarm.pos.len()).sum());
+        let pulling = number_from(show.initial.bodies.iter().filter(|body| body.gm_m3_s2 > 0.0).count());
+        let sown = number_from(show.initial.swarms.iter().map(|swarm| swarm.pos.len()).sum());
         let one = of_bodies + TRACER_STEP * pulling * self.tracers.steps() + SOWN * sown;
         let stated = self.found.iter().filter(|found| found.at.value != 0.0).count();
-        let fits = (0..stated).take_while(|&n| count(n + 1) * one <= MOST_PAIR_STEPS).count();
+        let fits = (0..stated).take_while(|&n| number_from(n + 1) * one <= MOST_PAIR_STEPS).count();
         fits.max(1).min(stated)
     }
 
     /// Share of the numbers tried, 0 to 1.
     pub(super) fn fraction(&self) -> f64 {
-        self.to_try.map_or(0.0, |to_try| count(self.next) / count(to_try.max(1)))
+        self.to_try.map_or(0.0, |to_try| number_from(self.next) / number_from(to_try.max(1)))
     }
 
     /// What came of them goes to the report: the worst first.
@@ -279,10 +280,6 @@ pub(super) fn close_calls(show: &Show, encounters: &[Encounter], findings: &mut 
             remedy: "let them pass farther apart, or state the number in full as `aim` writes it".to_owned(),
         });
     }
-}
-
-fn count(n: usize) -> f64 {
-    u32::try_from(n).map_or(f64::MAX, f64::from)
 }
 
 #[cfg(test)]

@@ -3,6 +3,7 @@
 //! # Source
 //! Measured: Canvas 2D in Chromium without a graphics card, 1920x1080, two cores; the table stands in `core/benches/README.md`.
 
+use crate::math::counts::number_from;
 use crate::picture::{DisplayList, Shape};
 
 /// To clear the picture, ms.
@@ -32,16 +33,16 @@ fn shape_ms(shape: &Shape, list: &DisplayList) -> f64 {
     let whole = list.width * list.height;
     match shape {
         Shape::Line { points, stroke, .. } => {
-            count(points.len()) * if stroke.width > 1.0 { POINT_MS } else { THIN_POINT_MS }
+            number_from(points.len()) * if stroke.width > 1.0 { POINT_MS } else { THIN_POINT_MS }
         }
-        Shape::Segments { segments, .. } => count(segments.len()) * PIECE_MS,
+        Shape::Segments { segments, .. } => number_from(segments.len()) * PIECE_MS,
         Shape::Area { points, .. } => {
-            count(points.len()) * THIN_POINT_MS + area(points).min(whole) * PIXEL_MS
+            number_from(points.len()) * THIN_POINT_MS + area(points).min(whole) * PIXEL_MS
         }
         Shape::Disc { radius, .. } => {
             DISC_MS + (std::f64::consts::PI * radius * radius).min(whole) * PIXEL_MS
         }
-        Shape::Points { points, .. } => IMAGE_MS + count(points.len()) * DOT_MS,
+        Shape::Points { points, .. } => IMAGE_MS + number_from(points.len()) * DOT_MS,
         Shape::Text { .. } => TEXT_MS,
     }
 }
@@ -50,10 +51,6 @@ fn shape_ms(shape: &Shape, list: &DisplayList) -> f64 {
 fn area(points: &[[f64; 2]]) -> f64 {
     let next = points.iter().cycle().skip(1);
     0.5 * points.iter().zip(next).map(|(a, b)| a[0] * b[1] - a[1] * b[0]).sum::<f64>().abs()
-}
-
-fn count(n: usize) -> f64 {
-    u32::try_from(n).map_or(f64::MAX, f64::from)
 }
 
 #[cfg(test)]

@@ -6,6 +6,7 @@ use super::report::Report;
 use super::second::Second;
 use super::sight;
 use super::{kicks, motion, reach};
+use crate::math::counts::number_from;
 use crate::show::Show;
 
 /// Frames of the show clock that take about as long as a step of the integrator.
@@ -99,8 +100,7 @@ impl Passes {
 
     /// Share of the passes done, 0 to 1.
     pub(super) fn fraction(&self, show: &Show) -> f64 {
-        let count = |n: usize| u32::try_from(n).map_or(0.0, f64::from);
-        let of_beats = count(self.beat) / count(show.plan.beats.len().max(1));
+        let of_beats = number_from(self.beat) / number_from(show.plan.beats.len().max(1));
         let within = if self.pass == Pass::Near { self.near.fraction(show) } else { of_beats.min(1.0) };
         let before = match self.pass {
             Pass::Apart => 0.0,

@@ -4,6 +4,7 @@ use super::finding::{Finding, Topic, Weight};
 use super::paint::paint_ms;
 use super::report::{BeatReport, Report};
 use super::sight::{self, Seen, called};
+use crate::math::counts::number_from;
 use crate::picture::type_metrics::CAP_HEIGHT;
 use crate::picture::{Composer, DisplayList, Options, Shape, Tag};
 use crate::scenario::BodyId;
@@ -85,9 +86,8 @@ impl Reading {
 
     /// Share of the pictures looked at, 0 to 1.
     pub(super) fn fraction(&self, show: &Show) -> f64 {
-        let count = |n: usize| u32::try_from(n).map_or(0.0, f64::from);
-        (count(self.beat) + f64::from(self.piece) / f64::from(PIECES + 1))
-            / count(show.plan.beats.len().max(1))
+        (number_from(self.beat) + f64::from(self.piece) / f64::from(PIECES + 1))
+            / number_from(show.plan.beats.len().max(1))
     }
 }
 
@@ -193,7 +193,7 @@ fn judge(seen: &Seen<'_>, report: &mut BeatReport, findings: &mut Vec<Finding>) 
     }
     for caption in &seen.beat.captions {
         let characters = caption.text.chars().filter(|c| *c != '*' && *c != '\n').count();
-        let needs_s = NOTICED_S + u32::try_from(characters).map_or(f64::MAX, f64::from) / READ_A_SECOND;
+        let needs_s = NOTICED_S + number_from(characters) / READ_A_SECOND;
         report.reading_s = report.reading_s.max(needs_s);
         if needs_s > seen.planned.lasts_s {
             add(

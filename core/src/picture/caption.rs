@@ -6,6 +6,7 @@ use super::geometry::{Px, Rect};
 use super::list::{Anchor, Tag};
 use super::scene::{Scene, Words};
 use super::{look, type_metrics};
+use crate::math::counts::number_from;
 use crate::scenario::Beat;
 
 /// Weight of a caption's words, and of those in the lamp's colour.
@@ -153,7 +154,7 @@ impl Caption {
                 let found = empty.best(set.rect.width(), set.rect.height(), &within, frame);
                 let score = 100.0 * found.covered - 10.0 * found.room
                     + 4.0 * nearness
-                    + if written > 1 { 12.0 } else { 4.0 } * u32::try_from(broken).map_or(0.0, f64::from);
+                    + if written > 1 { 12.0 } else { 4.0 } * number_from(broken);
                 if best.as_ref().is_none_or(|b| score < b.0) {
                     let mut caption = set.clone();
                     caption.move_to(found.corner);

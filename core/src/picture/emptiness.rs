@@ -4,6 +4,7 @@ use super::frame::Frame;
 use super::geometry::{Px, Rect, between, length};
 use super::list::{Anchor, Item, Shape};
 use super::type_metrics;
+use crate::math::counts::number_from;
 
 /// Cells down the shorter side of the window.
 const CELLS: f64 = 36.0;
@@ -33,10 +34,6 @@ pub struct Found {
 #[expect(clippy::cast_possible_truncation, clippy::cast_sign_loss, reason = "clamped to 0..=100,000 before")]
 fn index(value: f64) -> usize {
     value.clamp(0.0, 100_000.0) as usize
-}
-
-fn real(index: usize) -> f64 {
-    u32::try_from(index).map_or(0.0, f64::from)
 }
 
 impl Emptiness {
@@ -134,10 +131,10 @@ impl Emptiness {
         for r in r0..=r1.min(self.rows.saturating_sub(1)) {
             for c in 0..self.columns {
                 let rect = Rect {
-                    left: real(c) * self.cell,
-                    top: real(r) * self.cell,
-                    right: real(c + 1) * self.cell,
-                    bottom: real(r + 1) * self.cell,
+                    left: number_from(c) * self.cell,
+                    top: number_from(r) * self.cell,
+                    right: number_from(c + 1) * self.cell,
+                    bottom: number_from(r + 1) * self.cell,
                 };
                 if rect.gap_to_disc(at, radius) <= 0.0 {
                     let w = &mut self.weights[r * self.columns + c];
@@ -161,8 +158,8 @@ impl Emptiness {
         for i in 0..=steps(down) + 1 {
             for j in 0..=steps(across) + 1 {
                 let corner = [
-                    within.left + (real(j) * self.cell).min(across),
-                    within.top + (real(i) * self.cell).min(down),
+                    within.left + (number_from(j) * self.cell).min(across),
+                    within.top + (number_from(i) * self.cell).min(down),
                 ];
                 let rect = Rect {
                     left: corner[0],
@@ -215,7 +212,7 @@ impl Emptiness {
     /// of 1 and √2.
     fn distances(&self) -> Vec<f64> {
         let (w, h) = (self.columns, self.rows);
-        let far = |c: usize, r: usize| real((c + 1).min(w - c).min(r + 1).min(h - r));
+        let far = |c: usize, r: usize| number_from((c + 1).min(w - c).min(r + 1).min(h - r));
         let mut d: Vec<f64> =
             (0..w * h).map(|i| if self.weights[i] > 0.0 { 0.0 } else { far(i % w, i / w) }).collect();
         let ways: [(isize, isize, f64); 4] = [

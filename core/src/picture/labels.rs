@@ -12,6 +12,7 @@ use super::geometry::{Px, Rect, between, clip_piece, length};
 use super::list::{Anchor, Colour};
 use super::look;
 use super::scene::{Scene, Spot, Words};
+use crate::math::counts::number_from;
 
 /// Steps a show second in which places are decided.
 pub const STEPS_A_SECOND: f64 = 8.0;
@@ -111,7 +112,7 @@ impl Block {
     /// Width and height of its box, px.
     pub fn size(&self, frame: &Frame) -> Px {
         let widths = self.lines.iter().map(|l| super::type_metrics::width(&l.text, frame.label, l.weight));
-        [widths.fold(0.0, f64::max), line_height(frame) * count(self.lines.len())]
+        [widths.fold(0.0, f64::max), line_height(frame) * number_from(self.lines.len())]
     }
 
     /// Middle of its box at a place, relative to what it belongs to; `None`: it has no such place.
@@ -145,10 +146,6 @@ fn sign(v: f64) -> f64 {
     } else {
         0.0
     }
-}
-
-fn count(n: usize) -> f64 {
-    u32::try_from(n).map_or(0.0, f64::from)
 }
 
 /// Height of one line of a label, px.
@@ -192,11 +189,11 @@ pub fn step(
             }
             let middle = [block.at[0] + offset[0], block.at[1] + offset[1]];
             let rect = ink_box(middle, block.size(frame), frame).grown(0.15 * frame.label);
-            let struck = count(clutter.iter().filter(|p| rect.holds(**p)).count().min(8));
+            let struck = number_from(clutter.iter().filter(|p| rect.holds(**p)).count().min(8));
             cost += if struck > 0.0 { STRUCK + 1.5 * struck } else { 0.0 };
             // A short way is better than one across its own body.
             cost += old.map_or(0.0, |o| 0.8 * length(between(o.offset, offset)) / frame.label);
-            cost += if place == INSIDE { -20.0 } else { 0.6 * count(place) };
+            cost += if place == INSIDE { -20.0 } else { 0.6 * number_from(place) };
             if let Some(entry) = all.get_mut(place) {
                 *entry = Some((cost, offset));
             }
@@ -394,13 +391,13 @@ pub fn draw(scene: &mut Scene<'_>, placed: &[Placed]) {
     let size = scene.frame.label;
     let lead = line_height(&scene.frame);
     for label in placed {
-        let top = label.rect.middle()[1] - 0.5 * lead * count(label.block.lines.len());
+        let top = label.rect.middle()[1] - 0.5 * lead * number_from(label.block.lines.len());
         for (i, line) in label.block.lines.iter().enumerate() {
             let colour = look::fade(line.colour, label.opacity);
             let words = Words { text: &line.text, size, weight: line.weight, colour };
             let room = label.rect.width() - words.width();
             // Capitals are two thirds of the size: their middle is the line's middle.
-            let baseline = top + lead * (count(i) + 0.5) + 0.5 * super::type_metrics::CAP_HEIGHT * size;
+            let baseline = top + lead * (number_from(i) + 0.5) + 0.5 * super::type_metrics::CAP_HEIGHT * size;
             let at = [label.rect.left + room * label.lean, baseline];
             scene.add_text(line.tag, at, Anchor::Start, &words);
         }

@@ -16,6 +16,7 @@ use super::scouts::Scouts;
 use super::view::Camera;
 use super::wording::Grain;
 use super::{Options, compose, look};
+use crate::math::counts::number_from;
 use crate::scenario::{Beat, BodyId, Mark, Readout};
 use crate::show::{Left, Moment, Show};
 
@@ -306,13 +307,13 @@ impl Layout {
         }
         let last = self.steps.len() - 1;
         let (a, b) = ((wanted - 2).min(last), (wanted - 1).min(last));
-        let share = if a == b { 0.0 } else { (position - to_real(a)).clamp(0.0, 1.0) };
+        let share = if a == b { 0.0 } else { (position - number_from(a)).clamp(0.0, 1.0) };
         (&self.steps[a], &self.steps[b], share)
     }
 
     fn extend(&mut self, show: &Show, beat: &Beat, house: House, until: usize) {
         let at = |layout: &Self, step: usize| {
-            let t_s = layout.first_step_s + layout.step_s * to_real(step);
+            let t_s = layout.first_step_s + layout.step_s * number_from(step);
             let scene = scene_at(show, beat, layout.key, house, t_s);
             let spots = scene.spots();
             (layout.blocks(&scene, &spots), layout.obstacles(&scene, &spots, &layout.area_labels(&scene)))
@@ -342,10 +343,6 @@ impl Layout {
 )]
 fn index(value: f64) -> usize {
     value.clamp(0.0, 6000.0) as usize
-}
-
-fn to_real(index: usize) -> f64 {
-    u32::try_from(index).map_or(0.0, f64::from)
 }
 
 /// Bodies of which marks speak first, then the others, each in the order of the file.

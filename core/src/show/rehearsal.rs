@@ -5,6 +5,7 @@ use super::plan::Plan;
 use super::planner::{self, Limits, Need};
 use crate::ephemeris::{Ephemeris, Propagation, SHOW_BYTES};
 use crate::initial::InitialState;
+use crate::math::counts::number_from;
 use crate::resolve::{self, Solar};
 use crate::scenario::{self, ChangeTime, Place, Problem, Scenario};
 use crate::swarm::{SNAPSHOT_BYTES, SwarmPath, SwarmRun};
@@ -267,7 +268,6 @@ impl Rehearsal {
                 [plan.covers_until_s, plan.covers_from_s].into_iter().all(|t_s| reaches(run.path(), t_s))
             })
         });
-        let share = |count: usize| u32::try_from(count).map_or(0.0, f64::from);
         let of_bodies = if self.initial.swarms.is_empty() { 1.0 } else { 1.0 - SWARMS_SHARE };
         let estimate = match &self.plan {
             _ if done => 1.0,
@@ -275,7 +275,7 @@ impl Rehearsal {
                 let (covered_s, all_s) = self.swarm_times(plan);
                 of_bodies + (1.0 - of_bodies) * (covered_s / all_s).clamp(0.0, 1.0)
             }
-            None => of_bodies * (share(beat) + within) / (share(beats) + 1.0),
+            None => of_bodies * (number_from(beat) + within) / (number_from(beats) + 1.0),
         };
         let fraction = estimate.max(self.fraction);
         Progress { done, fraction, beat, beats, model_s }

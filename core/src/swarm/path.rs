@@ -2,6 +2,7 @@
 
 use super::Loss;
 use super::flock::{PER_TRACER, START_STEPS, STEPS};
+use crate::math::counts::number_from;
 
 /// Most memory that the snapshots of all swarms of a show take together, bytes.
 pub const SNAPSHOT_BYTES: usize = 16 << 20;
@@ -75,9 +76,8 @@ impl SwarmPath {
 
     /// About how many steps its tracers took together: so many in each stretch in the mean, and the work of its start.
     pub fn steps(&self) -> f64 {
-        let count = |n: usize| u32::try_from(n).map_or(f64::MAX, f64::from);
         let stretches = self.forward.starts.len() + self.backward.starts.len();
-        count(stretches) * count(self.tracers) * (STEPS + f64::from(START_STEPS))
+        number_from(stretches) * number_from(self.tracers) * (STEPS + f64::from(START_STEPS))
     }
 
     /// Memory held, bytes.

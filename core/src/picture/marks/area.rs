@@ -6,6 +6,7 @@ use super::super::{look, type_metrics, wording};
 use super::sector::Sectors;
 use super::tail;
 use crate::Vector3;
+use crate::math::counts::number_from;
 use crate::scenario::BodyId;
 
 /// How far past the covered stretch an area may slide along the path, in lengths of the stretch.
@@ -168,7 +169,7 @@ impl Areas {
         let places = |reach: f64, gap: f64| -> Vec<(usize, Rect)> {
             let count = self.texts.len();
             let place = |(i, text): (usize, &(usize, String, f64))| {
-                let off = (real(i) - 0.5 * (real(count) - 1.0)) * pitch;
+                let off = (number_from(i) - 0.5 * (number_from(count) - 1.0)) * pitch;
                 let off = off + if 2 * i < count { -gap } else { gap };
                 let at = along(along(middle, out, reach), row, off);
                 (text.0, Rect::about(at, text.2, HEIGHT * size))
@@ -192,7 +193,7 @@ impl Areas {
         let size = scene.frame.label;
         let at_px = |t: f64| self.rim(scene, t);
         let eph = &scene.show.ephemeris;
-        let whole_s = sectors.every_s * real(sectors.count);
+        let whole_s = sectors.every_s * number_from(sectors.count);
         let first_s = (sectors.from_s - SLIDE_PAST * whole_s).max(eph.from_s());
         let last_s = (sectors.from_s + (1.0 + SLIDE_PAST) * whole_s).min(eph.until_s());
         let place = |t: f64, width: f64| -> Option<Rect> {
@@ -252,10 +253,6 @@ impl Areas {
         }
         kept
     }
-}
-
-fn real(index: usize) -> f64 {
-    u32::try_from(index).map_or(0.0, f64::from)
 }
 
 #[cfg(test)]

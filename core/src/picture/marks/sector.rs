@@ -5,6 +5,7 @@ use super::super::list::{Shape, Tag};
 use super::super::look;
 use super::super::scene::{Scene, points, stroke};
 use super::conic::Osculating;
+use crate::math::counts::number_from;
 use crate::math::float;
 use crate::scenario::{BodyId, Mark};
 use crate::sweep;
@@ -59,14 +60,14 @@ impl Sectors {
             return None;
         }
         let has_time_for = ((scene.until_s - scene.beat_from_s) / every_s + 1e-6).floor();
-        let fits = (0..MOST).take_while(|&k| as_f64(k) < has_time_for).count();
+        let fits = (0..MOST).take_while(|&k| number_from(k) < has_time_for).count();
         let count = count.map_or(fits, |c| c.min(MOST));
         (count > 0).then_some(Self { body, about, from_s: scene.beat_from_s, every_s, count, area })
     }
 
     /// Start and end of one of them, model time.
     pub fn ends_s(&self, index: usize) -> [f64; 2] {
-        let from = self.from_s + as_f64(index) * self.every_s;
+        let from = self.from_s + number_from(index) * self.every_s;
         [from, from + self.every_s]
     }
 
@@ -75,10 +76,6 @@ impl Sectors {
         let [from_s, until_s] = self.ends_s(index);
         sweep::area_m2(&scene.show.ephemeris, self.body, self.about, from_s, until_s)
     }
-}
-
-fn as_f64(index: usize) -> f64 {
-    u32::try_from(index).map_or(0.0, f64::from)
 }
 
 /// Draws the sectors that have begun: tint and hatch first, then their edges.
@@ -105,7 +102,7 @@ fn draw_one(scene: &mut Scene<'_>, sectors: &Sectors, index: usize, from_s: f64,
     outline.push(centre);
     let seen = clip_area(&outline, &scene.keep());
     if seen.len() > 2 {
-        let angle = look::HATCH_TURN_RAD * as_f64(index % 6) + 0.25;
+        let angle = look::HATCH_TURN_RAD * number_from(index % 6) + 0.25;
         let (s, c) = float::sin_cos(angle);
         let segments = hatch(&seen, [c, -s], centre, scene.frame.part(look::HATCH_STEP).max(4.0));
         scene.add(tag, Shape::Area { points: seen, fill: look::fade(colour, tint) });
