@@ -106,7 +106,7 @@ impl Course<'_> {
     fn miss(&self, target: &Target, numbers: &[f64]) -> Option<Vec<f64>> {
         let mut scenario = self.scenario.clone();
         for ((free, _), share) in self.own.iter().zip(numbers) {
-            put(&mut scenario, free, free.from + share * (free.to - free.from));
+            put(&mut scenario, free, free.value(*share));
         }
         let initial = resolve_among(&scenario, self.trial.solar).ok()?;
         let body = initial.bodies.get(self.shooter.0)?;
@@ -210,9 +210,8 @@ impl Course<'_> {
                 _ => None,
             }
         };
-        let share = |&(free, so_far): &(&Free, f64)| {
-            number(free).map_or(so_far, |si| ((si - free.from) / (free.to - free.from)).clamp(0.0, 1.0))
-        };
+        let share =
+            |&(free, so_far): &(&Free, f64)| number(free).map_or(so_far, |si| free.share(si).clamp(0.0, 1.0));
         Some(self.own.iter().map(share).collect())
     }
 }

@@ -57,7 +57,7 @@ fn of_one(
 ) -> Option<Vec<Vec<f64>>> {
     let mut scenario = scenario.clone();
     for (free, share) in trial.aim.free.iter().zip(point) {
-        put(&mut scenario, free, free.from + share * (free.to - free.from));
+        put(&mut scenario, free, free.value(*share));
     }
     let initial = resolve_among(&scenario, trial.solar).ok()?;
     let until_s = trial.aim.want.iter().map(horizon_s).fold(1.0, f64::max);

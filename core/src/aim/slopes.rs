@@ -75,7 +75,7 @@ impl Trial<'_> {
 
     fn start(&self, scenario: &Scenario, free: &Free, share: f64) -> Option<InitialState> {
         let mut scenario = scenario.clone();
-        put(&mut scenario, free, free.from + share * (free.to - free.from));
+        put(&mut scenario, free, free.value(share));
         resolve_among(&scenario, self.solar).ok()
     }
 }

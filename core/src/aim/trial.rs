@@ -27,7 +27,7 @@ impl Trial<'_> {
     pub(super) fn written(&self, point: &[f64], digits: Option<usize>) -> Result<Document, EditError> {
         let mut document = self.document.clone();
         for (free, share) in self.aim.free.iter().zip(point) {
-            let si = free.from + share * (free.to - free.from);
+            let si = free.value(*share);
             let path = Path { root: Root::BodyAt(free.section), keys: &free.keys };
             document.set(path, value(free, si, digits).map_err(|e| EditError::WouldBreak(e.to_string()))?)?;
         }
@@ -46,7 +46,7 @@ impl Trial<'_> {
             Measure::Number => self.document.get(path)?.trim().parse().ok()?,
             _ => read(free.measure, &self.document.get_text(path)?).ok()?,
         };
-        let share = (si - free.from) / (free.to - free.from);
+        let share = free.share(si);
         (0.0..=1.0).contains(&share).then_some(share)
     }
 

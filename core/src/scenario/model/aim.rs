@@ -86,6 +86,18 @@ pub struct Free {
     pub unit: String,
 }
 
+impl Free {
+    /// Its value at a part of its range, 0 to 1; SI.
+    pub fn value(&self, share: f64) -> f64 {
+        self.from + share * (self.to - self.from)
+    }
+
+    /// Where in its range a value lies, as a part of it; beyond 0 to 1 where it doesn't. SI.
+    pub fn share(&self, si: f64) -> f64 {
+        (si - self.from) / (self.to - self.from)
+    }
+}
+
 /// What a free number measures.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Measure {
