@@ -93,7 +93,6 @@ impl Knots {
     /// From a state of the members: positions (m) and velocities (m/s), three numbers each. `None` where one of them has no
     /// closed orbit.
     pub(super) fn start(company: &Company<'_>, t_s: f64, pos: &[f64], vel: &[f64]) -> Option<Self> {
-        let at = |of: &[f64], place: usize| Vector3::new(of[3 * place], of[3 * place + 1], of[3 * place + 2]);
         let centre = company.centre;
         let far = |place: &usize| {
             let (r, v) = (at(pos, *place) - at(pos, centre), at(vel, *place) - at(vel, centre));
@@ -145,7 +144,6 @@ impl Knots {
     pub(super) fn push(&mut self, t_s: f64, pos: &[f64], vel: &[f64]) -> bool {
         let n = self.senses.len();
         let kept = self.orbits.len();
-        let at = |of: &[f64], place: usize| Vector3::new(of[3 * place], of[3 * place + 1], of[3 * place + 2]);
         // The mean of all within, where and how fast.
         let mut middle = (at(pos, 0), at(vel, 0));
         for place in 1..=n {
@@ -165,8 +163,7 @@ impl Knots {
             }
             let share = self.gms[place] / gm;
             middle = (middle.0 + (x - middle.0) * share, middle.1 + (v - middle.1) * share);
-            let Equinoctial { semi_major_m, h, k, p, q, mean_longitude_rad } = orbit;
-            self.orbits.extend([semi_major_m, h, k, p, q, mean_longitude_rad]);
+            self.orbits.extend(numbers_of(&orbit));
         }
         self.times_s.push(t_s);
         self.measure();
@@ -245,8 +242,7 @@ impl Knots {
 
     fn orbit(&self, knot: usize, place: usize) -> Equinoctial {
         let from = (knot * self.senses.len() + place) * PER_ORBIT;
-        let o = &self.orbits[from..from + PER_ORBIT];
-        Equinoctial { semi_major_m: o[0], h: o[1], k: o[2], p: o[3], q: o[4], mean_longitude_rad: o[5] }
+        orbit_of(std::array::from_fn(|number| self.orbits[from + number]))
     }
 
     /// The interval of knots that holds an instant: the number of its first knot.
@@ -264,8 +260,7 @@ impl Knots {
 
     /// The orbit at an instant by the polynomial through some knots; of those that stand there twice, once.
     fn between(&self, knots: [usize; 4], t_s: f64, place: usize) -> Equinoctial {
-        let first = self.orbit(knots[1], place);
-        let origin = [first.semi_major_m, first.h, first.k, first.p, first.q, first.mean_longitude_rad];
+        let origin = numbers_of(&self.orbit(knots[1], place));
         let mut sum = [0.0; PER_ORBIT];
         for (i, &knot) in knots.iter().enumerate() {
             if i > 0 && knots[i - 1] == knot {
@@ -283,8 +278,7 @@ impl Knots {
                 *sum += weight * (number - origin);
             }
         }
-        let [a, h, k, p, q, l] = std::array::from_fn(|i| origin[i] + sum[i]);
-        let mut orbit = Equinoctial { semi_major_m: a, h, k, p, q, mean_longitude_rad: l };
+        let mut orbit = orbit_of(std::array::from_fn(|i| origin[i] + sum[i]));
         // A polynomial may overshoot.
         let e = orbit.eccentricity();
         if e > MOST_ECCENTRIC {
@@ -466,3 +460,17 @@ impl Knots {
 
 /// Numbers before those of the members.
 const HEADER: usize = 14;
+
+/// The three numbers of one among those of many.
+fn at(of: &[f64], place: usize) -> Vector3<f64> {
+    Vector3::from_column_slice(&of[3 * place..3 * place + 3])
+}
+
+fn numbers_of(orbit: &Equinoctial) -> [f64; PER_ORBIT] {
+    let Equinoctial { semi_major_m, h, k, p, q, mean_longitude_rad } = *orbit;
+    [semi_major_m, h, k, p, q, mean_longitude_rad]
+}
+
+fn orbit_of([semi_major_m, h, k, p, q, mean_longitude_rad]: [f64; PER_ORBIT]) -> Equinoctial {
+    Equinoctial { semi_major_m, h, k, p, q, mean_longitude_rad }
+}

@@ -1,12 +1,10 @@
 //! Long steps, where paths no longer fit into their memory otherwise: by Wisdom-Holman while bodies keep apart, by the exact method
 //! through what such steps can't do.
 
-use super::State;
 use super::knots::{Company, Knots, Rider};
-use super::run::Run;
+use super::run::{Run, states_of};
 use super::thin::Thinner;
 use super::track::Track;
-use crate::Vector3;
 use crate::initial::InitialState;
 use crate::integrate::WisdomHolman;
 use crate::integrate::long_steps::Choice;
@@ -132,10 +130,7 @@ impl Long {
         }
         track.end_long();
         let (t_s, pos, vel) = &leap.last;
-        let vector = |of: &[f64]| Vector3::from_column_slice(of);
-        let both = pos.chunks_exact(3).zip(vel.chunks_exact(3));
-        let states: Vec<State> = both.map(|(x, v)| State { pos: vector(x), vel: vector(v) }).collect();
-        run.go_on(initial, *t_s, &states, 0.05 * self.step_s);
+        run.set_off(initial, *t_s, &states_of(pos, vel), 0.05 * self.step_s);
         // The trouble lies beyond the steps gone back.
         self.again_s = t_s + 2.0 * TRY_AGAIN * self.step_s;
         self.now = None;

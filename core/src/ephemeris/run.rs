@@ -168,13 +168,8 @@ impl Run {
         self.set_off(initial, self.t_s(), &states, self.radau.step_s());
     }
 
-    /// Goes on from other states of the free bodies at another time.
-    pub(super) fn go_on(&mut self, initial: &InitialState, t_s: f64, states: &[State], first_step_s: f64) {
-        self.set_off(initial, t_s, states, first_step_s);
-    }
-
     /// Starts from states of the free bodies.
-    fn set_off(&mut self, initial: &InitialState, t_s: f64, states: &[State], first_step_s: f64) {
+    pub(super) fn set_off(&mut self, initial: &InitialState, t_s: f64, states: &[State], first_step_s: f64) {
         self.pos.clear();
         self.pos.extend(states.iter().flat_map(|s| <[f64; 3]>::from(s.pos)));
         self.vel.clear();
@@ -265,9 +260,7 @@ impl Run {
     fn states(&self) -> Vec<State> {
         let (mut pos, mut vel) = (self.pos.clone(), self.vel.clone());
         self.radau.state(&mut pos, &mut vel);
-        let vector = |row: &[f64]| Vector3::new(row[0], row[1], row[2]);
-        let both = pos.chunks_exact(3).zip(vel.chunks_exact(3));
-        both.map(|(x, v)| State { pos: vector(x), vel: vector(v) }).collect()
+        states_of(&pos, &vel)
     }
 
     /// Makes all changes up to an instant, from states of the free bodies there, and sets off anew.
@@ -456,6 +449,13 @@ impl Run {
         }
         [BodyId(self.free[pair.0]), BodyId(self.free[pair.1])]
     }
+}
+
+/// States from positions (m) and velocities (m/s), three numbers each.
+pub(super) fn states_of(pos: &[f64], vel: &[f64]) -> Vec<State> {
+    let both = pos.chunks_exact(3).zip(vel.chunks_exact(3));
+    let vector = |row: &[f64]| Vector3::from_column_slice(row);
+    both.map(|(pos, vel)| State { pos: vector(pos), vel: vector(vel) }).collect()
 }
 
 /// Makes polynomials of a step those of its first part: the same path in new units.

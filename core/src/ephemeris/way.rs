@@ -62,11 +62,8 @@ impl Way {
         if let Some(long) = self.long.as_mut().filter(|long| long.is_on()) {
             long.leap(&mut self.run, initial, track);
         } else {
-            let step = self.run.step(initial).map_err(|StepTooSmall| {
-                let stopped = self.run.collapse(initial);
-                self.stopped = Some(stopped.clone());
-                stopped
-            })?;
+            let step =
+                self.run.step(initial).map_err(|StepTooSmall| self.stop(self.run.collapse(initial)))?;
             if step.step_s != 0.0 {
                 track.push(step.start_s, step.step_s, self.run.numbers());
                 self.thinner.grow(track);
@@ -127,7 +124,10 @@ impl Way {
             None => Vec::new(),
         };
         let why = Why::TooLong { against };
-        let stopped = Stopped { bodies: Vec::new(), names: Vec::new(), t_s: self.run.t_s(), why };
+        self.stop(Stopped { bodies: Vec::new(), names: Vec::new(), t_s: self.run.t_s(), why })
+    }
+
+    fn stop(&mut self, stopped: Stopped) -> Stopped {
         self.stopped = Some(stopped.clone());
         stopped
     }
