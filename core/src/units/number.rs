@@ -107,6 +107,19 @@ pub fn with_digits(value: f64, digits: usize) -> String {
     tidy(&scientific)
 }
 
+/// Rounded to a whole number, with commas between thousands.
+pub fn grouped(value: f64) -> String {
+    let digits = format!("{value:.0}");
+    let mut grouped = String::new();
+    for (i, digit) in digits.chars().enumerate() {
+        if i > 0 && (digits.len() - i).is_multiple_of(3) {
+            grouped.push(',');
+        }
+        grouped.push(digit);
+    }
+    grouped
+}
+
 /// The shortest text that reads back to the same double.
 pub fn shortest(value: f64) -> String {
     tidy(&format!("{value:e}"))

@@ -7,6 +7,7 @@ use std::time::{SystemTime, UNIX_EPOCH};
 use fallaround_bench_work::Work;
 use fallaround_core::constants::DAY_S;
 use fallaround_core::time::Epoch;
+use fallaround_core::units::number::grouped;
 
 use crate::Row;
 
@@ -118,19 +119,6 @@ fn goals(rows: &[Row]) -> String {
         worst.map_or("-".to_owned(), |worst| format!("{worst:.2} times at worst")),
     );
     lines.concat()
-}
-
-/// With commas between thousands.
-fn grouped(number: f64) -> String {
-    let digits = format!("{number:.0}");
-    let mut grouped = String::new();
-    for (i, digit) in digits.chars().enumerate() {
-        if i > 0 && (digits.len() - i).is_multiple_of(3) {
-            grouped.push(',');
-        }
-        grouped.push(digit);
-    }
-    grouped
 }
 
 /// The day, by the machine's clock, UTC.

@@ -4,6 +4,7 @@ use super::super::wisdom_holman::{NEAR_HILL_RADII, STEPS_PER_PERIAPSIS, Trouble}
 use super::{Choice, Members};
 use crate::constants::{ARCSEC_RAD, C_M_S, DAY_S, YEAR_S};
 use crate::initial::InitialState;
+use crate::units::number::grouped;
 
 /// What to tell about long steps of a scenario over so many seconds, in whole sentences.
 pub fn describe(initial: &InitialState, choice: &Choice, span_s: f64) -> Vec<String> {
@@ -90,25 +91,12 @@ pub(super) fn tell(initial: &InitialState, members: &Members, centre: usize, tro
 /// A time for people.
 pub fn time(t_s: f64) -> String {
     if t_s >= 2.0 * YEAR_S {
-        format!("{} yr", thousands((t_s / YEAR_S).round()))
+        format!("{} yr", grouped((t_s / YEAR_S).round()))
     } else if t_s >= DAY_S {
         format!("{:.2} d", t_s / DAY_S)
     } else {
         format!("{t_s:.0} s")
     }
-}
-
-/// A whole number with its thousands set apart.
-fn thousands(number: f64) -> String {
-    let digits = format!("{number:.0}");
-    let mut out = String::new();
-    for (index, digit) in digits.chars().enumerate() {
-        if index > 0 && (digits.len() - index).is_multiple_of(3) {
-            out.push(',');
-        }
-        out.push(digit);
-    }
-    out
 }
 
 fn angle(rad: f64) -> String {
