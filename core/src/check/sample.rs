@@ -42,9 +42,7 @@ impl Sample {
     pub(super) fn grow(&mut self, eph: &Ephemeris, ends_s: [f64; 2], most_tracer_steps: usize) -> bool {
         for run in &mut self.runs {
             for end_s in ends_s.map(|end_s| end_s.clamp(eph.from_s(), eph.until_s())) {
-                let path = run.path();
-                let covered = if end_s < 0.0 { path.from_s() <= end_s } else { path.until_s() >= end_s };
-                if !covered {
+                if !run.path().covers(end_s) {
                     run.advance(eph, end_s, most_tracer_steps);
                     return false;
                 }

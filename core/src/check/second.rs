@@ -38,15 +38,9 @@ pub(super) struct Second {
 
 impl Second {
     pub(super) fn new(show: &Show) -> Self {
-        let (from_s, until_s) = sight::shown_s(show);
         let propagation =
             Propagation::with_most_bytes(&show.initial, most_bytes(show)).with_step_share(STEP_SHARE);
-        // Time 0 is always covered: whatever is asked of an ephemeris leans on a first step.
-        let mut ends_s = vec![until_s.max(0.0)];
-        if from_s < 0.0 {
-            ends_s.insert(0, from_s);
-        }
-        Self { propagation, ends_s, stopped: None }
+        Self { propagation, ends_s: sight::ends_s(show), stopped: None }
     }
 
     /// Integrates on. True once all is there.

@@ -143,6 +143,14 @@ pub(super) fn called(index: usize) -> String {
     format!("beat {}", index + 1)
 }
 
+/// What has to be integrated for the model time that the beats show, the next end last, s. Time 0 is always covered: whatever is asked of an
+/// ephemeris leans on a first step.
+pub(super) fn ends_s(show: &Show) -> Vec<f64> {
+    let (from_s, until_s) = shown_s(show);
+    let before = (from_s < 0.0).then_some(from_s);
+    before.into_iter().chain([until_s.max(0.0)]).collect()
+}
+
 /// The model time that the beats show: from, until, s; both sides of the start are counted in.
 pub(super) fn shown_s(show: &Show) -> (f64, f64) {
     let beats = &show.plan.beats;

@@ -66,10 +66,7 @@ impl Trial {
                 Ok(false) => Stage::Settling(rehearsal),
                 Ok(true) => {
                     let (initial, propagation) = rehearsal.into_motion();
-                    let mut ends_s = vec![until_s.max(0.0)];
-                    if from_s < 0.0 {
-                        ends_s.insert(0, from_s);
-                    }
+                    let ends_s = sight::ends_s(show);
                     Stage::Moving { initial, propagation: Box::new(propagation), ends_s }
                 }
             },

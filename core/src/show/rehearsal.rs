@@ -8,7 +8,7 @@ use crate::initial::InitialState;
 use crate::math::counts::number_from;
 use crate::resolve::{self, Solar};
 use crate::scenario::{self, ChangeTime, Place, Problem, Scenario};
-use crate::swarm::{SNAPSHOT_BYTES, SwarmPath, SwarmRun};
+use crate::swarm::{SNAPSHOT_BYTES, SwarmRun};
 
 /// Steps of tracers that take about as long as one of the integrator.
 const TRACER_STEPS: usize = 400;
@@ -235,7 +235,7 @@ impl Rehearsal {
         let most = max_steps.saturating_mul(TRACER_STEPS);
         for run in &mut self.swarms {
             for t_s in [until_s, from_s] {
-                if !reaches(run.path(), t_s) {
+                if !run.path().covers(t_s) {
                     run.advance(eph, t_s, most);
                     return;
                 }
@@ -265,7 +265,7 @@ impl Rehearsal {
         };
         let done = self.plan.as_ref().is_some_and(|plan| {
             self.swarms.iter().all(|run| {
-                [plan.covers_until_s, plan.covers_from_s].into_iter().all(|t_s| reaches(run.path(), t_s))
+                [plan.covers_until_s, plan.covers_from_s].into_iter().all(|t_s| run.path().covers(t_s))
             })
         });
         let of_bodies = if self.initial.swarms.is_empty() { 1.0 } else { 1.0 - SWARMS_SHARE };
@@ -342,11 +342,6 @@ impl Rehearsal {
 fn propagation(initial: &InitialState) -> Propagation {
     let of_swarms = if initial.swarms.is_empty() { 0 } else { SNAPSHOT_BYTES };
     Propagation::with_most_bytes(initial, SHOW_BYTES - of_swarms)
-}
-
-/// Whether a path covers an instant.
-fn reaches(path: &SwarmPath, t_s: f64) -> bool {
-    if t_s < 0.0 { path.from_s() <= t_s } else { path.until_s() >= t_s }
 }
 
 #[cfg(test)]

@@ -69,6 +69,11 @@ impl SwarmPath {
         self.forward.end_s
     }
 
+    /// Whether it covers an instant, seconds from the scenario's start.
+    pub fn covers(&self, t_s: f64) -> bool {
+        if t_s < 0.0 { self.from_s() <= t_s } else { self.until_s() >= t_s }
+    }
+
     /// The tracers that touch a body, of the time from 0 on and then of the time before, in no order.
     pub fn losses(&self) -> impl Iterator<Item = &Loss> {
         self.forward.losses.iter().chain(&self.backward.losses)
